@@ -1,0 +1,84 @@
+"""How a builtin spreadsheet function is declared: its name, and how it takes each argument.
+
+    @builtin("ROUND", "number number")
+    def round_(x: float, digits: float) -> float: ...
+
+The words, one an argument (a `?` behind one: may be left out; the last may carry `*`, any number of them, or `+`, at
+least one):
+
+    number text logical   a scalar, coerced as the application does; an error value is passed on without a call
+    value                 a scalar of any kind but an error (which is passed on without a call); blank stays None
+    any                   a scalar of any kind, error values included
+    array                 an Array: a reference is read, a scalar becomes 1 x 1; errors stay inside
+    range                 an Area where a reference was written, an Array, or a scalar typed in directly: for functions
+                          that treat cells and typed values differently (SUM takes "2" typed in, not in a cell)
+    reference             an Area (or a tuple of Areas for a union); anything else is #VALUE!
+
+A function whose scalar arguments meet an array is called once an element and returns an array (in an array formula) or
+takes the cell of its own row or column (elsewhere). An argument left out arrives as the Python default; one written but
+empty (`IF(1,,2)`) arrives as blank None for value/any, 0.0 for number, "" for text, False for logical.
+A word `context` in front passes the running Context (own cell, workbook, clock) first.
+A function returns a scalar, an Array or an Area, and raises ErrorResult to return an error value.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from dataclasses import dataclass
+from typing import Any, TypeVar
+
+from cellsection.workbook.values import ErrorValue
+
+__all__ = ["BUILTINS", "Builtin", "ErrorResult", "builtin"]
+
+F = TypeVar("F", bound=Callable[..., Any])
+KINDS = frozenset(("number", "text", "logical", "value", "any", "array", "range", "reference"))
+
+
+class ErrorResult(Exception):  # noqa: N818 - it is a result on its way, not a fault of the program
+    """Raised inside a builtin to return an error value."""
+
+    def __init__(self, error: ErrorValue) -> None:
+        super().__init__(error.code)
+        self.error = error
+
+
+@dataclass(frozen=True, slots=True)
+class Builtin:
+    """One spreadsheet function as the compiler sees it."""
+
+    name: str
+    call: Callable[..., Any]
+    kinds: tuple[str, ...]  # one a declared argument; the last one repeats where `repeats`
+    least: int  # fewest arguments
+    most: int | None  # None: any number
+    context: bool = False
+    volatile: bool = False
+
+    def kind(self, index: int) -> str:
+        """How argument number index, counted from 0, is taken."""
+        return self.kinds[min(index, len(self.kinds) - 1)]
+
+
+BUILTINS: dict[str, Builtin] = {}
+
+
+def builtin(name: str, arguments: str = "", *, volatile: bool = False) -> Callable[[F], F]:
+    """Declare a builtin under its name (or several, separated by blanks: the old and the new spelling)."""
+    words = arguments.split()
+    context = words[:1] == ["context"]
+    words = words[context:]
+    least = sum(not word.endswith(("?", "*")) for word in words)
+    most = None if words and words[-1].endswith(("*", "+")) else len(words)
+    kinds = tuple(word.rstrip("?*+") for word in words)
+    if unknown := set(kinds) - KINDS:
+        raise ValueError(f"{name}: no argument kind {sorted(unknown)}; choose from {sorted(KINDS)}")
+
+    def declare(call: F) -> F:
+        for each in name.split():
+            if each in BUILTINS:
+                raise ValueError(f"{each} is declared twice")
+            BUILTINS[each] = Builtin(each, call, kinds, least, most, context, volatile)
+        return call
+
+    return declare

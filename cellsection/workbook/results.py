@@ -1,0 +1,62 @@
+"""What a recalculation hands out: each formula cell with its saved and its new value, and what could not be done."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, field
+from enum import Enum
+from typing import TYPE_CHECKING
+
+if TYPE_CHECKING:
+    from collections.abc import Callable
+
+    from cellsection.workbook.values import Scalar
+
+__all__ = ["FormulaCell", "Recalculation", "Status"]
+
+
+class Status(Enum):
+    """What became of a formula cell."""
+
+    RECALCULATED = "recalculated"
+    UNSUPPORTED = "unsupported"  # the formula itself uses something that is not supported; `reason` names it
+    NOT_VERIFIED = "not verified"  # it depends on such a cell; `reason` names that cell
+    VOLATILE = "volatile"  # its value depends on the clock, a random number or the machine; compared by kind only
+    CYCLE = "cycle"  # it is part of a circular reference; `reason` names the circle cell by cell
+
+
+@dataclass(slots=True)
+class FormulaCell:
+    """A cell that holds a formula, or lies in the area of an array formula.
+
+    saved : the value stored in the file (None also where the file stores none)
+    value : the recalculated value; the saved one where status is UNSUPPORTED, NOT_VERIFIED or CYCLE
+    call : name of the outermost function of the formula in this project's or the application's own spelling
+        ("CS_AGREES", "SUM"), "" where the formula is not one call
+    notes : what a reader should know though the value holds ("external link [1] read from its saved values")
+    """
+
+    sheet: str
+    address: str
+    saved: Scalar
+    value: Scalar
+    status: Status
+    call: str = ""
+    reason: str = ""
+    notes: tuple[str, ...] = ()
+    has_saved: bool = True
+    text: Callable[[], str] = field(default=lambda: "", repr=False)
+
+    @property
+    def formula(self) -> str:
+        """The formula as the engineer reads it, with its leading "="; array formulas in braces."""
+        return self.text()
+
+
+@dataclass(slots=True)
+class Recalculation:
+    """A whole book, recalculated. The cells come sheet by sheet, row by row."""
+
+    path: str
+    sheets: tuple[str, ...]
+    cells: list[FormulaCell]
+    notes: list[str] = field(default_factory=list)  # about the book: iterative calculation asked for, signature, ...
