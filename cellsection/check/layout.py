@@ -1,0 +1,215 @@
+"""A report laid out for the eye: tables of what does not hold, paragraphs of why. Only this file imports rich."""
+
+from __future__ import annotations
+
+import sys
+from io import StringIO
+from typing import TYPE_CHECKING, Any, TypeVar
+
+from rich.console import Console, Group
+from rich.padding import Padding
+from rich.table import Table
+from rich.text import Text
+
+from cellsection.check.compare import kind
+from cellsection.check.findings import Cycle, Difference, Error, NotVerified, UnmetCheck, Unsaved, Unsupported, Verdict
+from cellsection.check.report import (
+    LISTED,
+    checks_line,
+    counted,
+    places_in_words,
+    shortened,
+    tally_line,
+    value_in_words,
+)
+
+if TYPE_CHECKING:
+    from collections.abc import Iterator, Sequence
+
+    from rich.console import JustifyMethod, RenderableType
+
+    from cellsection.check.findings import Finding, Report
+    from cellsection.workbook.values import Scalar
+
+__all__ = ["lay_out"]
+
+COLOUR = {
+    Verdict.HOLDS: "green",
+    Verdict.DOES_NOT_HOLD: "red",
+    Verdict.NOT_VERIFIABLE: "yellow",
+    Verdict.UNREADABLE: "red",
+}
+WIDTH_OF_A_FILE = 120  # where the output is no terminal and so has no width of its own
+LONGEST_FORMULA = 80
+F = TypeVar("F", bound="Finding")
+
+
+def lay_out(report: Report, *, every: bool = False) -> None:
+    """Print the report; `every` shows long lists, texts and formulas whole."""
+    console = Console(highlight=False, markup=False, emoji=False)
+    if console.is_terminal:
+        _write(console, report, every)
+        return
+    page = Console(file=StringIO(), width=WIDTH_OF_A_FILE, highlight=False, markup=False, emoji=False)
+    with page.capture() as captured:
+        _write(page, report, every)
+    for line in captured.get().splitlines():
+        sys.stdout.write(line.rstrip() + "\n")  # tables pad their cells; a file needs no blanks at the end of a line
+
+
+def _write(console: Console, report: Report, every: bool) -> None:
+    console.print(
+        Text.assemble(f"{report.path}: ", (report.verdict.words, f"bold {COLOUR[report.verdict]}")), soft_wrap=True
+    )
+    for line in filter(None, (tally_line(report), checks_line(report))):
+        console.print(f"  {line}", soft_wrap=True)
+    for title, body in _sections(report, every):
+        console.print()
+        console.print(Text(f"  {title}", style="bold"))
+        console.print(Padding(body, (0, 0, 0, 4), expand=False))
+
+
+def _sections(report: Report, every: bool) -> Iterator[tuple[str, RenderableType]]:
+    """The sections of a report that have something in them, each with its title."""
+    if unmet := _of(report, UnmetCheck):
+        yield f"Acceptance checks not met ({len(unmet):,})", _unmet_checks(unmet, every)
+    if differences := _of(report, Difference):
+        yield f"Cells that do not hold ({len(differences):,})", _differences(differences, every)
+    errors = _of(report, Error)
+    if counting := [each for each in errors if each.verdict is not Verdict.HOLDS]:
+        yield f"Errors ({len(counting):,})", _paragraphs([_error(each, every) for each in counting], every)
+    if unsupported := _of(report, Unsupported):
+        yield (
+            f"Not supported ({len(unsupported):,})",
+            _paragraphs([_unsupported(each, every) for each in unsupported], every),
+        )
+    if cycles := _of(report, Cycle):
+        yield f"Circular references ({len(cycles):,})", _paragraphs([_cycle(each, every) for each in cycles], every)
+    if unverified := _of(report, NotVerified):
+        lines = [_wrapped(f"{each.reason}: {places_in_words(each.cells, every=every)}") for each in unverified]
+        yield "Not verified for another reason", _paragraphs(lines, every)
+    if unsaved := _of(report, Unsaved):
+        cells = unsaved[0].cells
+        said = "Nothing to compare with; open the book in the spreadsheet application and save it"
+        yield f"No saved value ({len(cells):,})", _wrapped(f"{places_in_words(cells, every=every)}. {said}.")
+    if saved_alike := [each for each in errors if each.verdict is Verdict.HOLDS]:
+        title = f"Errors that the saved file shows too ({len(saved_alike):,})"
+        yield title, _paragraphs([_error(each, every) for each in saved_alike], every)
+    if report.notes:
+        lines = [
+            _wrapped(note.text + (f": {places_in_words(note.cells, every=every)}" if note.cells else ""))
+            for note in report.notes
+        ]
+        yield "Notes", _paragraphs(lines, every)
+
+
+def _of(report: Report, kind_of_finding: type[F]) -> list[F]:
+    return [finding for finding in report.findings if isinstance(finding, kind_of_finding)]
+
+
+def _differences(differences: Sequence[Difference], every: bool) -> RenderableType:
+    table = _table("cell", ">saved", ">recalculated", ">relative difference", "formula")
+    for each in _first(differences, every):
+        off = "other kind" if each.volatile else _relative_difference(each.saved, each.recalculated)
+        _row(
+            table,
+            str(each.spot),
+            _value(each.saved, every),
+            _value(each.recalculated, every),
+            off,
+            _formula(each.spot.formula, every),
+        )
+    return Group(table, *_rest(differences, every))
+
+
+def _unmet_checks(unmet: Sequence[UnmetCheck], every: bool) -> RenderableType:
+    table = _table("cell", "expected", "saved", "recalculated", "formula")
+    for each in _first(unmet, every):
+        values = (each.expected, each.saved, each.recalculated)
+        _row(table, str(each.spot), *(_value(value, every) for value in values), _formula(each.spot.formula, every))
+        if each.cause:
+            _row(table, "", "", "", "", f"because: {each.cause}")
+    return Group(table, *_rest(unmet, every))
+
+
+def _error(error: Error, every: bool) -> RenderableType:
+    lines = [Text.assemble((f"{error.spot}  {error.code}", "bold"), f"  {error.cause}")]
+    if error.spot.formula:
+        saved = f"   saved: {value_in_words(error.saved, every=every)}" if not error.saved_alike else ""
+        lines.append(Text(f"  {_formula(error.spot.formula, every)}{saved}", style="dim"))
+    if error.echoes:
+        passed = f"  passed on to {counted(len(error.echoes), 'cell')}: {places_in_words(error.echoes, every=every)}"
+        lines.append(_wrapped(passed))
+    return Group(*lines)
+
+
+def _unsupported(each: Unsupported, every: bool) -> RenderableType:
+    lines = [
+        Text.assemble(
+            (each.construct, "bold"),
+            f" in {counted(len(each.cells), 'cell')}: {places_in_words(each.cells, every=every)}",
+        ),
+        Text(f"  {each.example}  {_formula(each.example.formula, every)}", style="dim"),
+        *_dependants(each.dependants, every),
+    ]
+    return Group(*lines)
+
+
+def _cycle(each: Cycle, every: bool) -> RenderableType:
+    return Group(_wrapped(each.circle), *_dependants(each.dependants, every))
+
+
+def _dependants(cells: tuple[tuple[str, str], ...], every: bool) -> list[Text]:
+    if not cells:
+        return []
+    depend = counted(len(cells), "cell depends", "cells depend")
+    return [_wrapped(f"  {depend} on it, not verified: {places_in_words(cells, every=every)}")]
+
+
+# The small pieces
+
+
+def _table(*columns: str) -> Table:
+    """A table without lines; a heading that opens with > is set flush right."""
+    table = Table(box=None, padding=(0, 2, 0, 0), header_style="dim", show_edge=False)
+    for column in columns:
+        justify: JustifyMethod = "right" if column.startswith(">") else "left"
+        table.add_column(column.lstrip(">"), justify=justify, no_wrap=column == "cell", overflow="fold")
+    return table
+
+
+def _row(table: Table, *texts: str) -> None:
+    table.add_row(*(Text(text) for text in texts))
+
+
+def _paragraphs(found: Sequence[RenderableType], every: bool) -> RenderableType:
+    return Group(*_first(found, every), *_rest(found, every))
+
+
+def _first(found: Sequence[Any], every: bool) -> Sequence[Any]:
+    return found if every else found[:LISTED]
+
+
+def _rest(found: Sequence[object], every: bool) -> list[Text]:
+    more = 0 if every else len(found) - LISTED
+    return [Text(f"and {more:,} more; --all lists them", style="dim")] if more > 0 else []
+
+
+def _wrapped(text: str) -> Text:
+    return Text(text, overflow="fold")
+
+
+def _value(value: Scalar, every: bool) -> str:
+    return value_in_words(value, every=every)
+
+
+def _formula(formula: str, every: bool) -> str:
+    return shortened(formula, LONGEST_FORMULA, every=every)
+
+
+def _relative_difference(saved: Scalar, value: Scalar) -> str:
+    """How far two numbers lie apart as a share of the larger; other kinds are apart altogether."""
+    if kind(saved) == kind(value) == "number":
+        assert isinstance(saved, float) and isinstance(value, float)  # noqa: PT018 - told by kind
+        return f"{abs(saved - value) / max(abs(saved), abs(value)):.1e}"
+    return "" if kind(saved) == kind(value) else "other kind"

@@ -1,0 +1,143 @@
+"""A report in words: plain lines for a calm result, and the pieces the laid-out one (layout.py) is made of."""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING
+
+from cellsection.check.compare import kind
+from cellsection.check.findings import Error, Verdict
+from cellsection.check.places import rectangles
+
+if TYPE_CHECKING:
+    from collections.abc import Sequence
+
+    from cellsection.check.findings import Cells, Report
+    from cellsection.workbook.values import Scalar
+
+__all__ = [
+    "LISTED",
+    "calm_lines",
+    "checks_line",
+    "closing_line",
+    "counted",
+    "headline",
+    "places_in_words",
+    "tally_line",
+    "value_in_words",
+]
+
+LISTED = 10  # how much of a long list is shown unless all of it is asked for
+LONGEST_TEXT = 60  # of a text value, likewise
+
+
+def headline(report: Report) -> str:
+    """The book and its verdict.
+
+    The first line of every report; the verdict is one of the four of `Verdict`.
+    """
+    return f"{report.path}: {report.verdict.words}"
+
+
+def calm_lines(report: Report, *, every: bool = False) -> list[str]:
+    """What there is to say below the headline of a book that holds, or that could not be read."""
+    if report.verdict is Verdict.UNREADABLE:
+        return [report.unreadable]
+    lines = list(filter(None, (tally_line(report), checks_line(report))))
+    errors = [finding for finding in report.findings if isinstance(finding, Error)]
+    if errors:
+        cells = tuple(key for error in errors for key in (error.spot.key, *error.echoes))
+        arise = [error.spot.key for error in errors]
+        lines.append(
+            f"{counted(len(cells), 'cell shows', 'cells show')} an error value, as in the saved file; "
+            f"they arise in {places_in_words(arise, every=every)}"
+        )
+    for note in report.notes:
+        lines.append(note.text + (f": {places_in_words(note.cells, every=every)}" if note.cells else ""))
+    return lines
+
+
+def tally_line(report: Report) -> str:
+    """How many formula cells there are, and how they fared.
+
+    Every formula cell is in exactly one of the counts.
+    """
+    tally = report.tally
+    if not tally.cells:
+        return f"no formula cells on {counted(len(report.sheets), 'sheet')}"
+    parts = [
+        (tally.hold, "hold"),
+        (tally.differ, "do not hold" if tally.differ != 1 else "does not hold"),
+        (tally.volatile, "volatile (compared by kind)"),
+        (tally.not_verified, "not verified"),
+        (tally.unsaved, "without a saved value"),
+    ]
+    met = [f"{count:,} {word}" for count, word in parts if count]
+    if tally.hold == tally.cells:
+        met = ["all hold"] if tally.cells > 1 else ["it holds"]
+    return f"{counted(tally.cells, 'formula cell')} on {counted(len(report.sheets), 'sheet')}: {', '.join(met)}"
+
+
+def checks_line(report: Report) -> str:
+    """How the acceptance checks of the sheets fared; empty where there are none."""
+    tally = report.tally
+    unmet = tally.checks - tally.checks_met
+    said = f"{tally.checks_met:,} met, {unmet:,} not met" if unmet else ("all met" if tally.checks > 1 else "met")
+    return f"{counted(tally.checks, 'acceptance check')}: {said}" if tally.checks else ""
+
+
+def closing_line(reports: Sequence[Report]) -> str:
+    """One line for many books: how many of them hold, and the tolerance."""
+    counts = {verdict: sum(report.verdict is verdict for report in reports) for verdict in Verdict}
+    words = {
+        Verdict.HOLDS: ("holds", "hold"),
+        Verdict.DOES_NOT_HOLD: ("does not hold", "do not hold"),
+        Verdict.NOT_VERIFIABLE: ("is not verifiable in part", "are not verifiable in part"),
+        Verdict.UNREADABLE: ("is unreadable", "are unreadable"),
+    }
+    met = [f"{count:,} {words[verdict][count != 1]}" for verdict, count in counts.items() if count]
+    if counts[Verdict.HOLDS] == len(reports) > 1:
+        met = ["all hold"]
+    books = f"{counted(len(reports), 'book')}: " if len(reports) > 1 else ""
+    return f"{books}{', '.join(met) if books else ''}{'. ' if books else ''}Tolerance: {reports[0].tolerance}."
+
+
+def value_in_words(value: Scalar, *, every: bool = False) -> str:
+    """A value as a report shows it: numbers to 15 digits, texts in quotes.
+
+    >>> [value_in_words(value) for value in (125440000.0, "no faults", True, None)]
+    ['125440000', '"no faults"', 'TRUE', 'blank']
+    """
+    if value is None:
+        return "blank"
+    if isinstance(value, bool):
+        return "TRUE" if value else "FALSE"
+    if isinstance(value, str):
+        return f'"{shortened(value, LONGEST_TEXT, every=every)}"'
+    return str(value) if kind(value) == "error" else f"{value:.15g}"
+
+
+def shortened(text: str, longest: int, *, every: bool = False) -> str:
+    """A text on one line, cut where it is too long to be read in passing."""
+    line = " ".join(text.split())
+    return line if every or len(line) <= longest else line[: longest - 1] + "…"
+
+
+def places_in_words(cells: Cells | Sequence[tuple[str, str]], *, every: bool = False) -> str:
+    """Where cells are, as rectangles; a long list is cut with a count.
+
+    >>> places_in_words([("Girder", "C4"), ("Girder", "C5"), ("Girder", "E9")])
+    'Girder!C4:C5, Girder!E9'
+    """
+    found = rectangles(cells)
+    listed = found if every else found[:LISTED]
+    more = len(found) - len(listed)
+    return ", ".join(listed) + (f" and {more:,} more places (--all lists them)" if more else "")
+
+
+def counted(count: int, one: str, many: str = "") -> str:
+    """A count with its noun.
+
+    >>> counted(1, "sheet"), counted(1200, "sheet")
+    ('1 sheet', '1,200 sheets')
+    """
+    return f"{count:,} {one if count == 1 else many or one + 's'}"
