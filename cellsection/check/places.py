@@ -54,9 +54,9 @@ def rectangles(cells: Iterable[tuple[str, str]]) -> list[str]:
     for (sheet, column), met in rows.items():
         for first, last in _runs(met):
             widths[sheet, first, last].append(column)
-    sheets = {sheet: index for index, (sheet, _) in enumerate(rows)}
+    order = {sheet: index for index, sheet in enumerate(dict.fromkeys(sheet for sheet, _ in rows))}
     found = [
-        (sheets[sheet], top, left, bottom, right, sheet)
+        (order[sheet], top, left, bottom, right, sheet)
         for (sheet, top, bottom), columns in widths.items()
         for left, right in _runs(columns)
     ]
