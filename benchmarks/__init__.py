@@ -1,0 +1,1 @@
+"""How fast a check is and how much of real books it covers: `python -m benchmarks --help`."""

@@ -1,0 +1,54 @@
+"""Every book in a folder: the share of its formula cells that equal the saved value, the time, what is unsupported."""
+
+from __future__ import annotations
+
+import time
+from typing import TYPE_CHECKING
+
+from cellsection.check import Verdict, check_book
+from cellsection.check.findings import Cycle, Unsupported
+from cellsection.check.many import books_in
+from cellsection.check.report import counted
+
+if TYPE_CHECKING:
+    from pathlib import Path
+
+    from cellsection.check import Report
+
+__all__ = ["run"]
+
+
+def run(folder: Path) -> int:
+    """Check and print, book by book; 1 where a book could not be read."""
+    heading = (
+        f"{'book':36} {'formulas':>9} {'equal':>8} {'volatile':>8} {'differ':>7} {'unverified':>10} {'seconds':>8}"
+    )
+    print(heading + "  not supported")
+    cells = equal = unreadable = 0
+    for path in books_in(folder):
+        start = time.perf_counter()
+        report = check_book(path)
+        seconds = time.perf_counter() - start
+        if report.verdict is Verdict.UNREADABLE:
+            print(f"{path.name[:36]:36} {report.unreadable}")
+            unreadable += 1
+            continue
+        tally = report.tally
+        cells += tally.cells
+        equal += tally.hold + tally.volatile
+        unverified = tally.not_verified + tally.unsaved
+        share = (tally.hold + tally.volatile) / tally.cells if tally.cells else 1.0
+        numbers = f"{tally.cells:9,} {share:8.2%} {tally.volatile:8,} {tally.differ:7,} {unverified:10,} {seconds:8.2f}"
+        print(f"{path.name[:36]:36} {numbers}  {_unsupported(report)}")
+    print(f"{'all':36} {cells:9,} {equal / cells if cells else 1.0:8.2%}")
+    return int(unreadable > 0)
+
+
+def _unsupported(report: Report) -> str:
+    """What is not supported, each with the number of cells that use it."""
+    met = [f"{each.construct} ({len(each.cells):,})" for each in report.findings if isinstance(each, Unsupported)]
+    circles = sum(len(each.cells) for each in report.findings if isinstance(each, Cycle))
+    if circles:
+        met.append(f"circular ({circles:,})")
+    more = len(met) - 6
+    return ", ".join(met[:6]) + (f" and {counted(more, 'more')}" if more > 0 else "")
