@@ -128,7 +128,8 @@ def environment() -> list[str]:
 def has_ensurepip() -> bool:
     """Whether our Python can put a pip of its own into an environment."""
     importlib.invalidate_caches()
-    return importlib.util.find_spec("ensurepip") is not None
+    found = importlib.util.find_spec("ensurepip")
+    return found is not None and found.loader is not None  # an empty folder of that name has no loader
 
 
 def system_pip() -> list[str]:
