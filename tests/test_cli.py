@@ -1,0 +1,296 @@
+"""The command line, run in this process and as a process of its own."""
+
+from __future__ import annotations
+
+import json
+import subprocess
+import sys
+from pathlib import Path
+
+import pytest
+from click.testing import CliRunner, Result
+
+import cellsection
+from cellsection.cli import commands
+from tests.check.small_book import write_book
+
+GOOD = {"A1": 300.0, "A2": 20.0, "B1": ("A1*A2", 6000.0), "B2": ("SUM(A1:A2)", 320.0), "B3": ('"flange"', "flange")}
+PARTS = {
+    "A1": "shape", "B1": "b", "C1": "h", "D1": "y",
+    "A2": "rectangle", "B2": 300.0, "C2": 20.0, "D2": 10.0,
+    "A3": "rectangle", "B3": 12.0, "C3": 400.0, "D3": 220.0,
+}  # fmt: skip
+
+
+def run(*arguments: object) -> Result:
+    return CliRunner().invoke(commands, list(map(str, arguments)))
+
+
+def process(*arguments: object, cwd: Path | None = None) -> subprocess.CompletedProcess[str]:
+    command = [sys.executable, "-m", "cellsection", *map(str, arguments)]
+    return subprocess.run(command, capture_output=True, text=True, encoding="utf-8", cwd=cwd, check=False)
+
+
+@pytest.fixture
+def good(tmp_path: Path) -> Path:
+    return write_book(tmp_path / "good.xlsx", GOOD)
+
+
+@pytest.fixture
+def bad(tmp_path: Path) -> Path:
+    return write_book(tmp_path / "bad.xlsx", {**GOOD, "B1": ("A1*A2", 6001.0)})
+
+
+@pytest.fixture
+def partly(tmp_path: Path) -> Path:
+    return write_book(tmp_path / "partly.xlsx", {**GOOD, "C1": ("NOSUCHFUNCTION(A1)", 5.0), "C2": ("C1+1", 6.0)})
+
+
+def test_a_book_that_holds_exits_0_in_two_calm_lines(good: Path) -> None:
+    result = run("check", good)
+    assert result.exit_code == 0
+    assert result.output.splitlines()[:2] == [f"{good}: holds", "  3 formula cells on 1 sheet: all hold"]
+
+
+def test_a_book_that_does_not_hold_exits_1_and_names_the_cell(bad: Path) -> None:
+    result = run("check", bad)
+    assert result.exit_code == 1
+    (line,) = [line for line in result.output.splitlines() if "Girder!B1" in line]
+    assert line.split()[:3] == ["Girder!B1", "6001", "6000"]
+    assert "=A1*A2" in line
+
+
+def test_a_wider_tolerance_lets_it_hold(bad: Path) -> None:
+    assert run("check", bad, "--relative", "1e-3").exit_code == 0
+    assert run("check", bad, "--absolute", "1.5").exit_code == 0
+
+
+def test_an_unsupported_function_exits_2_and_is_named_with_its_dependants(partly: Path) -> None:
+    result = run("check", partly)
+    assert result.exit_code == 2
+    assert "NOSUCHFUNCTION" in result.output
+    assert "1 cell depends on it, not verified: Girder!C2" in result.output
+
+
+def test_a_cell_without_a_saved_value_exits_2(tmp_path: Path) -> None:
+    result = run("check", write_book(tmp_path / "unsaved.xlsx", {**GOOD, "C1": ("A1+1", None)}))
+    assert result.exit_code == 2
+    assert "No saved value (1)" in result.output
+
+
+@pytest.mark.parametrize(
+    ("name", "content"),
+    [
+        ("missing.xlsx", None),
+        ("text.xlsx", b"not a zip"),
+        ("empty.xlsx", b""),
+        ("old.xls", b"\xd0\xcf\x11\xe0\xa1\xb1"),
+    ],
+)
+def test_a_file_that_cannot_be_read_exits_3_with_one_line(tmp_path: Path, name: str, content: bytes | None) -> None:
+    path = tmp_path / name
+    if content is not None:
+        path.write_bytes(content)
+    result = process("check", path)
+    assert result.returncode == 3
+    headline, reason, *_ = result.stdout.splitlines()
+    assert headline == f"{path}: unreadable"
+    assert name in reason
+    assert "Traceback" not in result.stdout + result.stderr
+
+
+def test_the_worst_of_many_books_counts(good: Path, bad: Path, partly: Path) -> None:
+    assert run("check", good, partly).exit_code == 2
+    assert run("check", bad, partly, good).exit_code == 1
+    assert run("check", good.with_name("none.xlsx"), bad).exit_code == 3
+
+
+def test_many_books_end_with_a_count(good: Path, bad: Path) -> None:
+    closing = run("check", good, bad, good).output.splitlines()[-1]
+    assert closing == "3 books: 2 hold, 1 does not hold. Tolerance: relative 1e-09, absolute 1e-12."
+
+
+def test_a_folder_stands_for_its_books(good: Path, bad: Path, tmp_path: Path) -> None:
+    (tmp_path / "~$good.xlsx").write_bytes(b"the lock file of an open book")
+    result = run("check", tmp_path)
+    assert [line for line in result.output.splitlines() if line.endswith("hold") and ".xlsx:" in line] == [
+        f"{bad}: does not hold"
+    ]
+    assert f"{good}: holds" in result.output
+    assert result.exit_code == 1
+
+
+def test_a_folder_without_books_is_refused(tmp_path: Path) -> None:
+    result = process("check", tmp_path)
+    assert result.returncode == 4
+    assert result.stderr.startswith("cellsection: there are no workbooks")
+
+
+def test_json_says_the_same_as_data(good: Path, bad: Path) -> None:
+    result = process("check", good, bad, "--json")
+    made = json.loads(result.stdout)
+    assert result.returncode == made["exit code"] == 1
+    assert [book["verdict"] for book in made["books"]] == ["holds", "does not hold"]
+    assert made["books"][1]["findings"][0]["address"] == "Girder!B1"
+    assert result.stderr == ""
+
+
+def test_books_are_checked_in_several_processes_in_their_order(good: Path, bad: Path) -> None:
+    made = json.loads(process("check", good, bad, good, "--json", "--processes", 2).stdout)
+    assert [Path(book["book"]).name for book in made["books"]] == ["good.xlsx", "bad.xlsx", "good.xlsx"]
+
+
+def test_no_book_is_changed_by_a_check(bad: Path) -> None:
+    before = bad.read_bytes()
+    run("check", bad)
+    assert bad.read_bytes() == before
+    assert list(bad.parent.iterdir()) == [bad]
+
+
+def test_section_functions_and_acceptance_checks_are_recalculated(tmp_path: Path) -> None:
+    # A = 300*20 + 12*400 = 10800, by hand
+    cells = {
+        **PARTS,
+        "F1": ('CS_TOTALS(A1:D3,"A")', 10800.0),
+        "F2": ("CS_AGREES(F1,10800)", True),
+        "F3": ("CS_FAULTS(A1:D3)", "no faults"),
+    }
+    result = run("check", write_book(tmp_path / "girder.xlsx", cells))
+    assert result.output.splitlines()[1:3] == [
+        "  3 formula cells on 1 sheet: all hold",
+        "  2 acceptance checks: all met",
+    ]
+    assert result.exit_code == 0
+
+
+def test_a_refused_part_is_told_with_row_column_and_remedy(tmp_path: Path) -> None:
+    cells = {**PARTS, "C3": 0.0, "F1": ('CS_TOTALS(A1:D3,"A")', 10800.0), "F2": ("F1/2", 5400.0)}
+    result = run("check", write_book(tmp_path / "girder.xlsx", cells))
+    assert result.exit_code == 1
+    assert "Errors (1)" in result.output
+    assert "Girder!F1  #VALUE!" in result.output
+    assert "row 3, column h" in " ".join(result.output.split())
+    assert "passed on to 1 cell: Girder!F2" in result.output
+
+
+def test_an_unmet_acceptance_check_exits_1_though_saved_so(tmp_path: Path) -> None:
+    cells = {**PARTS, "F1": ('CS_AGREES(CS_TOTALS(A1:D3,"A"),10801)', False)}
+    result = run("check", write_book(tmp_path / "girder.xlsx", cells))
+    assert result.exit_code == 1
+    assert "Acceptance checks not met (1)" in result.output
+
+
+HEAVY = (
+    "numpy",
+    "pandas",
+    "openpyxl",
+    "scipy",
+    "shapely",
+    "rich",
+    "xlwings",
+    "cellsection.catalogue",
+    "cellsection.section",
+)
+
+
+def test_checking_a_plain_book_loads_nothing_it_does_not_use(good: Path) -> None:
+    looking = (
+        "import sys, runpy\n"
+        f"sys.argv = ['cellsection', 'check', {str(good)!r}]\n"
+        "try:\n    runpy.run_module('cellsection', run_name='__main__')\n"
+        "finally:\n    print('LOADED', *sorted(sys.modules))\n"
+    )
+    done = subprocess.run([sys.executable, "-c", looking], capture_output=True, text=True, check=False)
+    assert done.returncode == 0, done.stderr
+    loaded = done.stdout.partition("LOADED")[2].split()
+    assert "cellsection.hosts.headless" in loaded
+    assert [name for name in HEAVY if name in loaded] == []
+
+
+# Other commands
+
+
+def test_the_version_is_printed() -> None:
+    assert process("--version").stdout.strip() == f"cellsection {cellsection.__version__}"
+
+
+@pytest.mark.parametrize("command", [[], ["check"], ["functions"], ["start"]])
+def test_help_of_every_command_shows_an_example(command: list[str]) -> None:
+    result = run(*command, "--help")
+    assert result.exit_code == 0
+    assert "Example" in result.output
+    assert f"cellsection {' '.join(command)}".strip() in result.output
+
+
+def test_help_of_the_check_explains_the_exit_codes() -> None:
+    shown = run("check", "--help").output
+    assert [code for code in "01234" if f"\n    {code}  " in shown] == list("01234")
+
+
+@pytest.mark.parametrize(
+    "arguments",
+    [
+        ["check"],
+        ["check", "a.xlsx", "--relative", "lots"],
+        ["check", "a.xlsx", "--relative", "-1"],
+        ["weigh"],
+        ["--loud"],
+    ],
+)
+def test_a_wrong_command_line_exits_4_without_a_traceback(arguments: list[str]) -> None:
+    result = process(*arguments)
+    assert result.returncode == 4
+    assert "Error: " in result.stderr
+    assert "Traceback" not in result.stderr
+
+
+def test_every_cell_function_is_listed_with_its_help() -> None:
+    from cellsection.catalogue import CATALOGUE
+
+    shown = run("functions").output
+    for name, function in CATALOGUE.items():
+        assert name in shown
+        assert function.help.split()[0] in shown
+
+
+def test_one_cell_function_is_explained_in_full() -> None:
+    result = run("functions", "cs_totals")
+    assert result.exit_code == 0
+    for piece in ("CS_TOTALS(parts", "parts", "which", "Example", "Source"):
+        assert piece in result.output
+
+
+def test_an_unknown_cell_function_is_refused_with_the_nearest() -> None:
+    result = process("functions", "CS_TOTAL")
+    assert result.returncode == 4
+    assert "CS_TOTALS" in result.stderr
+
+
+def test_a_template_is_started_and_holds(tmp_path: Path) -> None:
+    out = tmp_path / "crane girder.xlsx"
+    result = process("start", "girder", out)
+    assert result.returncode == 0, result.stderr
+    assert f'cellsection check "{out}"' in result.stdout
+    assert run("check", out).exit_code == 0
+
+
+@pytest.mark.parametrize(
+    ("template", "name", "says"),
+    [
+        ("girder", "there.xlsx", "not overwritten"),
+        ("girder", "girder.ods", "girder.xlsx"),
+        ("girder", "no such folder/girder.xlsx", "no folder"),
+        ("bridge", "bridge.xlsx", "girder"),
+    ],
+)
+def test_a_template_that_cannot_be_started_is_refused_in_one_line(
+    tmp_path: Path, template: str, name: str, says: str
+) -> None:
+    there = tmp_path / "there.xlsx"
+    there.write_bytes(b"the engineer's own work")
+    result = process("start", template, tmp_path / name)
+    assert result.returncode == 4
+    assert says in result.stderr
+    assert len(result.stderr.splitlines()) == 1
+    assert there.read_bytes() == b"the engineer's own work"
+    assert list(tmp_path.iterdir()) == [there]
