@@ -1,0 +1,1 @@
+"""Every published value this project answers for, and what the functions give."""
