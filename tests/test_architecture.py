@@ -23,7 +23,7 @@ MAY_IMPORT = {
     "workbook": "errors",
     "hosts": "errors catalogue workbook",
     "check": "errors hosts workbook",
-    "templates": "errors catalogue workbook",
+    "templates": "errors catalogue hosts workbook",
     "cli": "errors geometry section catalogue workbook hosts check templates",
     # The package itself is the Python face of the catalogue; `python -m cellsection` is the command line.
     "__init__": "errors geometry section catalogue",
