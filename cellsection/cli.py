@@ -206,7 +206,12 @@ def functions(name: str | None) -> None:
 def start(template: str, out: Path) -> None:
     """Write a template workbook to fill in, under a new name.
 
-    TEMPLATE is girder, a built-up girder. A file that is there already is never overwritten.
+    A file that is there already is never overwritten.
+
+    \b
+    Templates:
+      girder              a built-up girder: parts, section, drawing, faults, checks
+      crane-hall-girder   the same filled in: a crane girder that is strengthened
 
     \b
     Example:

@@ -274,6 +274,13 @@ def test_a_template_is_started_and_holds(tmp_path: Path) -> None:
     assert run("check", out).exit_code == 0
 
 
+def test_every_template_is_named_in_the_help() -> None:
+    from cellsection.templates import TEMPLATES
+
+    shown = run("start", "--help").output
+    assert [name for name in TEMPLATES if f"\n    {name} " not in shown] == []
+
+
 @pytest.mark.parametrize(
     ("template", "name", "says"),
     [
