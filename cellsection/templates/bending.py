@@ -94,14 +94,14 @@ def _actions(book: Workbook, sheet: Worksheet) -> None:
     )
     for row, (text, symbol, value, unit, name, shown) in enumerate(rows, start=ACTIONS + 2):
         _line(sheet, row, text, symbol, unit)
-        put(sheet, f"D{row}", value, INPUT.but(align="right", format=shown))
-        name_range(book, name, f"{BENDING}!$D${row}")
+        put(sheet, f"E{row}", value, INPUT.but(align="right", format=shown))
+        name_range(book, name, f"{BENDING}!$E${row}")
     grades = DataValidation("list", formula1='"S235,S275,S355"', allow_blank=False)
     grades.errorTitle, grades.error, grades.showErrorMessage = "steel grade", "Choose S235, S275 or S355.", True
-    grades.add(f"D{ACTIONS + 1 + len(rows)}")
+    grades.add(f"E{ACTIONS + 1 + len(rows)}")
     sheet.add_data_validation(grades)
     top = ACTIONS + 2
-    put(sheet, f"H{top}", "yield strength by thickness, EN 10025-2", CAPTION)
+    put(sheet, f"H{top}", "yield strength by thickness, nominal, EN 10025-2", CAPTION)
     for column, text in zip("HIJK", ("up to", "S235", "S275", "S355"), strict=True):
         put(sheet, f"{column}{top + 1}", text, HEADER.but(align="right"))
     for row, values in enumerate(((40, 225, 265, 345), (16, 235, 275, 355)), start=top + 2):

@@ -37,7 +37,7 @@ Side: TypeAlias = Literal["l", "r", "t", "b"]
 POINTS = 49  # of an outline: corners, and arcs in steps fine enough for the eye
 CENTIMETRE = 360000  # in the units of a drawing
 WIDTH, HEIGHT = 16.6, 11.6  # cm of the chart
-BELOW, ABOVE = -0.64, 0.6  # what the chart shows of the frame; the section itself spans -0.5 to 0.5 at most
+BELOW, ABOVE = -0.64, 0.61  # what the chart shows of the frame; the section itself spans -0.5 to 0.5 at most
 ASIDE = (ABOVE - BELOW) / 2 * WIDTH / HEIGHT
 
 

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 import tempfile
 from datetime import datetime
 from pathlib import Path
@@ -17,6 +18,7 @@ if TYPE_CHECKING:
 __all__ = ["write_book"]
 
 STAMP = datetime(2026, 12, 1)  # the files tell the edition of the templates, not the hour of the build
+MODIFIED = re.compile(rb"(<dcterms:modified[^>]*>)[^<]*")
 ENGINE = 191029  # calculation engine an application names in the file; of its own age or newer, it trusts saved values
 
 
@@ -42,6 +44,8 @@ def _settle(source: Path, out: Path) -> None:
     with ZipFile(source) as parts, ZipFile(out, "w", ZIP_DEFLATED) as copy:
         for each in parts.infolist():
             content = parts.read(each)
+            if each.filename == "docProps/core.xml":
+                content = MODIFIED.sub(rb"\g<1>" + STAMP.isoformat().encode() + b"Z", content)
             entry = ZipInfo(each.filename, STAMP.timetuple()[:6])
             entry.compress_type = ZIP_DEFLATED
             entry.external_attr = 0o600 << 16
