@@ -65,19 +65,27 @@ def commands() -> None:
     """  # noqa: D301 - a \b keeps the lines below it as they are
 
 
-@commands.command()
+@commands.command(short_help="Recalculate saved workbooks and compare them with the file.")
 @click.argument("books", metavar="BOOK...", nargs=-1, required=True, type=click.Path(path_type=Path))
-@click.option("--relative", type=click.FloatRange(0, 1), default=1e-9, show_default=True, help="Relative tolerance.")
+@click.option(
+    "--relative",
+    metavar="NUMBER",
+    type=click.FloatRange(0, 1),
+    default=1e-9,
+    help="Relative tolerance, of the larger of the two values.  [default: 1e-9]",
+)
 @click.option(
     "--absolute",
+    metavar="NUMBER",
     type=click.FloatRange(0),
     default=1e-12,
-    show_default=True,
-    help="Absolute tolerance, in the unit of the cell. A number holds when it keeps either tolerance.",
+    help="Absolute tolerance, in the unit of the cell; a number holds when it keeps either.  [default: 1e-12]",
 )
 @click.option("--all", "every", is_flag=True, help="Show long lists, texts and formulas whole.")
 @click.option("--json", "as_json", is_flag=True, help="Print the whole result as JSON (docs/checking.md).")
-@click.option("--processes", type=click.IntRange(1), help="Books checked at a time.  [default: as many as pay]")
+@click.option(
+    "--processes", metavar="NUMBER", type=click.IntRange(1), help="Books checked at a time.  [default: as many as pay]"
+)
 @click.option("--trace", is_flag=True, help="Show the Python traceback of an internal fault.")
 def check(
     books: tuple[Path, ...],
