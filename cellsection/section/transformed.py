@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from math import fsum, hypot, sqrt
+from math import fsum, hypot, inf, sqrt
 from typing import TYPE_CHECKING, NamedTuple
 
 from cellsection.errors import InputError
@@ -56,18 +56,20 @@ def transformed(parts: Sequence[Part]) -> Transformed:
     for part in parts:
         if part.sign not in (1, -1):
             raise InputError(f"sign = {part.sign} is neither 1 nor -1", remedy="Enter 1 for solid, -1 for a cut-out")
-        if not part.n > 0.0:
-            raise InputError(f"n = {part.n:g} is not positive", remedy="Enter E of the part over E of the reference")
+        if not 0.0 < part.n < inf:
+            raise InputError(
+                f"n = {part.n:g} is not a positive number", remedy="Enter E of the part over E of the reference"
+            )
     rows = [weighted(part) for part in parts]
-    A, gross = fsum(row.A for row in rows), fsum(abs(row.A) for row in rows)
+    net, gross = fsum(row.A for row in rows), fsum(abs(row.A) for row in rows)
     smallest = ROUNDING * gross
-    if not A > smallest:
-        met = "negative" if A < -smallest else "zero"
+    if not net > smallest:
+        met = "negative" if net < -smallest else "zero"
         raise InputError(
             f"the net area is {met}: cut-outs take away all that solid parts give",
             remedy="Check the signs: 1 for solid, -1 for a cut-out",
         )
-    x, y = fsum(row.A * row.x for row in rows) / A, fsum(row.A * row.y for row in rows) / A
+    x, y = fsum(row.A * row.x for row in rows) / net, fsum(row.A * row.y for row in rows) / net
     Ix = fsum([row.Ix for row in rows] + [row.A * (row.y - y) ** 2 for row in rows])
     Iy = fsum([row.Iy for row in rows] + [row.A * (row.x - x) ** 2 for row in rows])
     Ixy = fsum([row.Ixy for row in rows] + [row.A * (row.x - x) * (row.y - y) for row in rows])
@@ -79,8 +81,8 @@ def transformed(parts: Sequence[Part]) -> Transformed:
             )
     larger = max(Ix, Iy)
     # Places are rounded, too: by an EPSILON of how far out they are, on an arm of about one radius of gyration.
-    rounding = ROUNDING * larger + 8.0 * EPSILON * gross * hypot(x, y) * sqrt(larger / A)
-    return Transformed(A, x, y, Ix, Iy, Ixy if abs(Ixy) > rounding else 0.0, rounding)
+    rounding = ROUNDING * larger + 8.0 * EPSILON * gross * hypot(x, y) * sqrt(larger / net)
+    return Transformed(net, x, y, Ix, Iy, Ixy if abs(Ixy) > rounding else 0.0, rounding)
 
 
 def radius_of_gyration(second_moment: float, area: float) -> float:
@@ -97,6 +99,10 @@ def radius_of_gyration(second_moment: float, area: float) -> float:
     return sqrt(second_moment / area)
 
 
-def named(part: Part) -> str:
-    """What a message calls the part: its label, else its row, else its shape."""
-    return part.label or (f"row {part.row}" if part.row is not None else part.shape)
+def named(part: Part, parts: Sequence[Part] = ()) -> str:
+    """What a message calls the part: its label, else its row, else its shape; the row too where `parts` share labels."""
+    row = "" if part.row is None else f"row {part.row}"
+    if not part.label:
+        return row or part.shape
+    shared = row and any(other.label == part.label for other in parts if other is not part)
+    return f"{part.label} ({row})" if shared else part.label
