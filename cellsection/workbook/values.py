@@ -59,6 +59,7 @@ class Area(Protocol):
     def value(self, row: int, column: int) -> Scalar:
         """The value at row, column of the area, counted from 1."""
         ...
+
     def cells(self) -> Iterator[Scalar]:
         """The values of the clipped area, row by row; blanks are None."""
         ...

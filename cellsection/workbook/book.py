@@ -1,0 +1,114 @@
+"""A saved workbook as plain data: what the readers fill and the evaluator works on.
+
+Cells are keyed by (row, column), counted from 1. A formula is written relative to the cell it was typed in; the
+children of a shared formula hold the very same Formula object as their master, so that it is compiled once.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, field
+from typing import Literal, TypeAlias
+
+from cellsection.workbook.values import Scalar
+
+__all__ = ["Book", "Bounds", "Formula", "Limits", "Position", "Sheet", "Table", "column_letters", "column_number"]
+
+Position: TypeAlias = tuple[int, int]
+Bounds: TypeAlias = tuple[int, int, int, int]  # top, left, bottom, right, ends included
+
+
+@dataclass(frozen=True, slots=True)
+class Limits:
+    """How much a book may ask for before it is refused, so that a hostile file costs seconds and not the machine."""
+
+    unzipped_bytes: int = 1_000_000_000
+    ratio: int = 2_000
+    parts: int = 20_000
+    cells: int = 20_000_000
+    array_cells: int = 5_000_000
+    formula_length: int = 100_000
+    nesting: int = 500
+    seconds: float = 300.0
+
+
+@dataclass(slots=True, eq=False)
+class Formula:
+    """A formula as written in its cell, without its leading sign. Compared by identity: children share their master's.
+
+    kind : an ordinary cell, an array formula over `area`, or a data table (which is not supported)
+    dynamic : written by an application with dynamic arrays, so that it spills instead of intersecting
+    language : the spelling of references and separators
+    """
+
+    text: str
+    row: int
+    column: int
+    kind: Literal["cell", "array", "data table", "missing"] = "cell"
+    area: Bounds | None = None
+    dynamic: bool = False
+    language: Literal["excel", "openformula"] = "excel"
+
+
+@dataclass(slots=True)
+class Sheet:
+    """One sheet: constants and saved values of formula cells in `values`, formulas in `formulas`."""
+
+    name: str
+    values: dict[Position, Scalar] = field(default_factory=dict)
+    formulas: dict[Position, Formula] = field(default_factory=dict)
+    bottom: int = 0
+    right: int = 0
+    part: str = ""
+    hidden_rows: frozenset[int] = frozenset()
+
+
+@dataclass(frozen=True, slots=True)
+class Table:
+    """A table that structured references name: its whole area with header and totals rows."""
+
+    name: str
+    sheet: str
+    area: Bounds
+    columns: tuple[str, ...]
+    header: bool = True
+    totals: bool = False
+
+
+@dataclass(slots=True)
+class Book:
+    """A whole workbook."""
+
+    path: str
+    format: Literal["xlsx", "ods"]
+    sheets: list[Sheet] = field(default_factory=list)
+    names: dict[tuple[str, str], Formula] = field(default_factory=dict)
+    tables: dict[str, Table] = field(default_factory=dict)
+    externals: dict[str, tuple[str, list[Sheet]]] = field(default_factory=dict)
+    date1904: bool = False
+    iterate: bool = False
+    notes: list[str] = field(default_factory=list)
+
+
+def column_letters(column: int) -> str:
+    """Letters of a column.
+
+    >>> column_letters(28)
+    'AB'
+    """
+    letters = ""
+    while column:
+        column, rest = divmod(column - 1, 26)
+        letters = chr(65 + rest) + letters
+    return letters
+
+
+def column_number(letters: str) -> int:
+    """Number of a column from its letters.
+
+    >>> column_number("AB")
+    28
+    """
+    number = 0
+    for letter in letters.upper():
+        number = number * 26 + ord(letter) - 64
+    return number

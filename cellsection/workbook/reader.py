@@ -1,0 +1,25 @@
+"""The face of the readers: a file of any supported kind in, a Book out."""
+
+from __future__ import annotations
+
+from pathlib import Path
+
+from cellsection.workbook.book import Book, Limits
+from cellsection.workbook.package import Package
+
+__all__ = ["read_book"]
+
+
+def read_book(path: str | Path, limits: Limits) -> Book:
+    """Read a saved workbook, .xlsx, .xlsm or .ods, told apart by content. Raises WorkbookError."""
+    package = Package(path, limits)
+    try:
+        if "content.xml" in package:
+            from cellsection.workbook.ods import read_ods
+
+            return read_ods(package, limits)
+        from cellsection.workbook.xlsx import read_xlsx
+
+        return read_xlsx(package, limits)
+    finally:
+        package.close()

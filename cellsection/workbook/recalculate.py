@@ -1,0 +1,275 @@
+"""A saved workbook recalculated: every formula computed anew from the constants, in the order the formulas demand."""
+
+from __future__ import annotations
+
+import sys
+from collections.abc import Callable, Iterator
+from functools import partial
+from pathlib import Path
+from typing import Any
+
+from cellsection.errors import FormulaError
+from cellsection.workbook.book import Book, Formula, Limits, Position, Sheet, column_letters
+from cellsection.workbook.calls import given_back
+from cellsection.workbook.coercion import NA, VALUE
+from cellsection.workbook.compile import Code, Compiler, intersected
+from cellsection.workbook.machine import CellArea, Machine, Pending, Place, Special, Taint, Unsupported
+from cellsection.workbook.nodes import Call
+from cellsection.workbook.relative import moved_text, relative_key
+from cellsection.workbook.results import FormulaCell, Recalculation, Status
+from cellsection.workbook.values import Array, ErrorValue, Scalar
+
+__all__ = ["recalculate", "recalculated"]
+
+Resolve = Callable[[str], "Callable[..., object] | None"]
+DEPTH = 6000  # Python frames allowed while a long formula is compiled and run
+
+
+def recalculate(path: str | Path, *, resolve: Resolve | None = None, limits: Limits | None = None) -> Recalculation:
+    """Read a workbook and recalculate it. The file is not changed.
+
+    resolve : gives the host's function for a name in capitals, or None; see hosts.headless
+    Raises WorkbookError where the file cannot be read; whatever is wrong with a formula is told by its cell's status.
+    """
+    from cellsection.workbook.reader import read_book
+
+    limits = limits or Limits()
+    return recalculated(read_book(path, limits), resolve, limits)
+
+
+def recalculated(book: Book, resolve: Resolve | None = None, limits: Limits | None = None) -> Recalculation:
+    """Recalculate a book that is already read."""
+    limits = limits or Limits()
+    machine = Machine(book, resolve, limits)
+    before = sys.getrecursionlimit()
+    sys.setrecursionlimit(max(before, DEPTH))
+    try:
+        Driver(machine).run()
+    finally:
+        sys.setrecursionlimit(before)
+    cells = [cell for index, sheet in enumerate(book.sheets) for cell in formula_cells(machine, index, sheet)]
+    return Recalculation(book.path, tuple(s.name for s in book.sheets), cells, [*book.notes, *sorted(machine.notes)])
+
+
+class Driver:
+    """Computes every formula cell; what a formula waits for is computed first, on an explicit stack."""
+
+    def __init__(self, machine: Machine) -> None:
+        self.machine = machine
+        self.compiler = Compiler(machine)
+        self.codes: dict[Any, Code | FormulaError] = {}
+        self.open: dict[Place, None] = {}  # started and on hold, in the order they wait for one another
+        self.count = 0
+
+    def run(self) -> None:
+        """Compute all formula cells."""
+        for index, sheet in enumerate(self.machine.book.sheets):
+            store = self.machine.stores[index]
+            for position in sheet.formulas:
+                if self.machine.is_pending(store.get(position)):
+                    self.settle((index, position))
+
+    def settle(self, place: Place) -> None:
+        """Compute one cell and all it waits for."""
+        machine, stack, waiting = self.machine, [place], self.open
+        while stack:
+            here = stack[-1]
+            index, position = here
+            if not machine.is_pending(machine.stores[index].get(position)):
+                stack.pop()
+                continue
+            owner = machine.owners[index].get(position)
+            if owner is not None:
+                here = (index, owner)
+            waiting[here] = None
+            try:
+                self.compute(here)
+            except Pending as hold:
+                needed = [self.owning(each) for each in hold.places]
+                circle = next((each for each in needed if each in waiting), None)
+                if circle is None:
+                    stack.extend(needed)
+                    continue
+                self.close_circle(circle)
+            waiting.pop(here, None)
+
+    def owning(self, place: Place) -> Place:
+        """The cell whose formula fills this one."""
+        index, position = place
+        return (index, self.machine.owners[index].get(position, position))
+
+    def close_circle(self, start: Place) -> None:
+        """Cells that wait for one another in a circle keep their saved values and say so."""
+        order = list(self.open)
+        circle = order[order.index(start) :]
+        names = [self.machine.address(*place) for place in circle]
+        shown = names if len(names) <= 12 else [*names[:11], f"... {len(names) - 12} more ...", names[-1]]
+        reason = "circular reference " + " -> ".join([*shown, names[0]])
+        if self.machine.book.iterate:
+            reason += "; the book asks for iterative calculation, which is not carried out"
+        for index, position in circle:
+            self.machine.settle_saved(index, position, Taint(Status.CYCLE, reason))
+            self.open.pop((index, position), None)
+
+    def compute(self, place: Place) -> None:
+        """Run one formula and keep what it gives."""
+        machine = self.machine
+        index, position = place
+        machine.sheet, machine.own = index, machine.stores[index]
+        machine.row, machine.column = position
+        machine.taint = None
+        self.count += 1
+        if not self.count % 512:
+            machine.check_time()
+        formula = machine.book.sheets[index].formulas[position]
+        try:
+            code = self.code(formula, index)
+            if isinstance(code, FormulaError):
+                raise Unsupported(code.construct if code.construct != code.fault else code.fault)
+            value = code(machine)
+        except Unsupported as finding:
+            machine.settle_saved(index, position, Taint(Status.UNSUPPORTED, finding.construct))
+            return
+        except RecursionError:
+            machine.settle_saved(index, position, Taint(Status.UNSUPPORTED, "formula nested too deeply"))
+            return
+        taint = machine.taint
+        if taint is not None and taint.status is not Status.VOLATILE:
+            machine.settle_saved(index, position, taint)
+            return
+        if formula.kind == "array":
+            self.fill(place, formula, value, taint)
+            return
+        if formula.dynamic and isinstance(value, (tuple, CellArea)):
+            self.fill(place, formula, value, taint)
+            return
+        single = given_back(intersected(machine, value))
+        if single is None:
+            single = 0.0
+        if not isinstance(single, (float, str, bool, ErrorValue)):
+            single = ErrorValue("#CALC!", "the formula gives a function, not a value")
+        machine.own[position] = Special(single, taint) if taint is not None else single
+
+    def fill(self, place: Place, formula: Formula, value: Any, taint: Taint | None) -> None:
+        """Spread an array formula's result over its area: one value fills it, what is missing is #N/A."""
+        machine, (index, (row, column)) = self.machine, place
+        array: Array = (
+            value.whole() if isinstance(value, CellArea) else value if isinstance(value, tuple) else ((value,),)
+        )
+        if array and isinstance(array[0], CellArea):
+            array = ((VALUE,),)
+        rows, columns = len(array), len(array[0]) if array else 0
+        area = formula.area or (row, column, row, column)
+        if formula.dynamic:
+            area = (row, column, row + rows - 1, column + columns - 1)
+        store, owners = machine.stores[index], machine.owners[index]
+        for r in range(area[0], area[2] + 1):
+            for c in range(area[1], area[3] + 1):
+                i, j = (0 if rows == 1 else r - row), (0 if columns == 1 else c - column)
+                single: Scalar = array[i][j] if i < rows and j < columns else NA
+                single = 0.0 if single is None else given_back(single)
+                if (r, c) != (row, column) and owners.get((r, c)) != (row, column):
+                    if formula.dynamic and (r, c) not in store:
+                        owners[r, c] = (row, column)
+                    else:
+                        continue
+                store[r, c] = Special(single, taint) if taint is not None else single
+        for position, owner in owners.items():
+            if owner == (row, column) and machine.is_pending(store.get(position)):
+                store.pop(position)
+        machine.filled[index, (row, column)] = area
+        bottom, right = machine.extent[index]
+        machine.extent[index] = (max(bottom, area[2]), max(right, area[3]))
+
+    def code(self, formula: Formula, index: int) -> Code | FormulaError:
+        """The compiled form of a formula: one for all that read alike relative to their cell."""
+        known = self.codes.get(formula)
+        if known is not None:
+            return known
+        if formula.kind == "data table":
+            key: Any = FormulaError("data tables are not supported", construct="data table")
+            self.codes[formula] = key
+            return key  # type: ignore[no-any-return]
+        if formula.kind == "missing":
+            lost = FormulaError(
+                "the master of this shared formula is missing", construct="shared formula without master"
+            )
+            self.codes[formula] = lost
+            return lost
+        limit = self.machine.limits.formula_length
+        if len(formula.text) > limit:
+            long = FormulaError(f"a formula of more than {limit:,} characters", construct="overlong formula")
+            self.codes[formula] = long
+            return long
+        spread = formula.kind == "array" or formula.dynamic
+        key = (
+            index,
+            spread,
+            formula.language,
+            relative_key(formula.text, formula.row, formula.column, formula.language),
+        )
+        code = self.codes.get(key)
+        if code is None:
+            try:
+                code = self.compiler.whole(formula, index)
+            except FormulaError as problem:
+                code = problem
+            self.codes[key] = code
+        self.codes[formula] = code
+        return code
+
+
+def formula_cells(machine: Machine, index: int, sheet: Sheet) -> Iterator[FormulaCell]:
+    """The formula cells of a sheet, row by row, the areas of array formulas included."""
+    store, owners = machine.stores[index], machine.owners[index]
+    for position in sorted({*sheet.formulas, *owners}):
+        owner = owners.get(position, position)
+        formula = sheet.formulas[owner]
+        found = store.get(position)
+        status, reason, value = Status.RECALCULATED, "", found
+        if isinstance(found, Special):
+            value = found.value
+            if found.taint is not None:
+                status, reason = found.taint.status, found.taint.reason
+        yield FormulaCell(
+            sheet.name,
+            f"{column_letters(position[1])}{position[0]}",
+            sheet.values.get(position),
+            value,  # type: ignore[arg-type]
+            status,
+            call=outermost(formula.text),
+            reason=reason,
+            has_saved=position in sheet.values,
+            text=partial(shown, formula, owner),
+        )
+
+
+def outermost(text: str) -> str:
+    """Name of the function that a formula is a call of, "" where it is not one call."""
+    head, bracket, _ = text.partition("(")
+    if (
+        not bracket
+        or not text.rstrip().endswith(")")
+        or not head.strip()
+        .replace(".", "")
+        .replace("_", "")
+        .replace("[", "")
+        .replace("]", "")
+        .replace("!", "")
+        .isalnum()
+    ):
+        return ""
+    from cellsection.workbook.grammar import parsed
+
+    try:
+        tree = parsed(text)
+    except FormulaError:
+        return ""
+    return tree.name if isinstance(tree, Call) else ""
+
+
+def shown(formula: Formula, position: Position) -> str:
+    """A formula as the engineer reads it in its own cell."""
+    text = moved_text(formula.text, position[0] - formula.row, position[1] - formula.column, formula.language)
+    sign = "=" if formula.language == "excel" else "of:="
+    return f"{{{sign}{text}}}" if formula.kind == "array" and not formula.dynamic else f"{sign}{text}"
