@@ -1,0 +1,202 @@
+"""How each kind of argument is read from what a cell hands over: in one place, so that all functions agree.
+
+A host hands over a number, text, logical, None (blank, or left out), or rows of those. A single cell counts as a
+1 x 1 table where a table is wanted, and a 1 x 1 table as a single cell where a single value is wanted.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Sequence
+from dataclasses import dataclass
+from math import isfinite
+from typing import Any, NamedTuple, TypeAlias
+
+from cellsection.errors import InputError
+from cellsection.section.parts import PartRow, read_rows
+
+__all__ = [
+    "Argument", "ReadBlock", "anything", "block", "blocks", "choice", "column", "number", "position", "table", "words",
+]  # fmt: skip
+
+Cell: TypeAlias = float | str | bool | None
+Raw: TypeAlias = Cell | Sequence[Sequence[Cell]]
+
+
+class ReadBlock(NamedTuple):
+    """A parts block as a function gets it: its rows, and its length unit ("" where its headers name none)."""
+
+    rows: tuple[PartRow, ...]
+    unit: str
+
+
+@dataclass(frozen=True, slots=True)
+class Argument:
+    """An argument of a cell function.
+
+    kind : what it is, in a word or two, for the manual
+    reader : turns what the cell hands over into what the formula takes
+    dimension : L, L², ° or "" where it has none
+    default : what stands for it where it is left out, as the manual writes it
+    """
+
+    name: str
+    kind: str
+    reader: Callable[[Raw], Any]
+    help: str
+    dimension: str = ""
+    optional: bool = False
+    default: str = ""
+    repeats: bool = False
+
+    def read(self, raw: Raw, *, given: bool, number: int = 1) -> Any:
+        """The argument's value for the formula; None where it is left out or blank and may be.
+
+        Raises InputError that names the argument (and which of the repeated ones).
+        """
+        name = f"{self.name} {number}" if self.repeats else self.name
+        value = single(raw)
+        if value is None or value == "":
+            if self.optional:
+                return None
+            state = "is blank" if given else "is missing"
+            raise InputError(f"the argument {state}", remedy=f"Give {self.help}", argument=name)
+        try:
+            return self.reader(raw)
+        except InputError as problem:
+            if problem.argument:
+                raise
+            raise InputError(
+                problem.fault, remedy=problem.remedy, argument=name, row=problem.row, column=problem.column
+            ) from None
+
+
+def single(raw: Raw) -> Any:
+    """The value of a single cell, also where it comes as a table of one; a larger table as it is."""
+    if isinstance(raw, (tuple, list)) and len(raw) == 1 and len(raw[0]) == 1:
+        return raw[0][0]
+    return raw
+
+
+def rows_of(raw: Raw) -> tuple[tuple[Cell, ...], ...]:
+    """A table, also where it is a single cell."""
+    if isinstance(raw, (tuple, list)):
+        return tuple(tuple(row) for row in raw)
+    return ((raw,),)  # type: ignore[return-value]
+
+
+def plain_number(cell: Any, row: int | None = None, column: str = "") -> float:
+    """A cell that must hold a number."""
+    if isinstance(cell, bool) or not isinstance(cell, (int, float)):
+        shown = "a blank cell" if cell is None or cell == "" else f'"{cell}"' if isinstance(cell, str) else f"{cell}"
+        remedy = "Retype as a number" if isinstance(cell, str) and cell else "Enter a number"
+        raise InputError(f"{shown} stands where a number should", remedy=remedy, row=row, column=column)
+    if not isfinite(cell):
+        raise InputError(f"{cell} is not a finite number", remedy="Enter a number", row=row, column=column)
+    return float(cell)
+
+
+def block(name: str, text: str = "the parts block: the range with its header row") -> Argument:
+    """A parts block."""
+    return Argument(name, "parts block", lambda raw: ReadBlock(*read_rows(rows_of(raw))), text)
+
+
+def blocks(name: str, text: str) -> Argument:
+    """Parts blocks, one or more."""
+    return Argument(name, "parts blocks", lambda raw: ReadBlock(*read_rows(rows_of(raw))), text, repeats=True)
+
+
+def number(name: str, text: str, dimension: str = "", default: str = "", *, optional: bool = False) -> Argument:
+    """A number."""
+
+    def read(raw: Raw) -> float:
+        value = single(raw)
+        if isinstance(value, (tuple, list)):
+            raise InputError("a range stands where one number should", remedy="Point at one cell")
+        return plain_number(value)
+
+    return Argument(name, "number", read, text, dimension, optional or bool(default), default)
+
+
+def choice(name: str, text: str, options: Sequence[str]) -> Argument:
+    """One of a few words."""
+
+    def read(raw: Raw) -> str:
+        value = single(raw)
+        if not isinstance(value, str) or value.strip().lower() not in options:
+            raise InputError(
+                f"{value!r} is not one of {', '.join(options)}", remedy=f"Choose from {', '.join(options)}"
+            )
+        return value.strip().lower()
+
+    return Argument(name, "word", read, text)
+
+
+def words(name: str, text: str, options: Sequence[str], default: str) -> Argument:
+    """A word out of a list, or a range of them; given to the formula as rows, or one word alone."""
+    known = {option.casefold(): option for option in options}
+
+    def one(cell: Any, row: int | None) -> str:
+        option = known.get(cell.strip().casefold()) if isinstance(cell, str) else None
+        if option is None:
+            shown = "a blank cell" if cell is None or cell == "" else repr(cell)
+            raise InputError(f"{shown} is no symbol here", remedy=f"Choose from {', '.join(options)}", row=row)
+        return option
+
+    def read(raw: Raw) -> str | tuple[tuple[str, ...], ...]:
+        value = single(raw)
+        if not isinstance(value, (tuple, list)):
+            return one(value, None)
+        return tuple(tuple(one(cell, k) for cell in row) for k, row in enumerate(value, start=1))
+
+    return Argument(name, "word or words", read, text, "", True, default)
+
+
+def table(name: str, text: str, dimension: str, *, blanks: bool = False) -> Argument:
+    """A table of numbers; `blanks` where cells may be left blank (None)."""
+
+    def read(raw: Raw) -> tuple[tuple[float | None, ...], ...]:
+        return tuple(
+            tuple(
+                None if blanks and (cell is None or cell == "") else plain_number(cell, r, str(c))
+                for c, cell in enumerate(row, start=1)
+            )
+            for r, row in enumerate(rows_of(raw), start=1)
+        )
+
+    return Argument(name, "numbers", read, text, dimension)
+
+
+def column(name: str, text: str, dimension: str = "", default: str = "", *, optional: bool = False) -> Argument:
+    """A value for all parts, or a column with one for each; read as it is, for the parts reader to judge."""
+
+    def read(raw: Raw) -> tuple[Cell, ...]:
+        rows = rows_of(raw)
+        if len(rows) == 1:
+            return rows[0]
+        if any(len(row) != 1 for row in rows):
+            raise InputError("more than one column is given", remedy="Give one value, or one column of values")
+        return tuple(row[0] for row in rows)
+
+    return Argument(name, "value or column", read, text, dimension, optional or bool(default), default)
+
+
+def position(name: str, text: str) -> Argument:
+    """A part, by its label or its number."""
+
+    def read(raw: Raw) -> float | str:
+        value = single(raw)
+        return value.strip() if isinstance(value, str) else plain_number(value)
+
+    return Argument(name, "label or number", read, text)
+
+
+def anything(name: str, text: str) -> Argument:
+    """A value of any kind."""
+
+    def read(raw: Raw) -> Cell:
+        value = single(raw)
+        if isinstance(value, (tuple, list)):
+            raise InputError("a range stands where one value should", remedy="Point at one cell")
+        return value  # type: ignore[no-any-return]
+
+    return Argument(name, "value", read, text)

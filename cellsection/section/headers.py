@@ -1,0 +1,131 @@
+"""The header row of a parts block: which column holds what, and in which length unit.
+
+Columns are found by header, in any order, in any case. A length column may carry its unit in brackets, `b [mm]`;
+lengths are converted to the first unit met. A header that is not known is ignored, as notes and marks are, unless it
+looks like a slip for a known one: a misspelt dimension must not be lost.
+"""
+
+from __future__ import annotations
+
+import re
+from collections.abc import Sequence
+from dataclasses import dataclass
+from difflib import get_close_matches
+
+from cellsection.errors import InputError
+from cellsection.geometry import SHAPES
+
+__all__ = ["LENGTHS", "ORDER", "UNITS", "Column", "read_header"]
+
+UNITS = {"mm": 0.001, "cm": 0.01, "m": 1.0, "in": 0.0254, "ft": 0.3048}  # metres; the inch and foot of 1959
+
+ANGLES = frozenset(("angle", "turn"))
+PLAIN = frozenset(("slope", "sign", "n", "strength", "stage"))
+WORDS = frozenset(("part", "shape", "datum", "mirrored", "no tension"))
+DIMENSIONS = tuple(dict.fromkeys(name for shape in SHAPES.values() for name in (*shape.required, *shape.optional)))
+LENGTHS = frozenset(("x", "y", *DIMENSIONS)) - ANGLES - PLAIN
+ORDER = (  # the columns of a block that a function returns, as far as they are used
+    "part", "shape", "b", "h", "d", "b2", "a", "r", "ro", "ri", "r2", "t", "tw", "tf", "tf2", "c", "angle", "slope",
+    "x", "y", "x2", "y2", "turn", "sign", "n", "datum", "mirrored", "strength", "stage", "no tension",
+)  # fmt: skip
+KNOWN = frozenset(ORDER)
+HEADER = re.compile(r"\s*(?P<name>[^\[\]]*?)\s*(?:\[\s*(?P<unit>[^\[\]]*?)\s*\])?\s*")
+UNIT_BEHIND = re.compile(r"(?:mm|cm|m|in|ft|°|deg)$")
+
+
+@dataclass(frozen=True, slots=True)
+class Column:
+    """A column that counts: its position from 0, its name, its header as typed, and the factor to the block's unit."""
+
+    index: int
+    name: str
+    header: str
+    factor: float = 1.0
+
+
+def read_header(header: Sequence[object], used: Sequence[bool]) -> tuple[tuple[Column, ...], str]:
+    """The columns that count, and the block's length unit ("" where none is named).
+
+    used : for each column, whether a number stands below its header
+    Raises InputError (row 1) for a missing `shape`, a doubled or misspelt header, an unknown unit, and length columns
+    of which some name a unit and some do not.
+    """
+    columns: list[Column] = []
+    unit, unitless = "", ""
+    for index, cell in enumerate(header):
+        if cell is None:
+            continue
+        if not isinstance(cell, str):
+            raise InputError(
+                f"the header of column {index + 1} is {cell!r}, not text",
+                remedy="Let the first row of the range be the headers: shape, b, h, x, y",
+                row=1,
+            )
+        if not cell.strip():
+            continue
+        match = HEADER.fullmatch(cell)
+        name = " ".join(match["name"].lower().split()) if match else ""
+        if match is None or name not in KNOWN:
+            refuse_slip(cell.strip(), used[index])
+            continue
+        if any(column.name == name for column in columns):
+            raise InputError(f'there are two columns "{name}"', remedy="Keep one of them", row=1, column=cell.strip())
+        factor, named = unit_factor(name, match["unit"], cell.strip(), unit)
+        unit = unit or named
+        if name in LENGTHS and not named and used[index]:
+            unitless = unitless or cell.strip()
+        columns.append(Column(index, name, cell.strip(), factor))
+    if not any(column.name == "shape" for column in columns):
+        raise InputError(
+            'there is no column "shape"',
+            remedy="Include the header row in the range, and name a shape in each row",
+            row=1,
+        )
+    if unit and unitless:
+        raise InputError(
+            f"{unitless} names no length unit while another column is in {unit}",
+            remedy=f"Write {unitless} [{unit}], or leave the unit away everywhere",
+            row=1,
+            column=unitless,
+        )
+    return tuple(columns), unit
+
+
+def refuse_slip(header: str, used: bool) -> None:
+    """An unknown header with numbers below it that reads like a known one."""
+    bare = re.sub(r"[^a-z0-9°]", "", header.lower())
+    candidates = [bare, UNIT_BEHIND.sub("", bare)]
+    meant = next((name for name in ORDER for each in candidates if each == name.replace(" ", "")), None)
+    if meant is None:
+        long = [name for name in ORDER if len(name) > 3]
+        meant = next(iter(get_close_matches(bare, long, 1, 0.8)), None)
+    if meant is not None and (used or meant in WORDS):
+        raise InputError(
+            f'the header "{header}" is not known but looks like "{meant}"',
+            remedy=f'Write "{meant}" with its unit in square brackets, or give the column another name',
+            row=1,
+            column=header,
+        )
+
+
+def unit_factor(name: str, unit: str | None, header: str, first: str) -> tuple[float, str]:
+    """What a column's numbers are multiplied by, and the length unit it names."""
+    if unit is None or name in WORDS or (name in PLAIN and unit in ("-", "", "%")):
+        if unit == "%" and name in PLAIN:
+            return 0.01, ""
+        return 1.0, ""
+    if name == "strength":
+        return 1.0, ""
+    if name in ANGLES:
+        if unit.lower() in ("°", "deg", "degrees"):
+            return 1.0, ""
+        raise InputError(
+            f'"{unit}" is not the unit of an angle', remedy=f"Give {name} in degrees, {name} [°]", row=1, column=header
+        )
+    if name in PLAIN:
+        raise InputError(f"{name} has no unit", remedy=f"Write the header as {name}", row=1, column=header)
+    if unit not in UNITS:
+        raise InputError(
+            f'"{unit}" is not a known length unit', remedy=f"Use one of {', '.join(UNITS)}", row=1, column=header
+        )
+    return (UNITS[unit] / UNITS[first] if first and first != unit else 1.0), unit
