@@ -188,14 +188,16 @@ class _Examination:
                 cause_of.update({(cell.sheet, cell.address): (status, reason) for cell in cells})
         dependants: dict[tuple[Status, str], list[FormulaCell]] = defaultdict(list)
         for reason, cells in self.unverified[Status.NOT_VERIFIED].items():
-            cause = cause_of.get(split_address(reason), (Status.NOT_VERIFIED, reason))
+            named = reason.removeprefix("depends on ").partition(": ")[0]  # no sheet name has a colon in it
+            cause = cause_of.get(split_address(named), (Status.NOT_VERIFIED, reason))
             dependants[cause] += cells
         found: list[Finding] = []
         for reason, cells in self.unverified[Status.UNSUPPORTED].items():
             after = _cells(dependants.pop((Status.UNSUPPORTED, reason), []))
             found.append(Unsupported(reason, _spot(cells[0]), _cells(cells), after))
         for reason, cells in self.unverified[Status.CYCLE].items():
-            found.append(Cycle(reason, _cells(cells), _cells(dependants.pop((Status.CYCLE, reason), []))))
+            circle = reason.removeprefix("circular reference ")
+            found.append(Cycle(circle, _cells(cells), _cells(dependants.pop((Status.CYCLE, reason), []))))
         found += [NotVerified(reason, _cells(cells)) for (_, reason), cells in dependants.items()]
         return found
 
