@@ -107,7 +107,7 @@ def test_the_worst_of_many_books_counts(good: Path, bad: Path, partly: Path) -> 
 
 def test_many_books_end_with_a_count(good: Path, bad: Path) -> None:
     closing = run("check", good, bad, good).output.splitlines()[-1]
-    assert closing == "3 books: 2 hold, 1 does not hold. Tolerance: relative 1e-09, absolute 1e-12."
+    assert closing == "3 books: 2 hold, 1 does not hold. Tolerance: relative 1e-9, absolute 1e-12."
 
 
 def test_a_folder_stands_for_its_books(good: Path, bad: Path, tmp_path: Path) -> None:

@@ -40,7 +40,8 @@ class Tolerance:
         return math.isclose(saved, value, rel_tol=self.relative, abs_tol=self.absolute)
 
     def __str__(self) -> str:
-        return f"relative {self.relative:g}, absolute {self.absolute:g}"
+        relative, absolute = (f"{each:g}".replace("e-0", "e-") for each in (self.relative, self.absolute))
+        return f"relative {relative}, absolute {absolute}"
 
 
 def kind(value: Scalar) -> str:
