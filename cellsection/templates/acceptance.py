@@ -39,7 +39,12 @@ def acceptance_checks(book: Workbook, sheet: Worksheet) -> None:
         ("second moment Iy", "=Iy", "by hand: own Iy + A·dx²", f"=I{h}+M{h}"),
         ("second moment Ix", "=Ix", "the ledger's totals", f"=H{t}+L{t}"),
         ("second moment Iy", "=Iy", "the ledger's totals", f"=I{t}+M{t}"),
-        ("Ix about the axes typed in, CS_ABOUT", "=INDEX(CS_ABOUT(parts,0,0),1)", "Ix + A·y²", "=Ix+area*centroid_y^2"),
+        (
+            "Ix about the axes typed in, CS_ABOUT",
+            "=INDEX(CS_ABOUT(parts,0,0),1,2)",
+            "Ix + A·y²",
+            "=Ix+area*centroid_y^2",
+        ),
         ("principal moments I1 + I2", '=SUM(CS_PRINCIPAL(parts,"I1"),CS_PRINCIPAL(parts,"I2"))', "Ix + Iy", "=Ix+Iy"),
     )
     for row, (text, value, against, reference) in enumerate(checks, start=head + 1):

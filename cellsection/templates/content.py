@@ -47,6 +47,7 @@ class Content:
     checked_by: str = ""
     issued: date | None = None
     revision: str = ""
+    gap: float | None = None  # pieces up to this far apart count as connected
     notes: tuple[str, ...] = field(default=())
 
 

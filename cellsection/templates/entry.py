@@ -53,8 +53,8 @@ MEANING = {
 }
 
 
-def guard_inputs(sheet: Worksheet, first: int, last: int) -> None:
-    """Set the limits of every input column, from the first to the last row of the table."""
+def guard_inputs(sheet: Worksheet, first: int, last: int, gap: str) -> None:
+    """Set the limits of every input column, from the first to the last row of the table, and of the gap."""
     _list(sheet, f"C{first}:C{last}", tuple(SHAPES), "shape", _shapes())
     _list(sheet, f"N{first}:N{last}", ("1", "-1"), "sign", "1 for solid, -1 for a cut-out. Blank is 1.")
     datum = "The point of the part that x and y locate; the part is turned about it. Blank is centroid."
@@ -78,6 +78,8 @@ def guard_inputs(sheet: Worksheet, first: int, last: int) -> None:
     _number(sheet, f"M{first}:M{last}", ("between", "-360", "360"), "turn", turn, "a number from -360 to 360")
     ratio = "modular ratio, E of the part over E of the reference material. Blank is 1."
     _number(sheet, f"O{first}:O{last}", ("greaterThan", "0", None), "n", ratio, "a number above 0")
+    bridged = "distance that lacing, welds or the material beside a hole bridge. Blank: pieces must touch."
+    _number(sheet, gap, ("between", "0", "1E+6"), "gap", bridged, "0 or a number above")
 
 
 def _shapes() -> str:

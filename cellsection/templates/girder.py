@@ -39,7 +39,7 @@ VALUES = RESULTS + 2  # first row of CS_TOTALS
 FAULTS = RESULTS + 22
 NOTES = FAULTS + FAULT_ROWS + 5
 CHART_AT = f"F{RESULTS + 1}"
-WIDTHS = {"A": 4.3, "B": 21, "C": 12.5, "D": 10.5, "E": 10.5} | dict.fromkeys("FGHIJ", 7.6)
+WIDTHS = {"A": 4.3, "B": 21, "C": 12.5, "D": 11.5, "E": 11} | dict.fromkeys("FGHIJ", 7.6)
 WIDTHS |= {"K": 8, "L": 8, "M": 6.5, "N": 5.5, "O": 5.5, "P": 12}
 
 # What the rows of CS_TOTALS mean, the name of their value, and how it is shown.
@@ -69,10 +69,10 @@ def girder_sheet(book: Workbook, content: Content) -> Worksheet:
     _title_block(sheet, content)
     _parts(sheet, content)
     _results(book, sheet)
-    _faults(book, sheet)
+    _faults(book, sheet, content)
     _notes(sheet, content)
     name_range(book, "parts", f"{GIRDER}!$B${HEAD}:$P${LAST}")
-    guard_inputs(sheet, FIRST, LAST)
+    guard_inputs(sheet, FIRST, LAST, f"P{FAULTS + 2}")
     furnish(sheet, f"A1:P{NOTES + 7}")
     sheet.freeze_panes = "A3"
     return sheet
@@ -175,13 +175,16 @@ def _results(book: Workbook, sheet: Worksheet) -> None:
         name_range(book, f"modulus_{word}", f"{GIRDER}!$E${row}")
 
 
-def _faults(book: Workbook, sheet: Worksheet) -> None:
+def _faults(book: Workbook, sheet: Worksheet, content: Content) -> None:
     heading(sheet, FAULTS, "4  Faults", "A:P", "double-counted overlaps, cut-outs outside the solid, loose pieces")
     sheet.row_dimensions[FAULTS + 1].height = 6
     verdict = f"B{FAULTS + 2}"
-    array(sheet, verdict, "=CS_FAULTS(parts)", Look(bold=True))
+    array(sheet, verdict, "=CS_FAULTS(parts,gap)", Look(bold=True))
     judged(sheet, verdict, f'{verdict}="no faults"', f'{verdict}<>"no faults"')
     name_range(book, "faults", f"{GIRDER}!$B${FAULTS + 2}")
+    put(sheet, f"O{FAULTS + 2}", "pieces up to this far apart count as connected", CAPTION.but(align="right", size=10))
+    put(sheet, f"P{FAULTS + 2}", content.gap, _beside(INPUT, "K"))
+    name_range(book, "gap", f"{GIRDER}!$P${FAULTS + 2}")
     areas = ("B#", "C#:F#", "G#:K#", "L#:P#")  # part, fault, effect, remedy
     for number in range(1, FAULT_ROWS + 1):
         row = FAULTS + 2 + number

@@ -145,12 +145,12 @@ def _lines(sheet: Worksheet) -> None:
 def _faults(book: Workbook, sheet: Worksheet) -> None:
     heading(sheet, FAULTS, "Faults", "A:M")
     put(sheet, f"A{FAULTS + 1}", "number of faults")
-    put(sheet, f"B{FAULTS + 1}", '=IF(faults="no faults",0,ROWS(CS_FAULTS(parts)))', PLAIN.but(format="0"))
+    put(sheet, f"B{FAULTS + 1}", '=IF(faults="no faults",0,ROWS(CS_FAULTS(parts,gap)))', PLAIN.but(format="0"))
     name_range(book, "fault_count", f"{WORKINGS}!$B${FAULTS + 1}")
     first, last = FAULTS + 2, FAULTS + 1 + FAULT_ROWS
     for number, row in enumerate(range(first, last + 1), start=1):
         put(sheet, f"A{row}", number, PLAIN.but(align="right"))
-    array(sheet, f"B{first}:E{last}", f'=IF($A${first}:$A${last}<=fault_count,CS_FAULTS(parts),"")')
+    array(sheet, f"B{first}:E{last}", f'=IF($A${first}:$A${last}<=fault_count,CS_FAULTS(parts,gap),"")')
     name_range(book, "fault_list", f"{WORKINGS}!$B${first}:$E${last}")
 
 
