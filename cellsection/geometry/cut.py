@@ -16,8 +16,8 @@ if TYPE_CHECKING:
 
 __all__ = ["cut", "spans"]
 
-# A corner nearer to the line than this share of the region's size lies on it.
-ON_THE_LINE = 1e-12
+# A corner nearer to the line than this share of the region's size or coordinates lies on it.
+ON_THE_LINE = 4e-14
 
 
 def cut(region: Region, x: float, y: float, turn: float = 0.0) -> tuple[Region | None, Region | None]:
@@ -34,7 +34,7 @@ def cut(region: Region, x: float, y: float, turn: float = 0.0) -> tuple[Region |
     c, s = cosine_sine(turn)
     level = c * (y - region.y) - s * (x - region.x)
     left, low, right, high = box(segment for loop in region.local for segment in loop)
-    near = ON_THE_LINE * max(right - left, high - low)
+    near = ON_THE_LINE * max(right - left, high - low, *map(abs, (left, low, right, high)))
     pieces = [_pieces(loop, c, s, level, near) for loop in region.local]
     sides = []
     for side in (1, -1):

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from math import sqrt
+from math import cos, radians, sin, sqrt, tan
 
 from cellsection.errors import InputError
 from cellsection.geometry.limits import below, positive
@@ -97,9 +97,13 @@ def segment(r: float, angle: float) -> Region:
     6.283185
     """
     _part_of_a_turn(angle, "a segment")
-    arcs = arc_chain(0.0, 0.0, r, 90.0 - angle / 2.0, angle)
-    (x, y), (x1, y1) = (arcs[-1].x2, arcs[-1].y2), (arcs[0].x1, arcs[0].y1)
-    return Region(((*arcs, Line(x, y, x1, y1)),))
+    # About the middle of the chord: the centre may be a thousand times as far away as the segment is high.
+    half, level = r * sin(radians(angle) / 2.0), r * cos(radians(angle) / 2.0)
+    if angle > 180.0:
+        arcs = arc_chain(0.0, -level, r, 90.0 - angle / 2.0, angle)
+        return Region(((*arcs, Line(arcs[-1].x2, arcs[-1].y2, arcs[0].x1, arcs[0].y1)),), y=level)
+    arc = Arc.circular(half, 0.0, -half, 0.0, tan(radians(angle) / 4.0))
+    return Region(((arc, Line(-half, 0.0, half, 0.0)),), y=level)
 
 
 def ellipse(b: float, h: float) -> Region:

@@ -100,7 +100,7 @@ def radius_of_gyration(second_moment: float, area: float) -> float:
 
 
 def named(part: Part, parts: Sequence[Part] = ()) -> str:
-    """What a message calls the part: its label, else its row, else its shape; the row too where `parts` share labels."""
+    """What a message calls the part: its label, else its row or shape; the row too where `parts` share the label."""
     row = "" if part.row is None else f"row {part.row}"
     if not part.label:
         return row or part.shape
