@@ -20,6 +20,7 @@ from mpmath import mp, mpf
 __all__ = [
     "HandTotals",
     "angle",
+    "arc",
     "box",
     "channel",
     "i_section",
@@ -183,9 +184,10 @@ def arc(
 def tapered_channel(
     h: float, b: float, tw: float, tf: float, at: float, slope: float, r1: float, r2: float
 ) -> HandTotals:
-    """Channel whose flanges are tf thick at the distance `at` from the back of the web, inside faces sloping by `slope`.
+    """Channel whose flanges are tf thick at the distance `at` from the back of the web.
 
-    The root circle touches web and inside face, the toe circle the inside face and the flange's end.
+    Their inside faces slope by `slope`. The root circle touches web and inside face, the toe circle the inside face
+    and the flange's end.
     """
     lean = atan(slope)
 
