@@ -11,7 +11,7 @@ import time
 from collections.abc import Callable, Iterator
 from dataclasses import dataclass
 from datetime import datetime
-from typing import TYPE_CHECKING, TypeAlias
+from typing import TYPE_CHECKING, Any, TypeAlias
 
 from cellsection.errors import FormulaError
 from cellsection.workbook.book import Book, Bounds, Formula, Limits, Position, column_letters
@@ -107,6 +107,16 @@ class CellArea:
         """The values row by row."""
         for row in self.values():
             yield from row
+
+    def resized(self, rows: int, columns: int) -> CellArea:
+        """The area of another size from the same first cell."""
+        return CellArea(self.machine, self.index, self.top, self.left, self.top + rows - 1, self.left + columns - 1)
+
+    def part(self, row: int, column: int) -> CellArea:
+        """One row, one column or one cell of the area, counted from 1; 0 means all of them."""
+        top, bottom = (self.top + row - 1,) * 2 if row else (self.top, self.bottom)
+        left, right = (self.left + column - 1,) * 2 if column else (self.left, self.right)
+        return CellArea(self.machine, self.index, top, left, bottom, right)
 
 
 class Machine:
@@ -264,6 +274,57 @@ class Machine:
     def date1904(self) -> bool:
         """Whether serial numbers count from 1904."""
         return self.book.date1904
+
+    @property
+    def sheet_names(self) -> tuple[str, ...]:
+        """All sheets of the book, in order."""
+        return tuple(sheet.name for sheet in self.book.sheets)
+
+    def reference(self, text: str, sheet: str) -> Any:
+        """The area that a text names, read as a reference typed on the given sheet; #REF! where it names none."""
+        from cellsection.workbook.compile import Compiler
+        from cellsection.workbook.grammar import parsed
+        from cellsection.workbook.nodes import Join, Name, Reference, Structured
+
+        language = "openformula" if self.book.format == "ods" and text.startswith("[") else "excel"
+        try:
+            tree = parsed(text.strip().removeprefix("="), 1, 1, language)
+            if isinstance(tree, Reference) and tree.sheet is None and self.book.format == "ods":
+                tree = parsed(text.strip(), 1, 1, language)
+            if not isinstance(tree, (Reference, Join, Name, Structured)):
+                return REF
+            compiler = Compiler(self)
+            compiler.sheet = self.sheet_index[sheet.casefold()]
+            here = (self.row, self.column)
+            self.row, self.column = 1, 1
+            try:
+                found = compiler.operand(tree, True)(self)
+            finally:
+                self.row, self.column = here
+        except FormulaError:
+            return REF
+        area = found[0] if isinstance(found, tuple) and found else found
+        return found if isinstance(area, CellArea) else REF
+
+    def has_formula(self, sheet: str, row: int, column: int) -> bool:
+        """Whether a cell holds a formula."""
+        index = self.sheet_index[sheet.casefold()]
+        return index < len(self.book.sheets) and (row, column) in self.book.sheets[index].formulas
+
+    def hidden_row(self, sheet: str, row: int) -> bool:
+        """Whether a row is hidden."""
+        index = self.sheet_index[sheet.casefold()]
+        return index < len(self.book.sheets) and row in self.book.sheets[index].hidden_rows
+
+    def formula_call(self, sheet: str, row: int, column: int) -> str:
+        """Outermost function of a cell's formula, "" where there is none."""
+        index = self.sheet_index[sheet.casefold()]
+        formula = self.book.sheets[index].formulas.get((row, column)) if index < len(self.book.sheets) else None
+        return formula.text.partition("(")[0].strip().upper() if formula else ""
+
+    def unsupported(self, construct: str) -> None:
+        """The running formula needs what is not supported."""
+        raise Unsupported(construct)
 
     def now(self) -> datetime:
         """When the recalculation began."""

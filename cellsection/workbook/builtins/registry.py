@@ -25,14 +25,65 @@ from __future__ import annotations
 
 from collections.abc import Callable
 from dataclasses import dataclass
-from typing import Any, TypeVar
+from datetime import datetime
+from typing import Any, Protocol, TypeVar
 
-from cellsection.workbook.values import ErrorValue
+from cellsection.workbook.values import Area, ErrorValue
 
-__all__ = ["BUILTINS", "Builtin", "ErrorResult", "builtin"]
+__all__ = ["BUILTINS", "Builtin", "Context", "ErrorResult", "builtin"]
 
 F = TypeVar("F", bound=Callable[..., Any])
 KINDS = frozenset(("number", "text", "logical", "value", "any", "array", "range", "reference"))
+
+
+class Context(Protocol):
+    """What a builtin may ask about the cell and the book it is calculated in."""
+
+    row: int
+    column: int
+
+    @property
+    def sheet_name(self) -> str:
+        """Sheet of the running formula."""
+        ...
+
+    @property
+    def sheet_names(self) -> tuple[str, ...]:
+        """All sheets of the book, in order."""
+        ...
+
+    @property
+    def date1904(self) -> bool:
+        """Whether serial numbers count from 1904."""
+        ...
+
+    def area(self, sheet: str, top: int, left: int, bottom: int, right: int) -> Area | ErrorValue:
+        """An area, #REF! where it leaves its sheet."""
+        ...
+
+    def reference(self, text: str, sheet: str) -> Any:
+        """The area (or areas) that a text names, read as in a formula on the given sheet; #REF! where it names none."""
+        ...
+
+    def has_formula(self, sheet: str, row: int, column: int) -> bool:
+        """Whether a cell holds a formula."""
+        ...
+
+    def hidden_row(self, sheet: str, row: int) -> bool:
+        """Whether a row is hidden."""
+        ...
+
+    def formula_call(self, sheet: str, row: int, column: int) -> str:
+        """Outermost function of a cell's formula, "" where there is none."""
+        ...
+
+    def now(self) -> datetime:
+        """When the recalculation began."""
+        ...
+
+    def unsupported(self, construct: str) -> None:
+        """Report that the running formula needs what is not supported; does not return."""
+        ...
 
 
 class ErrorResult(Exception):  # noqa: N818 - it is a result on its way, not a fault of the program

@@ -1,0 +1,304 @@
+"""Text functions; TEXT's number formats are in numberformat."""
+
+from __future__ import annotations
+
+import unicodedata
+from typing import Any
+
+from cellsection.workbook.builtins.mathematics import rounded
+from cellsection.workbook.builtins.numberformat import formatted
+from cellsection.workbook.builtins.registry import Context, ErrorResult, builtin
+from cellsection.workbook.builtins.traits import cells_of, wildcard
+from cellsection.workbook.coercion import NA, NUM, VALUE, number_of, text_number, text_of
+from cellsection.workbook.values import Array, ErrorValue, Scalar
+
+LONGEST = 32_767
+
+
+def fail_text(error: ErrorValue) -> str:
+    """Return an error value."""
+    raise ErrorResult(error)
+
+
+def count(x: float) -> int:
+    """A number of characters."""
+    if x < 0:
+        raise ErrorResult(VALUE)
+    return int(x)
+
+
+def plain(cell: Scalar) -> str:
+    """A cell as text, errors passed on."""
+    text = text_of(cell)
+    if isinstance(text, ErrorValue):
+        raise ErrorResult(text)
+    return text
+
+
+@builtin("LEN LENB", "text")
+def len_(text: str) -> float:
+    return float(len(text.encode("utf-16-le")) // 2)
+
+
+@builtin("LEFT LEFTB", "text number?")
+def left(text: str, n: float = 1.0) -> str:
+    return text[: count(n)]
+
+
+@builtin("RIGHT RIGHTB", "text number?")
+def right(text: str, n: float = 1.0) -> str:
+    k = count(n)
+    return text[-k:] if k else ""
+
+
+@builtin("MID MIDB", "text number number")
+def mid(text: str, start: float, n: float) -> str:
+    if start < 1:
+        return fail_text(VALUE)
+    return text[int(start) - 1 : int(start) - 1 + count(n)]
+
+
+@builtin("UPPER", "text")
+def upper(text: str) -> str:
+    return text.upper()
+
+
+@builtin("LOWER", "text")
+def lower(text: str) -> str:
+    return text.lower()
+
+
+@builtin("PROPER", "text")
+def proper(text: str) -> str:
+    result, inside = [], False
+    for c in text:
+        result.append(c.lower() if inside else c.upper())
+        inside = c.isalpha()
+    return "".join(result)
+
+
+@builtin("TRIM", "text")
+def trim(text: str) -> str:
+    return " ".join(part for part in text.split(" ") if part)
+
+
+@builtin("CLEAN", "text")
+def clean(text: str) -> str:
+    return "".join(c for c in text if ord(c) >= 32)
+
+
+@builtin("REPT", "text number")
+def rept(text: str, n: float) -> str:
+    if len(text) * count(n) > LONGEST:
+        return fail_text(VALUE)
+    return text * count(n)
+
+
+@builtin("EXACT", "text text")
+def exact(a: str, b: str) -> bool:
+    return a == b
+
+
+@builtin("CHAR", "number")
+def char(x: float) -> str:
+    n = int(x)
+    if not 1 <= n <= 255:
+        return fail_text(VALUE)
+    return bytes([n]).decode("cp1252", errors="replace")
+
+
+@builtin("CODE", "text")
+def code(text: str) -> Any:
+    return float(text[0].encode("cp1252", errors="replace")[0]) if text else VALUE
+
+
+@builtin("UNICHAR", "number")
+def unichar(x: float) -> str:
+    n = int(x)
+    return chr(n) if 0 < n < 0x110000 and not 0xD800 <= n < 0xE000 else fail_text(VALUE)
+
+
+@builtin("UNICODE", "text")
+def unicode_(text: str) -> Any:
+    return float(ord(text[0])) if text else VALUE
+
+
+@builtin("CONCATENATE", "text+")
+def concatenate(*texts: str) -> str:
+    return checked("".join(texts))
+
+
+@builtin("CONCAT", "range+")
+def concat(*arguments: Any) -> str:
+    return checked("".join(plain(cell) for argument in arguments for cell in cells_of(argument)))
+
+
+def checked(text: str) -> str:
+    """A text a cell can hold."""
+    return text if len(text) <= LONGEST else fail_text(VALUE)
+
+
+@builtin("TEXTJOIN", "range logical range+")
+def textjoin(delimiter: Any, skip: bool, *arguments: Any) -> str:
+    marks = [plain(cell) for cell in cells_of(delimiter)] or [""]
+    pieces = [plain(cell) for argument in arguments for cell in cells_of(argument)]
+    if skip:
+        pieces = [piece for piece in pieces if piece]
+    joined = "".join(piece + (marks[k % len(marks)] if k < len(pieces) - 1 else "") for k, piece in enumerate(pieces))
+    return checked(joined)
+
+
+@builtin("FIND FINDB", "text text number?")
+def find(wanted: str, text: str, start: float = 1.0) -> Any:
+    if not 1 <= int(start) <= len(text) + 1:
+        return VALUE
+    place = text.find(wanted, int(start) - 1)
+    return float(place + 1) if place >= 0 else VALUE
+
+
+@builtin("SEARCH SEARCHB", "text text number?")
+def search(wanted: str, text: str, start: float = 1.0) -> Any:
+    if not 1 <= int(start) <= len(text) + 1:
+        return VALUE
+    found = wildcard(wanted).search(text, int(start) - 1)
+    return float(found.start() + 1) if found else VALUE
+
+
+@builtin("SUBSTITUTE", "text text text number?")
+def substitute(text: str, old: str, new: str, number: float | None = None) -> str:
+    if not old:
+        return text
+    if number is None:
+        return checked(text.replace(old, new))
+    if number < 1:
+        return fail_text(VALUE)
+    place = -1
+    for _ in range(int(number)):
+        place = text.find(old, place + 1 if place < 0 else place + len(old))
+        if place < 0:
+            return text
+    return text[:place] + new + text[place + len(old) :]
+
+
+@builtin("REPLACE REPLACEB", "text number number text")
+def replace(text: str, start: float, n: float, new: str) -> str:
+    if start < 1:
+        return fail_text(VALUE)
+    k = int(start) - 1
+    return text[:k] + new + text[k + count(n) :]
+
+
+@builtin("VALUE", "value")
+def value(cell: Scalar) -> Any:
+    if isinstance(cell, bool):
+        return VALUE
+    return number_of(cell)
+
+
+@builtin("NUMBERVALUE", "text text? text?")
+def numbervalue(text: str, decimal: str = ".", group: str = ",") -> Any:
+    if not decimal or (group and decimal[0] == group[0]):
+        return VALUE
+    bare = "".join(text.split())
+    head, _, tail = bare.partition(decimal[0])
+    if group and group[0] in tail:
+        return VALUE
+    percents = len(tail) - len(tail.rstrip("%")) + (len(head) - len(head.rstrip("%")) if not tail else 0)
+    spelled = (head.replace(group[0], "") if group else head).rstrip("%") + ("." + tail.rstrip("%") if tail else "")
+    number = text_number(spelled) if spelled else 0.0
+    return VALUE if number is None else number / 100**percents
+
+
+@builtin("TEXT", "context value text")
+def text_(context: Context, cell: Scalar, pattern: str) -> Any:
+    number: Scalar = cell
+    if isinstance(cell, str):
+        spelled = text_number(cell)
+        number = cell if spelled is None else spelled
+    result = formatted(number, pattern, context.date1904)
+    if result is None:
+        context.unsupported(f'TEXT with the format "{pattern}"')
+    return result
+
+
+@builtin("FIXED", "number number? logical?")
+def fixed(x: float, decimals: float = 2.0, no_commas: bool = False) -> str:
+    y = rounded(x, decimals, "half")
+    return f"{y:{'' if no_commas else ','}.{max(int(decimals), 0)}f}"
+
+
+@builtin("DOLLAR", "number number?")
+def dollar(x: float, decimals: float = 2.0) -> str:
+    y = rounded(x, decimals, "half")
+    body = f"${abs(y):,.{max(int(decimals), 0)}f}"
+    return f"({body})" if y < 0 else body
+
+
+@builtin("TEXTBEFORE", "text text number? number? number? any?")
+def textbefore(text: str, mark: str, n: float = 1.0, fold: float = 0.0, end: float = 0.0, missing: Scalar = NA) -> Any:
+    place = nth(text, mark, int(n), bool(fold))
+    if place is None:
+        return text if end else missing
+    return text[:place]
+
+
+@builtin("TEXTAFTER", "text text number? number? number? any?")
+def textafter(text: str, mark: str, n: float = 1.0, fold: float = 0.0, end: float = 0.0, missing: Scalar = NA) -> Any:
+    place = nth(text, mark, int(n), bool(fold))
+    if place is None:
+        return "" if end else missing
+    return text[place + len(mark) :]
+
+
+def nth(text: str, mark: str, n: int, fold: bool) -> int | None:
+    """Place of the n-th mark, from the end where n is negative."""
+    if n == 0:
+        raise ErrorResult(VALUE)
+    where, what = (text.casefold(), mark.casefold()) if fold else (text, mark)
+    places, at = [], where.find(what)
+    while at >= 0 and what:
+        places.append(at)
+        at = where.find(what, at + len(what))
+    return places[n - 1 if n > 0 else n] if abs(n) <= len(places) else None
+
+
+@builtin("TEXTSPLIT", "text text? text? logical? number? any?")
+def textsplit(
+    text: str, columns: str = "", rows: str = "", skip: bool = False, fold: float = 0.0, pad: Scalar = NA
+) -> Array:
+    if fold:
+        columns, rows = columns.casefold(), rows.casefold()
+    lines = text.split(rows) if rows else [text]
+    table = [line.split(columns) if columns else [line] for line in lines]
+    if skip:
+        table = [[piece for piece in line if piece] for line in table]
+    width = max(map(len, table))
+    return tuple((*line, *((pad,) * (width - len(line)))) for line in table)
+
+
+@builtin("VALUETOTEXT", "any number?")
+def valuetotext(cell: Scalar, strict: float = 0.0) -> str:
+    if isinstance(cell, str) and strict:
+        return '"' + cell.replace('"', '""') + '"'
+    return cell.code if isinstance(cell, ErrorValue) else plain(cell)
+
+
+@builtin("ASC", "text")
+def asc(text: str) -> str:
+    return unicodedata.normalize("NFKC", text)
+
+
+@builtin("ENCODEURL", "text")
+def encodeurl(text: str) -> str:
+    from urllib.parse import quote
+
+    return quote(text, safe="")
+
+
+@builtin("ARRAYTOTEXT", "array number?")
+def arraytotext(array: Array, strict: float = 0.0) -> str:
+    if strict not in (0.0, 1.0):
+        return fail_text(NUM)
+    if not strict:
+        return ", ".join(plain(cell) for row in array for cell in row)
+    return "{" + ";".join(",".join(valuetotext(cell, 1.0) for cell in row) for row in array) + "}"
