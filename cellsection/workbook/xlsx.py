@@ -201,8 +201,8 @@ def read_c(
     text: str | None = None
     for child in c:
         name = local(child.tag)
-        if name == "v":
-            text = child.text
+        if name == "v":  # an empty one is how empty text is saved
+            text = child.text or ("" if c.get("t") == "str" else None)
         elif name == "f":
             read_f(
                 child, sheet, position, c.get("cm") is not None and int(c.get("cm", "0")) in dynamic, shared, orphans
