@@ -9,7 +9,7 @@ from typing import TYPE_CHECKING, Any
 from cellsection.errors import FormulaError, InputError
 from cellsection.workbook.builtins.registry import Builtin, ErrorResult
 from cellsection.workbook.coercion import NUM, VALUE, logical_of, number_of, text_of
-from cellsection.workbook.machine import CellArea, Machine, Taint
+from cellsection.workbook.machine import CellArea, Machine, Taint, Unsupported
 from cellsection.workbook.nodes import Call, Missing
 from cellsection.workbook.operators import spread as spread_over
 from cellsection.workbook.results import Status
@@ -85,6 +85,9 @@ def builtin_call(compiler: Compiler, declared: Builtin, node: Call, spread: bool
             return stop.error
         except OverflowError:
             return NUM
+        except (ArithmeticError, ValueError, TypeError, LookupError, AttributeError) as problem:
+            # A fault of the builtin, not of the book: reported as what it is, never as a value.
+            raise Unsupported(f"function {name} with these arguments ({problem})") from problem
 
     def call(m: Machine) -> Any:
         values: list[Any] = []

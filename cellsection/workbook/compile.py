@@ -357,6 +357,10 @@ class Compiler:
         from cellsection.workbook.calls import builtin_call, host_call
         from cellsection.workbook.forms import FORMS, named_lambda
 
+        if node.name == "ANCHORARRAY" and len(node.arguments) == 1:  # how a file spells A1#
+            return self.spill(Spill(node.arguments[0]))
+        if node.name == "SINGLE" and len(node.arguments) == 1:  # how a file spells @
+            return self.unary(Unary("@", node.arguments[0]), spread)
         form = FORMS.get(node.name)
         if form is not None:
             return form(self, node, spread)

@@ -18,7 +18,7 @@ __all__ = ["Token", "tokens"]
 
 LAST_ROW, LAST_COLUMN = 1_048_576, 16_384
 PREFIXES = re.compile(
-    r"^(?:_xlfn\.|_xlws\.|_xludf\.|_xldudf_|_xll\.|COM\.MICROSOFT\.|ORG\.OPENOFFICE\.|ORG\.LIBREOFFICE\.|LEGACY\.)+",
+    r"^(?:_xlfn\.|_xlws\.|_xludf\.|_xldudf_|_xlpm\.|_xlop\.|_xll\.|COM\.MICROSOFT\.|ORG\.OPENOFFICE\.|ORG\.LIBREOFFICE\.|LEGACY\.)+",
     re.IGNORECASE,
 )
 

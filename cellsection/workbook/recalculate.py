@@ -148,7 +148,13 @@ class Driver:
             single = 0.0
         if not isinstance(single, (float, str, bool, ErrorValue)):
             single = ErrorValue("#CALC!", "the formula gives a function, not a value")
+        if isinstance(single, ErrorValue):
+            single = self.signed(single, place)
         machine.own[position] = Special(single, taint) if taint is not None else single
+
+    def signed(self, error: ErrorValue, place: Place) -> ErrorValue:
+        """An error with the cell where it arises, which its dependants pass on."""
+        return error if error.origin else ErrorValue(error.code, error.message, self.machine.address(*place))
 
     def fill(self, place: Place, formula: Formula, value: Any, taint: Taint | None) -> None:
         """Spread an array formula's result over its area: one value fills it, what is missing is #N/A."""
@@ -168,6 +174,8 @@ class Driver:
                 i, j = (0 if rows == 1 else r - row), (0 if columns == 1 else c - column)
                 single: Scalar = array[i][j] if i < rows and j < columns else NA
                 single = 0.0 if single is None else given_back(single)
+                if isinstance(single, ErrorValue):
+                    single = self.signed(single, place)
                 if (r, c) != (row, column) and owners.get((r, c)) != (row, column):
                     if formula.dynamic and (r, c) not in store:
                         owners[r, c] = (row, column)

@@ -8,7 +8,7 @@ from typing import Any
 from cellsection.workbook.builtins.mathematics import fail, paired, total
 from cellsection.workbook.builtins.registry import Context, ErrorResult, builtin
 from cellsection.workbook.builtins.traits import cells_of, numbers, numbers_a, whole
-from cellsection.workbook.coercion import DIV0, NA, NUM, REF, VALUE, number_of
+from cellsection.workbook.coercion import DIV0, NA, NUM, REF, VALUE, logical_of, number_of
 from cellsection.workbook.values import Array, ErrorValue, Scalar
 
 
@@ -493,17 +493,25 @@ def fitted(y: Array, x: Array | None, constant: bool, statistics: bool) -> list[
     ]  # fmt: skip
 
 
-@builtin("LINEST", "array array? logical? logical?")
-def linest(y: Array, x: Array | None = None, constant: bool = True, statistics: bool = False) -> Array:
-    return tuple(map(tuple, fitted(y, x, constant, statistics)))
+def chosen(option: Scalar, default: bool) -> bool:
+    """An option that also counts as left out where it is written but empty."""
+    truth = default if option is None else logical_of(option)
+    if isinstance(truth, ErrorValue):
+        raise ErrorResult(truth)
+    return truth
 
 
-@builtin("LOGEST", "array array? logical? logical?")
-def logest(y: Array, x: Array | None = None, constant: bool = True, statistics: bool = False) -> Array:
+@builtin("LINEST", "array array? value? value?")
+def linest(y: Array, x: Array | None = None, constant: Scalar = None, statistics: Scalar = None) -> Array:
+    return tuple(map(tuple, fitted(y, x, chosen(constant, True), chosen(statistics, False))))
+
+
+@builtin("LOGEST", "array array? value? value?")
+def logest(y: Array, x: Array | None = None, constant: Scalar = None, statistics: Scalar = None) -> Array:
     values = list(numbers((y,)))
     if min(values, default=0.0) <= 0:
         raise ErrorResult(NUM)
-    found = fitted(tuple((math.log(v),) for v in values), x, constant, statistics)
+    found = fitted(tuple((math.log(v),) for v in values), x, chosen(constant, True), chosen(statistics, False))
     found[0] = [math.exp(c) for c in found[0]]  # type: ignore[arg-type]
     return tuple(map(tuple, found))
 
