@@ -96,7 +96,11 @@ class Compiler:
 
             def read(m: Machine) -> Any:
                 result = code(m)
-                return result.whole() if isinstance(result, CellArea) else result
+                if not isinstance(result, CellArea):
+                    return result
+                # A name or a function that comes to one cell is that cell, as where the cell itself is written.
+                one = (result.top, result.left) == (result.bottom, result.right)
+                return m.cell(result.index, (result.top, result.left)) if one else result.whole()
 
             return read
         return lambda m: intersected(m, code(m))
