@@ -1,0 +1,1 @@
+"""The hosts: the only files that know where a function is called from."""

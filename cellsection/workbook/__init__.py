@@ -1,0 +1,1 @@
+"""Saved workbooks: read, recalculated and written, with no knowledge of sections."""

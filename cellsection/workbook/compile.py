@@ -10,6 +10,7 @@ A closure takes the Machine, reads cells through it and returns a value. Every n
 from __future__ import annotations
 
 from collections.abc import Callable
+from dataclasses import dataclass
 from typing import Any, TypeAlias
 
 from cellsection.errors import FormulaError
@@ -62,6 +63,20 @@ def intersected(machine: Machine, area: Any) -> Scalar:
     if area.top <= row <= area.bottom and area.left <= column <= area.right and (rows == 1 or columns == 1):
         return machine.cell(area.index, (row, column))
     return VALUE
+
+
+def nothing(m: Machine) -> Any:
+    """What a formula that could not be compiled would give."""
+    return None
+
+
+@dataclass(frozen=True, slots=True)
+class Compiled:
+    """A formula ready to run: its code, the function it is a call of ("" if none), or why it cannot be run."""
+
+    run: Code = nothing
+    call: str = ""
+    fault: FormulaError | None = None
 
 
 class Compiler:
@@ -119,6 +134,9 @@ class Compiler:
             return self.name(node, spread)
         if isinstance(node, Call):
             return self.call(node, spread)
+        if isinstance(node, ArrayConstant):
+            rows = node.rows
+            return lambda m: rows
         if isinstance(node, Invoke):
             from cellsection.workbook.forms import invoke
 
@@ -140,7 +158,8 @@ class Compiler:
         """Code for a single cell: the commonest node, so the most direct."""
         if node.sheet == "#REF!":
             return lambda m: REF
-        assert node.top is not None and node.left is not None
+        assert node.top is not None
+        assert node.left is not None
         (row, row_moves), (column, column_moves) = node.top, node.left
         index = self.sheet_of(node.sheet)
         if index is None:
@@ -173,7 +192,8 @@ class Compiler:
             indexes: list[int | None] = [index]
         elif node.last_sheet is not None:
             first, last = self.sheet_of(node.sheet), self.sheet_of(node.last_sheet)
-            assert first is not None and last is not None
+            assert first is not None
+            assert last is not None
             indexes = list(range(min(first, last), max(first, last) + 1))
         else:
             indexes = [self.sheet_of(node.sheet)]
@@ -385,8 +405,8 @@ class Compiler:
 
         return unsupported
 
-    def whole(self, formula: Formula, sheet: int) -> Code:
-        """Code for a whole formula, its last addition or subtraction snapped to zero where it cancels."""
+    def whole(self, formula: Formula, sheet: int) -> Compiled:
+        """A whole formula; its last addition or subtraction is snapped to zero where it cancels."""
         self.sheet = sheet
         self.machine.formula = formula
         tree = parsed(formula.text, formula.row, formula.column, formula.language, self.machine.limits.nesting)
@@ -398,5 +418,5 @@ class Compiler:
                 a, b = left(m), right(m)
                 return snapped(apply(a, b), a, b)
 
-            return last
-        return self.value(tree, spread)
+            return Compiled(last)
+        return Compiled(self.value(tree, spread), tree.name if isinstance(tree, Call) else "")

@@ -61,8 +61,8 @@ class Level:
 def parsed(text: str, row: int = 1, column: int = 1, language: str = "excel", deepest: int = DEEPEST) -> Node:
     """The syntax tree of a formula typed at row, column. Raises FormulaError.
 
-    >>> parsed("1+2*3")
-    Binary(sign='+', left=Constant(value=1.0), right=Binary(sign='*', left=Constant(value=2.0), right=Constant(value=3.0), bracketed=False), bracketed=False)
+    >>> parsed("-2^2").sign
+    '^'
     """
     levels = [Level()]
     stream = tokens(text, row, column, language)

@@ -1,8 +1,8 @@
 """The state of a running recalculation: the cells, what is still to compute, and what taints a result.
 
-A formula reads cells through here. A read of a cell that is not computed yet raises Pending with the cells it needs; the
-driver in recalculate computes those first and starts the formula again. So only cells that are really demanded can form
-a circle, and chains of any length need no recursion.
+A formula reads cells through here. A read of a cell that is not computed yet raises Pending with the cells it needs;
+the driver in recalculate computes those first and starts the formula again. So only cells that are really demanded
+can form a circle, and chains of any length need no recursion.
 """
 
 from __future__ import annotations
@@ -181,8 +181,9 @@ class Machine:
         store[position] = Special(saved.get(position), taint)
         area = self.book.sheets[index].formulas[position].area
         if area is not None:
-            for filled, owner in self.owners[index].items():
-                if owner == position:
+            owners, (top, left, bottom, right) = self.owners[index], area
+            for filled in ((r, c) for r in range(top, bottom + 1) for c in range(left, right + 1)):
+                if owners.get(filled) == position:
                     store[filled] = Special(saved.get(filled), taint)
 
     # ---- reading

@@ -158,7 +158,7 @@ def spread(call: Callable[..., Scalar], operands: Sequence[Result]) -> Array:
     """A function of single values called for every element of the arrays among its operands."""
     shapes = [width_height(operand) for operand in operands if isinstance(operand, tuple)]
     rows, columns = max(shape[0] for shape in shapes), max(shape[1] for shape in shapes)
-    if len({shape for shape in shapes}) == 1:
+    if len(set(shapes)) == 1:
         if len(operands) == 2 and all(isinstance(operand, tuple) for operand in operands):
             first, second = operands
             return tuple(tuple(map(call, a, b)) for a, b in zip(first, second, strict=True))  # type: ignore[arg-type]

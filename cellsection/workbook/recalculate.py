@@ -12,9 +12,8 @@ from cellsection.errors import FormulaError
 from cellsection.workbook.book import Book, Formula, Limits, Position, Sheet, column_letters
 from cellsection.workbook.calls import given_back
 from cellsection.workbook.coercion import NA, VALUE
-from cellsection.workbook.compile import Code, Compiler, intersected
+from cellsection.workbook.compile import Compiled, Compiler, intersected
 from cellsection.workbook.machine import CellArea, Machine, Pending, Place, Special, Taint, Unsupported
-from cellsection.workbook.nodes import Call
 from cellsection.workbook.relative import moved_text, relative_key
 from cellsection.workbook.results import FormulaCell, Recalculation, Status
 from cellsection.workbook.values import Array, ErrorValue, Scalar
@@ -43,11 +42,12 @@ def recalculated(book: Book, resolve: Resolve | None = None, limits: Limits | No
     machine = Machine(book, resolve, limits)
     before = sys.getrecursionlimit()
     sys.setrecursionlimit(max(before, DEPTH))
+    driver = Driver(machine)
     try:
-        Driver(machine).run()
+        driver.run()
     finally:
         sys.setrecursionlimit(before)
-    cells = [cell for index, sheet in enumerate(book.sheets) for cell in formula_cells(machine, index, sheet)]
+    cells = [cell for index, sheet in enumerate(book.sheets) for cell in formula_cells(driver, index, sheet)]
     return Recalculation(book.path, tuple(s.name for s in book.sheets), cells, [*book.notes, *sorted(machine.notes)])
 
 
@@ -57,7 +57,8 @@ class Driver:
     def __init__(self, machine: Machine) -> None:
         self.machine = machine
         self.compiler = Compiler(machine)
-        self.codes: dict[Any, Code | FormulaError] = {}
+        self.by_formula: dict[Formula, Compiled] = {}
+        self.by_key: dict[tuple[int, bool, str, str], Compiled] = {}
         self.open: dict[Place, None] = {}  # started and on hold, in the order they wait for one another
         self.count = 0
 
@@ -123,10 +124,10 @@ class Driver:
             machine.check_time()
         formula = machine.book.sheets[index].formulas[position]
         try:
-            code = self.code(formula, index)
-            if isinstance(code, FormulaError):
-                raise Unsupported(code.construct if code.construct != code.fault else code.fault)
-            value = code(machine)
+            compiled = self.compiled(formula, index)
+            if compiled.fault is not None:
+                raise Unsupported(compiled.fault.construct)
+            value = compiled.run(machine)
         except Unsupported as finding:
             machine.settle_saved(index, position, Taint(Status.UNSUPPORTED, finding.construct))
             return
@@ -182,54 +183,52 @@ class Driver:
                     else:
                         continue
                 store[r, c] = Special(single, taint) if taint is not None else single
-        for position, owner in owners.items():
-            if owner == (row, column) and machine.is_pending(store.get(position)):
-                store.pop(position)
+        top, left, bottom, right = formula.area or area
+        for r in range(top, bottom + 1):  # a result that has shrunk leaves the rest of its saved area blank
+            for c in range(left, right + 1):
+                if owners.get((r, c)) == (row, column) and machine.is_pending(store.get((r, c))):
+                    store.pop((r, c))
         machine.filled[index, (row, column)] = area
-        bottom, right = machine.extent[index]
-        machine.extent[index] = (max(bottom, area[2]), max(right, area[3]))
+        last, end = machine.extent[index]
+        machine.extent[index] = (max(last, area[2]), max(end, area[3]))
 
-    def code(self, formula: Formula, index: int) -> Code | FormulaError:
+    def compiled(self, formula: Formula, index: int) -> Compiled:
         """The compiled form of a formula: one for all that read alike relative to their cell."""
-        known = self.codes.get(formula)
-        if known is not None:
-            return known
-        if formula.kind == "data table":
-            key: Any = FormulaError("data tables are not supported", construct="data table")
-            self.codes[formula] = key
-            return key  # type: ignore[no-any-return]
-        if formula.kind == "missing":
-            lost = FormulaError(
-                "the master of this shared formula is missing", construct="shared formula without master"
-            )
-            self.codes[formula] = lost
-            return lost
+        known = self.by_formula.get(formula)
+        if known is None:
+            known = self.by_formula[formula] = self.by_form(formula, index)
+        return known
+
+    def by_form(self, formula: Formula, index: int) -> Compiled:
+        """As compiled, found by the formula's relative form, or compiled now."""
         limit = self.machine.limits.formula_length
+        if formula.kind == "data table":
+            return Compiled(fault=FormulaError("data tables are not supported", construct="data table"))
+        if formula.kind == "missing":
+            return Compiled(
+                fault=FormulaError("its shared formula is missing", construct="shared formula without master")
+            )
         if len(formula.text) > limit:
-            long = FormulaError(f"a formula of more than {limit:,} characters", construct="overlong formula")
-            self.codes[formula] = long
-            return long
+            fault = FormulaError(f"it has more than {limit:,} characters", construct="overlong formula")
+            return Compiled(fault=fault)
         spread = formula.kind == "array" or formula.dynamic
-        key = (
-            index,
-            spread,
-            formula.language,
-            relative_key(formula.text, formula.row, formula.column, formula.language),
-        )
-        code = self.codes.get(key)
-        if code is None:
+        form = relative_key(formula.text, formula.row, formula.column, formula.language)
+        key = (index, spread, formula.language, form)
+        known = self.by_key.get(key)
+        if known is None:
             try:
-                code = self.compiler.whole(formula, index)
+                known = self.compiler.whole(formula, index)
             except FormulaError as problem:
-                code = problem
-            self.codes[key] = code
-        self.codes[formula] = code
-        return code
+                known = Compiled(fault=problem)
+            except RecursionError:
+                known = Compiled(fault=FormulaError("it nests too deeply", construct="deep nesting"))
+            self.by_key[key] = known
+        return known
 
 
-def formula_cells(machine: Machine, index: int, sheet: Sheet) -> Iterator[FormulaCell]:
+def formula_cells(driver: Driver, index: int, sheet: Sheet) -> Iterator[FormulaCell]:
     """The formula cells of a sheet, row by row, the areas of array formulas included."""
-    store, owners = machine.stores[index], machine.owners[index]
+    store, owners = driver.machine.stores[index], driver.machine.owners[index]
     for position in sorted({*sheet.formulas, *owners}):
         owner = owners.get(position, position)
         formula = sheet.formulas[owner]
@@ -245,35 +244,11 @@ def formula_cells(machine: Machine, index: int, sheet: Sheet) -> Iterator[Formul
             sheet.values.get(position),
             value,  # type: ignore[arg-type]
             status,
-            call=outermost(formula.text),
+            call=driver.compiled(formula, index).call,
             reason=reason,
             has_saved=position in sheet.values,
             text=partial(shown, formula, owner),
         )
-
-
-def outermost(text: str) -> str:
-    """Name of the function that a formula is a call of, "" where it is not one call."""
-    head, bracket, _ = text.partition("(")
-    if (
-        not bracket
-        or not text.rstrip().endswith(")")
-        or not head.strip()
-        .replace(".", "")
-        .replace("_", "")
-        .replace("[", "")
-        .replace("]", "")
-        .replace("!", "")
-        .isalnum()
-    ):
-        return ""
-    from cellsection.workbook.grammar import parsed
-
-    try:
-        tree = parsed(text)
-    except FormulaError:
-        return ""
-    return tree.name if isinstance(tree, Call) else ""
 
 
 def shown(formula: Formula, position: Position) -> str:

@@ -8,9 +8,12 @@ from cellsection.workbook.book import column_letters, column_number
 
 __all__ = ["moved_text", "relative_key"]
 
+BEFORE = r"(?<![\w.$\\])"  # a reference does not begin inside a word
 EXCEL = re.compile(
-    r"""("(?:[^"]|"")*"|'(?:[^']|'')*')|(?<![\w.$\\])(\$?)([A-Za-z]{1,3})(\$?)([0-9]{1,7})(?![\w.(!\[])"""
-    + "|(?<![\\w.$\\\\])(\\$?)([A-Za-z]{1,3}):(\\$?)([A-Za-z]{1,3})(?![\\w.(!])|(?<![\\w.$\\\\])(\\$?)([0-9]{1,7}):(\\$?)([0-9]{1,7})(?![\\w.])"
+    r"""("(?:[^"]|"")*"|'(?:[^']|'')*')"""  # texts and quoted sheet names stay as they are
+    + rf"|{BEFORE}(\$?)([A-Za-z]{{1,3}})(\$?)([0-9]{{1,7}})(?![\w.(!\[])"
+    + rf"|{BEFORE}(\$?)([A-Za-z]{{1,3}}):(\$?)([A-Za-z]{{1,3}})(?![\w.(!])"
+    + rf"|{BEFORE}(\$?)([0-9]{{1,7}}):(\$?)([0-9]{{1,7}})(?![\w.])"
 )
 OPEN_ROWS = re.compile(r"""("(?:[^"]|"")*"|'(?:[^']|'')*')|(?<=\.)(\$?)([A-Za-z]{1,3})(\$?)([0-9]{1,7})(?=[\]:])""")
 

@@ -36,7 +36,7 @@ class ErrorValue:
         return self.code
 
 
-Scalar: TypeAlias = float | str | bool | None | ErrorValue
+Scalar: TypeAlias = float | str | bool | ErrorValue | None
 Array: TypeAlias = tuple[tuple[Scalar, ...], ...]
 
 
@@ -54,8 +54,14 @@ class Area(Protocol):
     right: int
 
     @property
-    def shape(self) -> tuple[int, int]: ...
-    def values(self) -> Array: ...
+    def shape(self) -> tuple[int, int]:
+        """Rows and columns as written."""
+        ...
+
+    def values(self) -> Array:
+        """The values, clipped to the used area of the sheet."""
+        ...
+
     def value(self, row: int, column: int) -> Scalar:
         """The value at row, column of the area, counted from 1."""
         ...

@@ -11,7 +11,7 @@ from cellsection.workbook.builtins.calendar import clock_of, date_of, day_of, se
 from cellsection.workbook.builtins.mathematics import fail
 from cellsection.workbook.builtins.registry import Context, ErrorResult, builtin
 from cellsection.workbook.builtins.traits import cells_of
-from cellsection.workbook.coercion import NA, NUM, VALUE, date_number, number_of
+from cellsection.workbook.coercion import NUM, VALUE, date_number, number_of
 from cellsection.workbook.values import ErrorValue
 
 WEEKENDS = {

@@ -3,21 +3,25 @@
 from __future__ import annotations
 
 import math
-from statistics import NormalDist
 from typing import Any
 
 from cellsection.workbook.builtins.mathematics import fail, paired
 from cellsection.workbook.builtins.registry import ErrorResult, builtin
-from cellsection.workbook.builtins.traits import cells_of, numbers
 from cellsection.workbook.builtins.statistics import mean, variance
+from cellsection.workbook.builtins.traits import cells_of, numbers
 from cellsection.workbook.coercion import DIV0, NA, NUM
 from cellsection.workbook.values import Array
 
-STANDARD = NormalDist()
+
+def standard_quantile(p: float) -> float:
+    """Quantile of the standard normal distribution."""
+    from statistics import NormalDist
+
+    return NormalDist().inv_cdf(p)
 
 
 def stats() -> Any:
-    """scipy's distributions."""
+    """Scipy's distributions."""
     import scipy.stats
 
     return scipy.stats
@@ -44,7 +48,7 @@ def norm_dist(x: float, m: float, s: float, cumulative: bool) -> float:
 
 @builtin("NORM.INV NORMINV", "number number number")
 def norm_inv(p: float, m: float, s: float) -> float:
-    return m + s * STANDARD.inv_cdf(probability(p)) if s > 0 else fail(NUM)
+    return m + s * standard_quantile(probability(p)) if s > 0 else fail(NUM)
 
 
 @builtin("NORM.S.DIST", "number logical")
@@ -59,7 +63,7 @@ def normsdist(z: float) -> float:
 
 @builtin("NORM.S.INV NORMSINV", "number")
 def norm_s_inv(p: float) -> float:
-    return STANDARD.inv_cdf(probability(p))
+    return standard_quantile(probability(p))
 
 
 @builtin("PHI", "number")
@@ -227,7 +231,7 @@ def gamma_inv(p: float, a: float, b: float) -> float:
 
 
 def beta_place(x: float, low: float, high: float) -> float:
-    """x as a share of the interval from low to high."""
+    """X as a share of the interval from low to high."""
     return (x - low) / (high - low) if low <= x <= high and low < high else fail(NUM)
 
 
@@ -255,7 +259,7 @@ def beta_inv(p: float, a: float, b: float, low: float = 0.0, high: float = 1.0) 
 def confidence_norm(alpha: float, s: float, n: float) -> float:
     if s <= 0 or n < 1:
         return fail(NUM)
-    return -STANDARD.inv_cdf(probability(alpha) / 2) * s / math.sqrt(int(n))
+    return -standard_quantile(probability(alpha) / 2) * s / math.sqrt(int(n))
 
 
 @builtin("CONFIDENCE.T", "number number number")

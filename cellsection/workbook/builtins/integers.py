@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import math
-import random
 from typing import Any
 
 from cellsection.workbook.builtins.mathematics import fail
@@ -12,7 +11,10 @@ from cellsection.workbook.builtins.traits import numbers
 from cellsection.workbook.coercion import NUM, VALUE
 
 DIGITS = "0123456789ABCDEFGHIJKLMNOPQRSTUVWXYZ"
-ROMAN = ((1000, "M"), (900, "CM"), (500, "D"), (400, "CD"), (100, "C"), (90, "XC"), (50, "L"), (40, "XL"), (10, "X"), (9, "IX"), (5, "V"), (4, "IV"), (1, "I"))  # fmt: skip
+ROMAN = (
+    (1000, "M"), (900, "CM"), (500, "D"), (400, "CD"), (100, "C"), (90, "XC"), (50, "L"), (40, "XL"), (10, "X"),
+    (9, "IX"), (5, "V"), (4, "IV"), (1, "I"),
+)  # fmt: skip
 
 
 def naturals(arguments: Any) -> list[int]:
@@ -166,7 +168,7 @@ def bitxor(x: float, y: float) -> float:
 
 
 def shifted(x: float, by: float) -> float:
-    """x moved left by so many bits, right where it is negative."""
+    """X moved left by so many bits, right where it is negative."""
     n = int(by)
     if abs(n) > 53:
         return fail(NUM)
@@ -211,17 +213,23 @@ def arabic(text: str) -> float:
 
 @builtin("RAND", "", volatile=True)
 def rand() -> float:
-    return random.random()  # noqa: S311 - a spreadsheet's random number, no secret
+    import random
+
+    return random.random()
 
 
 @builtin("RANDBETWEEN", "number number", volatile=True)
 def randbetween(low: float, high: float) -> float:
-    return float(random.randint(math.ceil(low), math.floor(high))) if low <= high else fail(NUM)  # noqa: S311
+    import random
+
+    return float(random.randint(math.ceil(low), math.floor(high))) if low <= high else fail(NUM)
 
 
 @builtin("RANDARRAY", "number? number? number? number? logical?", volatile=True)
 def randarray(rows: float = 1, columns: float = 1, low: float = 0, high: float = 1, whole: bool = False) -> Any:
+    import random
+
     if rows < 1 or columns < 1 or rows * columns > 1_000_000:
         fail(VALUE)
-    draw = (lambda: float(random.randint(int(low), int(high)))) if whole else (lambda: random.uniform(low, high))  # noqa: S311
+    draw = (lambda: float(random.randint(int(low), int(high)))) if whole else (lambda: random.uniform(low, high))
     return tuple(tuple(draw() for _ in range(int(columns))) for _ in range(int(rows)))

@@ -40,7 +40,7 @@ def exact(wanted: Scalar, cells: list[Scalar], wild: bool = True) -> int | None:
 
 
 def below(wanted: Scalar, cells: list[Scalar]) -> int | None:
-    """Position of the last cell not above the wanted one, in cells sorted upwards: a binary search as the application's."""
+    """Position of the last cell not above the wanted one in cells sorted upwards, by binary search."""
     if wanted is None:
         wanted = 0.0
     kind = rank(wanted)

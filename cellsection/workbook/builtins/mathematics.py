@@ -6,8 +6,8 @@ import math
 from typing import Any
 
 from cellsection.workbook.builtins.registry import ErrorResult, builtin
-from cellsection.workbook.builtins.traits import cells_of, numbers, whole
-from cellsection.workbook.coercion import DIV0, NUM, VALUE, number_text
+from cellsection.workbook.builtins.traits import cells_of, numbers
+from cellsection.workbook.coercion import DIV0, NUM, VALUE
 from cellsection.workbook.values import Array, ErrorValue
 
 NUMERIC = frozenset((float,))

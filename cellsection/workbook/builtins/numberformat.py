@@ -17,7 +17,10 @@ PIECE = re.compile(
     r"|(?P<date>y+|Y+|m+|M+|d+|D+|h+|H+|s+|S+)(?P<fraction>\.0+)?|(?P<exponent>[Ee][+-])(?P<power>[0#?]+)|(?P<other>.)",
     re.DOTALL | re.IGNORECASE,
 )
-MONTHS = ("January", "February", "March", "April", "May", "June", "July", "August", "September", "October", "November", "December")  # fmt: skip
+MONTHS = (
+    "January", "February", "March", "April", "May", "June", "July", "August", "September", "October", "November",
+    "December",
+)  # fmt: skip
 DAYS = ("Monday", "Tuesday", "Wednesday", "Thursday", "Friday", "Saturday", "Sunday")
 COLOURS = ("BLACK", "BLUE", "CYAN", "GREEN", "MAGENTA", "RED", "WHITE", "YELLOW")
 CONDITION = re.compile(r"\[(<=|>=|<>|<|>|=)(-?[\d.]+)\]")
@@ -132,11 +135,10 @@ def digit_section(pieces: list[re.Match[str]], number: float) -> str:
     percent = skeleton.count("%")
     body = skeleton.replace("%", "")
     whole, _, decimals = body.partition(".")
-    trailing = len(body.rstrip("0#?.")) != len(body) and 0
-    scaling = len(whole) - len(whole.rstrip(",")) if "." not in body else len(whole) - len(whole.rstrip(","))
+    scaling = len(whole) - len(whole.rstrip(","))
     grouped = "," in whole.rstrip(",")
     whole, decimals = whole.replace(",", ""), decimals.replace(",", "")
-    scaled = number * 100.0**percent / 1000.0**scaling + trailing
+    scaled = number * 100.0**percent / 1000.0**scaling
     exponent = next((m for m in pieces if m["exponent"]), None)
     power = 0
     if exponent is not None and scaled:

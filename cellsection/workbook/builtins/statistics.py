@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+from itertools import pairwise
 from typing import Any
 
 from cellsection.workbook.builtins.mathematics import fail, paired, total
@@ -303,7 +304,7 @@ def standardize(x: float, m: float, s: float) -> float:
 def frequency(data: Array, bins: Array) -> Array:
     values, edges = list(numbers((data,))), sorted(numbers((bins,)))
     counts = [sum(x <= edges[0] for x in values)] if edges else []
-    counts += [sum(low < x <= high for x in values) for low, high in zip(edges, edges[1:], strict=False)]
+    counts += [sum(low < x <= high for x in values) for low, high in pairwise(edges)]
     counts.append(sum(x > edges[-1] for x in values) if edges else len(values))
     return tuple((float(each),) for each in counts)
 
