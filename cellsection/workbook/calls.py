@@ -44,6 +44,11 @@ def given_back(result: Any) -> Any:
     return result
 
 
+def constantly(value: Any) -> Code:
+    """Code that gives one value."""
+    return lambda m: value
+
+
 def builtin_call(compiler: Compiler, declared: Builtin, node: Call, spread: bool) -> Code:
     """Code for a call of a builtin. A wrong number of arguments raises FormulaError."""
     from cellsection.workbook.compile import as_array
@@ -59,8 +64,7 @@ def builtin_call(compiler: Compiler, declared: Builtin, node: Call, spread: bool
     codes: list[Code] = []
     for kind, argument in zip(kinds, node.arguments, strict=True):
         if isinstance(argument, Missing):
-            empty = EMPTY.get(kind)
-            codes.append(lambda m, empty=empty: empty)
+            codes.append(constantly(EMPTY.get(kind)))
         elif kind in SCALAR_KINDS:
             codes.append(compiler.value(argument, spread))
         else:

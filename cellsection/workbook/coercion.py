@@ -103,7 +103,7 @@ def full_year(text: str) -> int:
 def number_of(value: Scalar) -> float | ErrorValue:
     """A value as a number: a blank is 0, TRUE is 1, text that spells a number is that number."""
     if value.__class__ is float:
-        return value  # type: ignore[return-value]
+        return value
     if value is None:
         return 0.0
     if isinstance(value, ErrorValue):

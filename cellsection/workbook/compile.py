@@ -168,7 +168,7 @@ class Compiler:
                 position = (row + m.row if row_moves else row, column + m.column if column_moves else column)
                 value = m.own.get(position)
                 if value.__class__ is Special:
-                    return m.special(m.sheet, position, value)  # type: ignore[arg-type]
+                    return m.special(m.sheet, position, value)
                 return value
 
             return read_own
@@ -178,7 +178,7 @@ class Compiler:
             position = (row + m.row if row_moves else row, column + m.column if column_moves else column)
             value = store.get(position)
             if value.__class__ is Special:
-                return m.special(index, position, value)  # type: ignore[arg-type]
+                return m.special(index, position, value)
             return value
 
         return read

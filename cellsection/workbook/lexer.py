@@ -183,13 +183,17 @@ def area(lexeme: str, row: int, column: int, prefix: tuple[str | None, str | Non
     return Reference(start[0], start[1], end[0], end[1], *prefix)
 
 
+def unquoted(sheet: str | None) -> str | None:
+    """A sheet name without its quotes; None where none is written."""
+    return sheet.strip("'").replace("''", "'") if sheet else None
+
+
 def bracket(lexeme: str, row: int, column: int) -> Reference | None:
     """[.A1], [$Sheet.A1:.B2], ['file'#$Sheet.A1] of OpenFormula; #REF! inside is an error value of its own."""
     match = OPEN_REFERENCE.fullmatch(lexeme[1:-1])
     if match is None:
         raise FormulaError(f"{lexeme} is no reference", construct=f"reference {lexeme}")
-    plain = lambda name: name.strip("'").replace("''", "'") if name else None  # noqa: E731
-    first, last = plain(match["sheet"]), plain(match["last"])
+    first, last = unquoted(match["sheet"]), unquoted(match["last"])
     if "#REF!" in lexeme:
         return Reference(None, None, None, None, "#REF!")
     start = corner(match["from"], row, column)

@@ -192,7 +192,7 @@ class Machine:
         """The value of a cell; raises Pending where it is not computed yet."""
         value = self.stores[index].get(position)
         if value.__class__ is Special:
-            return self.special(index, position, value)  # type: ignore[arg-type]
+            return self.special(index, position, value)
         return value  # type: ignore[return-value]
 
     def special(self, index: int, position: Position, value: Special) -> Scalar:
@@ -240,7 +240,7 @@ class Machine:
                     if value is PENDING:
                         pending.append((index, (top + r, left + c)))
                     else:
-                        values[c] = self.special(index, (top + r, left + c), value)  # type: ignore[arg-type]
+                        values[c] = self.special(index, (top + r, left + c), value)
         taint, self.taint = self.taint, outer
         if pending:
             raise Pending(pending)

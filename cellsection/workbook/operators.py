@@ -31,7 +31,7 @@ def finite(x: float) -> Scalar:
 def plus(a: Scalar, b: Scalar) -> Scalar:
     """A + b"""
     if a.__class__ is float and b.__class__ is float:
-        return finite(a + b)  # type: ignore[operator]
+        return finite(a + b)
     pair = numbers(a, b)
     return pair if isinstance(pair, ErrorValue) else finite(pair[0] + pair[1])
 
@@ -39,7 +39,7 @@ def plus(a: Scalar, b: Scalar) -> Scalar:
 def minus(a: Scalar, b: Scalar) -> Scalar:
     """A - b"""
     if a.__class__ is float and b.__class__ is float:
-        return finite(a - b)  # type: ignore[operator]
+        return finite(a - b)
     pair = numbers(a, b)
     return pair if isinstance(pair, ErrorValue) else finite(pair[0] - pair[1])
 
@@ -47,7 +47,7 @@ def minus(a: Scalar, b: Scalar) -> Scalar:
 def times(a: Scalar, b: Scalar) -> Scalar:
     """A * b"""
     if a.__class__ is float and b.__class__ is float:
-        return finite(a * b)  # type: ignore[operator]
+        return finite(a * b)
     pair = numbers(a, b)
     return pair if isinstance(pair, ErrorValue) else finite(pair[0] * pair[1])
 
@@ -135,7 +135,7 @@ def snapped(result: Scalar, a: Scalar, b: Scalar) -> Scalar:
     """
     if result.__class__ is float and result != 0.0:
         x = number_of(a)
-        if x.__class__ is float and abs(result) < abs(x) * 2.0**-49:  # type: ignore[arg-type,operator]
+        if x.__class__ is float and abs(result) < abs(x) * 2.0**-49:
             return 0.0
     return result
 

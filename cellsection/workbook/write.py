@@ -19,7 +19,7 @@ from cellsection.workbook.book import Limits, Position, column_number
 from cellsection.workbook.package import Package, parsed
 from cellsection.workbook.results import FormulaCell, Recalculation, Status
 from cellsection.workbook.values import ErrorValue, Scalar
-from cellsection.workbook.xlsx import REFERENCE, children, local, workbook_part
+from cellsection.workbook.xlsx import REFERENCE, children, local, relation_id, workbook_part
 
 __all__ = ["write_values"]
 
@@ -57,8 +57,7 @@ def changed_parts(package: Package, recalculation: Recalculation) -> dict[str, b
     changed: dict[str, bytes] = {}
     for entry in children(parsed(package.part(main), package.name, main), "sheets", "sheet"):
         cells = by_sheet.get(entry.get("name", ""))
-        identity = next((value for key, value in entry.attrib.items() if key.rpartition("}")[2] == "id"), "")
-        _, part, _ = relations.get(str(identity), ("", "", False))
+        _, part, _ = relations.get(relation_id(entry), ("", "", False))
         if cells:
             changed[part] = sheet_with_values(package.part(part), cells, package.name, part)
     return changed
@@ -114,7 +113,8 @@ def write_v(c: etree._Element, value: Scalar) -> None:
     for child in list(c):
         if local(child.tag) in ("v", "is"):
             c.remove(child)
-    c.attrib.pop("t", None)
+    if "t" in c.attrib:
+        del c.attrib["t"]
     if value is None:
         return
     v = etree.Element(f"{namespace}v")

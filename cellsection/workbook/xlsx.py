@@ -36,6 +36,11 @@ def children(element: etree._Element, *path: str) -> Iterator[etree._Element]:
                 yield from children(child, *path[1:])
 
 
+def relation_id(element: etree._Element) -> str:
+    """The relationship that an element names in its r:id, whatever the prefix."""
+    return next((str(value) for key, value in element.attrib.items() if str(key).endswith("}id")), "")
+
+
 def read_xlsx(package: Package, limits: Limits) -> Book:
     """The whole book, every sheet's cells included."""
     book = Book(str(package.path), "xlsx")
@@ -43,14 +48,14 @@ def read_xlsx(package: Package, limits: Limits) -> Book:
     relations = package.relationships(main)
     root = parsed(package.part(main), package.name, main)
     kinds = {kind: target for kind, target, external in relations.values() if not external}
-    strings = read_sst(package, kinds["sharedStrings"]) if kinds.get("sharedStrings") in package else []
+    shared = kinds.get("sharedStrings", "")
+    strings = read_sst(package, shared) if shared in package else []
     dynamic = read_metadata(package, kinds.get("sheetMetadata", ""))
     read_workbook_pr(root, book)
     read_external_references(root, relations, package, book, limits)
     cells = 0
     for entry in children(root, "sheets", "sheet"):
-        identity = next((value for key, value in entry.attrib.items() if key.rpartition("}")[2] == "id"), "")
-        kind, target, _ = relations.get(str(identity), ("", "", False))
+        kind, target, _ = relations.get(relation_id(entry), ("", "", False))
         sheet = Sheet(entry.get("name", ""), part=target)
         book.sheets.append(sheet)
         if kind != "worksheet":
@@ -138,7 +143,7 @@ def events(package: Package, part: str, *names: str) -> Iterator[tuple[str, etre
     try:
         yield from etree.iterparse(
             source, tag=tags, resolve_entities=False, no_network=True, load_dtd=False, huge_tree=False
-        )  # type: ignore[misc]
+        )
     except (etree.XMLSyntaxError, ValueError) as problem:
         raise WorkbookError(
             f"{package.name}: its part {part} is not well-formed XML ({problem})", remedy="Save the workbook again"
@@ -304,8 +309,7 @@ def read_external_references(
 ) -> None:
     """Other books that formulas refer to as [1], [2] ...: their file names and saved values."""
     for number, entry in enumerate(children(root, "externalReferences", "externalReference"), start=1):
-        identity = next((v for k, v in entry.attrib.items() if k.rpartition("}")[2] == "id"), "")
-        _, part, _ = relations.get(str(identity), ("", "", False))
+        _, part, _ = relations.get(relation_id(entry), ("", "", False))
         if part not in package:
             continue
         link = parsed(package.part(part), package.name, part)

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from functools import cmp_to_key
+from operator import itemgetter
 from typing import Any
 
 from cellsection.workbook.builtins.registry import ErrorResult, builtin
@@ -135,8 +136,8 @@ def sort(array: Array, index: Array = ((1.0,),), order: Array = ((1.0,),), by_co
         key, direction = keys[k], orders[k] if k < len(orders) else orders[-1]
         if not isinstance(key, float) or not 1 <= key <= len(rows[0]) or direction not in (1.0, -1.0):
             raise ErrorResult(VALUE)
-        by = order_key(direction == -1.0)
-        rows.sort(key=lambda row, c=int(key) - 1, by=by: by(row[c]))
+        by, column = order_key(direction == -1.0), int(key) - 1
+        rows = [row for _, row in sorted(((by(row[column]), row) for row in rows), key=itemgetter(0))]
     return turned(cells(rows)) if by_column else cells(rows)
 
 
@@ -151,7 +152,7 @@ def sortby(array: Array, first: Any, *rest: Any) -> Array:
         if len(keys) != len(rows) or direction not in (1.0, -1.0):
             raise ErrorResult(VALUE)
         by = order_key(direction == -1.0)
-        rows.sort(key=lambda pair, keys=keys, by=by: by(keys[pair[0]]))
+        rows = [pair for _, pair in sorted(((by(keys[pair[0]]), pair) for pair in rows), key=itemgetter(0))]
     result = cells(row for _, row in rows)
     return result if upright else turned(result)
 

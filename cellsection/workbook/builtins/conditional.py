@@ -62,7 +62,7 @@ def chosen(values: Any, pairs: tuple[Any, ...]) -> Iterator[float]:
     for r, c in places(pairs):
         cell = cell_at(array, r, c)
         if cell.__class__ is float:
-            yield cell  # type: ignore[misc]
+            yield cell
         elif isinstance(cell, ErrorValue):
             raise ErrorResult(cell)
 

@@ -13,13 +13,20 @@ from cellsection.workbook.coercion import DIV0, NUM, VALUE
 from cellsection.workbook.values import Array
 
 
+def power(base: float, exponent: float) -> float:
+    """A power; #NUM! where it is not real, #DIV/0! of zero to a negative one."""
+    if base < 0 and exponent != int(exponent):
+        return fail(NUM)
+    if base == 0 and exponent < 0:
+        return fail(DIV0)
+    return float(base**exponent)
+
+
 def growth_and_sum(rate: float, periods: float) -> tuple[float, float]:
     """(1 + r)^n, and the sum of the geometric series up to it."""
     if rate == 0:
         return 1.0, periods
-    growth = (1 + rate) ** periods
-    if isinstance(growth, complex):
-        return fail(NUM), 0.0
+    growth = power(1 + rate, periods)
     return growth, (growth - 1) / rate
 
 
@@ -133,13 +140,13 @@ def npv(rate: float, *flows: Any) -> float:
         return fail(DIV0)
     result = 0.0
     for k, flow in enumerate(numbers(flows), start=1):
-        result += flow / (1 + rate) ** k
+        result += flow / power(1 + rate, k)
     return result
 
 
 def present_value(rate: float, flows: Sequence[float]) -> float:
     """Value now of flows at the ends of periods from now on."""
-    return sum(flow / (1 + rate) ** k for k, flow in enumerate(flows))
+    return sum(flow / power(1 + rate, k) for k, flow in enumerate(flows))
 
 
 @builtin("IRR", "range number?")
@@ -154,16 +161,16 @@ def irr(area: Any, guess: float = 0.1) -> float:
 def mirr(area: Any, finance: float, reinvest: float) -> float:
     flows = list(numbers((area,)))
     n = len(flows)
-    gains = sum(max(f, 0.0) / (1 + reinvest) ** k for k, f in enumerate(flows))
-    losses = sum(min(f, 0.0) / (1 + finance) ** k for k, f in enumerate(flows))
+    gains = sum(max(f, 0.0) / power(1 + reinvest, k) for k, f in enumerate(flows))
+    losses = sum(min(f, 0.0) / power(1 + finance, k) for k, f in enumerate(flows))
     if not gains or not losses or n < 2:
         return fail(DIV0)
-    return float((-gains * (1 + reinvest) ** (n - 1) / losses) ** (1 / (n - 1))) - 1
+    return power(-gains * power(1 + reinvest, n - 1) / losses, 1 / (n - 1)) - 1
 
 
 def dated(rate: float, flows: list[float], days: list[float]) -> float:
     """Value on the first day of flows on given days, by years of 365 days."""
-    return sum(flow / (1 + rate) ** ((day - days[0]) / 365) for flow, day in zip(flows, days, strict=True))
+    return sum(flow / power(1 + rate, (day - days[0]) / 365) for flow, day in zip(flows, days, strict=True))
 
 
 def flows_and_days(area: Any, days: Any) -> tuple[list[float], list[float]]:
@@ -245,7 +252,7 @@ def db(cost: float, salvage: float, life: float, period: float, months: float = 
         return fail(NUM)
     if cost == 0:
         return 0.0
-    rate = round(1 - (salvage / cost) ** (1 / n), 3)
+    rate = round(1 - power(salvage / cost, 1 / n), 3)
     written = cost * rate * m / 12
     if p == 1:
         return written
@@ -268,8 +275,8 @@ def ddb(cost: float, salvage: float, life: float, period: float, factor: float =
 def declining(cost: float, salvage: float, life: float, period: float, factor: float) -> float:
     """Declining balance in one period."""
     rate = min(factor / life, 1.0)
-    before = cost * (1 - rate) ** (period - 1) if rate < 1 else (cost if period == 1 else 0.0)
-    after = cost * (1 - rate) ** period
+    before = cost * power(1 - rate, period - 1) if rate < 1 else (cost if period == 1 else 0.0)
+    after = cost * power(1 - rate, period)
     return max(before - max(after, salvage), 0.0)
 
 

@@ -231,5 +231,8 @@ def randarray(rows: float = 1, columns: float = 1, low: float = 0, high: float =
 
     if rows < 1 or columns < 1 or rows * columns > 1_000_000:
         fail(VALUE)
-    draw = (lambda: float(random.randint(int(low), int(high)))) if whole else (lambda: random.uniform(low, high))
+
+    def draw() -> float:
+        return float(random.randint(int(low), int(high))) if whole else random.uniform(low, high)
+
     return tuple(tuple(draw() for _ in range(int(columns))) for _ in range(int(rows)))

@@ -53,7 +53,7 @@ def sumproduct(*arrays: Array) -> float:
             term = 1.0
             for cell in cells:
                 if cell.__class__ is float:
-                    term *= cell  # type: ignore[operator]
+                    term *= cell
                 elif isinstance(cell, ErrorValue):
                     return fail(cell)
                 else:
@@ -70,7 +70,7 @@ def paired(a: Array, b: Array) -> list[tuple[float, float]]:
     for cell in (*first, *second):
         if isinstance(cell, ErrorValue):
             raise ErrorResult(cell)
-    return [(x, y) for x, y in zip(first, second, strict=True) if x.__class__ is float and y.__class__ is float]  # type: ignore[misc]
+    return [(x, y) for x, y in zip(first, second, strict=True) if x.__class__ is float and y.__class__ is float]
 
 
 @builtin("SUMX2MY2", "array array")
@@ -130,18 +130,18 @@ def rounded(x: float, digits: float, how: str) -> float:
     return math.copysign(float(text), x)
 
 
-@builtin("ROUND", "number number")
-def round_(x: float, digits: float) -> float:
+@builtin("ROUND", "number number?")  # OpenFormula lets the digits be left out
+def round_(x: float, digits: float = 0.0) -> float:
     return rounded(x, digits, "half")
 
 
-@builtin("ROUNDUP", "number number")
-def roundup(x: float, digits: float) -> float:
+@builtin("ROUNDUP", "number number?")
+def roundup(x: float, digits: float = 0.0) -> float:
     return rounded(x, digits, "up")
 
 
-@builtin("ROUNDDOWN", "number number")
-def rounddown(x: float, digits: float) -> float:
+@builtin("ROUNDDOWN", "number number?")
+def rounddown(x: float, digits: float = 0.0) -> float:
     return rounded(x, digits, "down")
 
 

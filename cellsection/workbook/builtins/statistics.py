@@ -449,7 +449,7 @@ def design(x: Array | None, y: list[float], constant: bool) -> tuple[list[list[f
         if len(cells) * len(cells[0]) == len(y):
             columns = [[cell for row in cells for cell in row]]  # type: ignore[misc]
         elif len(cells) == len(y):
-            columns = [list(column) for column in zip(*cells, strict=True)]  # type: ignore[arg-type]
+            columns = [list(column) for column in zip(*cells, strict=True)]
         elif len(cells[0]) == len(y):
             columns = [list(row) for row in cells]  # type: ignore[arg-type]
         else:

@@ -46,7 +46,7 @@ def array_of(argument: Any) -> Array:
 
 def whole(argument: Any) -> Array:
     """A range argument as an array in its full shape."""
-    return argument.whole() if hasattr(argument, "whole") else array_of(argument)  # type: ignore[no-any-return]
+    return argument.whole() if hasattr(argument, "whole") else array_of(argument)
 
 
 def flat(argument: Any) -> list[Scalar]:
@@ -66,7 +66,7 @@ def numbers(arguments: Iterable[Any]) -> Iterator[float]:
         if isinstance(argument, tuple) or hasattr(argument, "cells"):
             for cell in cells_of(argument):
                 if cell.__class__ is float:
-                    yield cell  # type: ignore[misc]
+                    yield cell
                 elif cell.__class__ is ErrorValue:
                     stop_at(cell)
         else:
