@@ -87,6 +87,7 @@ def install(extra: str = "") -> None:
     if done.returncode:
         say(done.stdout.strip())
         raise Stop("pip could not install cellsection (its words are above). Look to the network, then start again")
+    quiet([PYTHON, "-m", "compileall", "-q", str(ROOT / "cellsection")])  # pip does it for all but an editable package
     STAMP.write_text(json.dumps({**wanted, "extra": extra}), encoding="utf-8")
 
 

@@ -5,9 +5,9 @@ from __future__ import annotations
 import time
 from typing import TYPE_CHECKING
 
-from cellsection.check import Verdict, check_book
+from cellsection.check import Tolerance, Verdict
 from cellsection.check.findings import Cycle, Unsupported
-from cellsection.check.many import books_in
+from cellsection.check.many import books_in, check_books
 from cellsection.check.report import counted
 
 if TYPE_CHECKING:
@@ -27,7 +27,7 @@ def run(folder: Path) -> int:
     cells = equal = unreadable = 0
     for path in books_in(folder):
         start = time.perf_counter()
-        report = check_book(path)
+        (report,) = check_books([path], Tolerance(), processes=1)
         seconds = time.perf_counter() - start
         if report.verdict is Verdict.UNREADABLE:
             print(f"{path.name[:36]:36} {report.unreadable}")
