@@ -72,16 +72,18 @@ def spans(region: Region, ux: float, uy: float, level: float) -> list[tuple[floa
 
 @dataclass(frozen=True, slots=True)
 class _Piece:
-    """A piece of an outline on one side of the line (1 above, -1 below, 0 along it)."""
+    """A piece of an outline that belongs to one side of the line, 1 above or -1 below.
+
+    along : it runs along the line; then its side is where the region lies, which is on its left
+    """
 
     segment: Segment
     side: int
-    starts_on: bool
-    ends_on: bool
+    along: bool
 
 
 def _pieces(loop: Loop, c: float, s: float, level: float, near: float) -> list[_Piece]:
-    """The loop's segments, split where they cross the line."""
+    """The loop's segments, split where they cross the line; each piece belongs to one side, so that none is lost."""
 
     def height(x: float, y: float) -> float:
         value = c * y - s * x - level
@@ -99,58 +101,60 @@ def _pieces(loop: Loop, c: float, s: float, level: float, near: float) -> list[_
             )
             if not at_an_end and -1.0 < z < 1.0:
                 splits.append(z)
-        bounds = [-1.0, *splits, 1.0]
-        on = [not ends[0], *(True for _ in splits), not ends[1]]
-        for (start, end), (starts_on, ends_on) in zip(pairwise(bounds), pairwise(on), strict=True):
+        bounds, heights = [-1.0, *splits, 1.0], [ends[0], *(0.0 for _ in splits), ends[1]]
+        for (start, end), (first, last) in zip(pairwise(bounds), pairwise(heights), strict=True):
             piece = segment.piece(start, end) if splits else segment
-            heights = [0.0 if starts_on else ends[0], 0.0 if ends_on else ends[1]]
-            if isinstance(piece, Arc):
-                heights.append(height(*piece.point(0.0)))
-            farthest = max(heights, key=abs)
-            found.append(_Piece(piece, (farthest > 0.0) - (farthest < 0.0), starts_on, ends_on))
+            middle = height(*piece.point(0.0)) if isinstance(piece, Arc) else 0.0
+            farthest = max((first, middle, last), key=abs)
+            forward = c * (piece.x2 - piece.x1) + s * (piece.y2 - piece.y1)
+            found.append(_Piece(piece, 1 if (farthest or forward) > 0.0 else -1, not farthest))
     return found
 
 
 def _loops(outlines: list[list[_Piece]], side: int, c: float, s: float) -> Iterator[Loop]:
     """The outlines of one side: chains of its pieces, closed along the line."""
-    chains: list[list[Segment]] = []
+    chains: list[list[_Piece]] = []
     for outline in outlines:
-        if all(piece.side == side and not piece.starts_on for piece in outline):
+        if all(piece.side == side for piece in outline):
             yield tuple(piece.segment for piece in outline)
         else:
             chains += _chains(outline, side)
 
-    def along(x: float, y: float) -> float:
+    def place(x: float, y: float) -> float:
         return side * (c * x + s * y)
 
     # With the region on the left of its outline, the line is run along in its own direction above, against it below.
-    # Along the line ends and starts of chains alternate; so the first end goes with the first start, and so on.
-    starts = sorted(range(len(chains)), key=lambda i: along(chains[i][0].x1, chains[i][0].y1))
-    ends = sorted(range(len(chains)), key=lambda i: along(chains[i][-1].x2, chains[i][-1].y2))
+    # Along the line ends and starts of chains alternate; so the first end goes with the first start, and so on. What
+    # closes a side is run along backwards to close the other one: no area is lost between them.
+    starts = sorted(range(len(chains)), key=lambda i: place(chains[i][0].segment.x1, chains[i][0].segment.y1))
+    ends = sorted(range(len(chains)), key=lambda i: place(chains[i][-1].segment.x2, chains[i][-1].segment.y2))
     following = dict(zip(ends, starts, strict=True))
     left = set(following)
     while left:
         current = min(left)
         loop: list[Segment] = []
+        wide = False
         while current in left:
             left.discard(current)
-            loop += chains[current]
-            after = chains[following[current]][0]
+            loop += [piece.segment for piece in chains[current]]
+            wide = wide or not all(piece.along for piece in chains[current])
+            current = following[current]
+            after = chains[current][0].segment
             if (loop[-1].x2, loop[-1].y2) != (after.x1, after.y1):
                 loop.append(Line(loop[-1].x2, loop[-1].y2, after.x1, after.y1))
-            current = following[current]
-        yield tuple(loop)
+        if wide:
+            yield tuple(loop)
 
 
-def _chains(outline: list[_Piece], side: int) -> Iterator[list[Segment]]:
+def _chains(outline: list[_Piece], side: int) -> Iterator[list[_Piece]]:
     """Runs of pieces on one side, each from the line back to the line."""
-    first = next(i for i, piece in enumerate(outline) if piece.starts_on or piece.side != side)
-    chain: list[Segment] = []
+    first = next(i for i, piece in enumerate(outline) if piece.side != side)
+    chain: list[_Piece] = []
     for piece in (*outline[first:], *outline[:first]):
-        if chain and (piece.side != side or piece.starts_on):
+        if piece.side == side:
+            chain.append(piece)
+        elif chain:
             yield chain
             chain = []
-        if piece.side == side:
-            chain.append(piece.segment)
     if chain:
         yield chain

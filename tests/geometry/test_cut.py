@@ -127,8 +127,8 @@ def test_the_plastic_axis_of_a_tee_halves_its_area() -> None:
     above, below = cut(tee, 0, 60 - 1500 / 90)
     assert above is not None
     assert below is not None
-    assert above.moments().A == pytest.approx(1500.0, rel=1e-14)
-    assert below.moments().A == pytest.approx(1500.0, rel=1e-14)
+    assert pytest.approx(1500.0, rel=1e-14) == above.moments().A
+    assert pytest.approx(1500.0, rel=1e-14) == below.moments().A
 
 
 @given(regions(), st.floats(0.001, 0.999), st.floats(0.0, 360.0))

@@ -135,7 +135,7 @@ def test_a_flat_arc_keeps_its_digits(radius: float) -> None:
     with mpmath.workdps(60):
         half = mpmath.asin(1 / mpmath.mpf(radius))
         exact = mpmath.mpf(radius) ** 2 * (half - mpmath.sin(half) * mpmath.cos(half))
-    assert arc.integrals().A == pytest.approx(float(exact), rel=1e-14)
+    assert pytest.approx(float(exact), rel=1e-14) == arc.integrals().A
 
 
 @given(st.floats(0.0, 360.0), st.floats(0.01, 180.0), st.floats(0.0, 360.0))
@@ -161,7 +161,7 @@ def test_a_piece_of_an_arc_lies_on_it(T: float, start: float, share: float, z: f
     dx, dy = px - (whole.x1 + whole.x2) / 2, py - (whole.y1 + whole.y2) / 2
     size = ex * whole.by - ey * whole.bx
     X, Y = (dx * whole.by - dy * whole.bx) / size, (ex * dy - ey * dx) / size
-    assert X * X + (1 - T * T) * Y + T * T * Y * Y == pytest.approx(1.0, abs=1e-11)
+    assert pytest.approx(1.0, abs=1e-11) == X * X + (1 - T * T) * Y + T * T * Y * Y
     assert Y >= -1e-11
 
 
