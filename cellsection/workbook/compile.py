@@ -416,7 +416,7 @@ class Compiler:
 
             def last(m: Machine) -> Any:
                 a, b = left(m), right(m)
-                return snapped(apply(a, b), a, b)
+                return snapped(apply(a, b), a)
 
             return Compiled(last)
         return Compiled(self.value(tree, spread), tree.name if isinstance(tree, Call) else "")

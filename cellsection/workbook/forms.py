@@ -174,6 +174,7 @@ class LambdaValue:
         self.slots, self.body, self.captured = slots, body, captured
 
     def __call__(self, m: Machine, values: list[Any]) -> Any:
+        """The body's value with the parameters bound to values; those left out are blank."""
         if len(values) > len(self.slots):
             return VALUE
         bound = [*self.captured, *zip(self.slots, [*values, *([None] * (len(self.slots) - len(values)))], strict=True)]

@@ -16,6 +16,7 @@ from typing import TYPE_CHECKING, Any, TypeAlias
 from cellsection.errors import FormulaError
 from cellsection.workbook.book import Book, Bounds, Formula, Limits, Position, column_letters
 from cellsection.workbook.coercion import REF
+from cellsection.workbook.relative import shown_text
 from cellsection.workbook.results import Status
 from cellsection.workbook.values import Array, ErrorValue, Scalar
 
@@ -229,9 +230,7 @@ class Machine:
                 self.stain(kept[1])
             return kept[0]
         self.check_size((bottom - top + 1) * (right - left + 1))
-        get = self.stores[index].get
-        columns = range(left, right + 1)
-        rows = [[get((row, column)) for column in columns] for row in range(top, bottom + 1)]
+        rows = self.read_rows(index, top, left, bottom, right)
         pending: list[Place] = []
         outer, self.taint = self.taint, None
         for r, values in enumerate(rows):
@@ -251,6 +250,24 @@ class Machine:
         if taint is not None:
             self.stain(taint)
         return array
+
+    def read_rows(self, index: int, top: int, left: int, bottom: int, right: int) -> list[list[Any]]:
+        """What the store holds of a rectangle; of one that is mostly blank, found from the cells there are."""
+        store, width, height = self.stores[index], right - left + 1, bottom - top + 1
+        if width * height < 20 * len(store) + 1000:
+            get = store.get
+            columns = range(left, right + 1)
+            return [[get((row, column)) for column in columns] for row in range(top, bottom + 1)]
+        rows: list[list[Any]] = [[None] * width] * height  # blank rows are one and the same until they hold something
+        touched: set[int] = set()
+        for (row, column), value in store.items():
+            if top <= row <= bottom and left <= column <= right:
+                r = row - top
+                if r not in touched:
+                    touched.add(r)
+                    rows[r] = [None] * width
+                rows[r][column - left] = value
+        return rows
 
     def check_size(self, cells: int) -> None:
         """Refuse an array beyond the cap."""
@@ -322,6 +339,12 @@ class Machine:
         index = self.sheet_index[sheet.casefold()]
         formula = self.book.sheets[index].formulas.get((row, column)) if index < len(self.book.sheets) else None
         return formula.text.partition("(")[0].strip().upper() if formula else ""
+
+    def formula_text(self, sheet: str, row: int, column: int) -> str:
+        """The formula of a cell as the engineer reads it, "" where there is none."""
+        index = self.sheet_index[sheet.casefold()]
+        formula = self.book.sheets[index].formulas.get((row, column)) if index < len(self.book.sheets) else None
+        return shown_text(formula, (row, column)) if formula else ""
 
     def unsupported(self, construct: str) -> None:
         """The running formula needs what is not supported."""

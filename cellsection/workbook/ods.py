@@ -106,7 +106,7 @@ def read_table_row(
         name = local(cell)
         if name not in ("table-cell", "covered-table-cell"):
             continue
-        across = repeats(cell, "number-columns-repeated", package, 2 * LAST_COLUMN)
+        across = repeats(cell, "number-columns-repeated", package, 2**31)
         text = cell.get(f"{TABLE}formula")
         value = read_value(cell)
         if value is not None or text is not None:

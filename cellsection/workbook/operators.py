@@ -128,7 +128,7 @@ def per_cent(a: Scalar) -> Scalar:
     return x if isinstance(x, ErrorValue) else x / 100
 
 
-def snapped(result: Scalar, a: Scalar, b: Scalar) -> Scalar:
+def snapped(result: Scalar, a: Scalar) -> Scalar:
     """The last addition or subtraction of a formula: zero where it cancels all but the last bits of its operands.
 
     The application does so (common practice: its sum of 0.1 + 0.2 - 0.3 shows 0), but not inside brackets.

@@ -82,7 +82,10 @@ class Package:
     def part(self, name: str) -> bytes:
         """The bytes of a part. Raises WorkbookError where it is missing or damaged."""
         try:
-            return self._zip.read(name)
+            data = self._zip.read(name)
+            if b"<!DOCTYPE" in data[:2048].replace(b"\0", b""):  # utf-16 too, whose every other byte is 0
+                raise self.refused(f"its part {name} declares a document type, which no workbook needs")
+            return data
         except KeyError:
             raise WorkbookError(f"{self.name} lacks its part {name}", remedy="Save the workbook again") from None
         except (zipfile.BadZipFile, zlib.error, EOFError, OSError, NotImplementedError, RuntimeError) as problem:

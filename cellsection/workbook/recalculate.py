@@ -9,12 +9,12 @@ from pathlib import Path
 from typing import Any
 
 from cellsection.errors import FormulaError
-from cellsection.workbook.book import Book, Formula, Limits, Position, Sheet, column_letters
+from cellsection.workbook.book import Book, Formula, Limits, Sheet, column_letters
 from cellsection.workbook.calls import given_back
 from cellsection.workbook.coercion import NA, VALUE
 from cellsection.workbook.compile import Compiled, Compiler, intersected
 from cellsection.workbook.machine import CellArea, Machine, Pending, Place, Special, Taint, Unsupported
-from cellsection.workbook.relative import moved_text, relative_key
+from cellsection.workbook.relative import relative_key, shown_text
 from cellsection.workbook.results import FormulaCell, Recalculation, Status
 from cellsection.workbook.values import Array, ErrorValue, Scalar
 
@@ -247,12 +247,5 @@ def formula_cells(driver: Driver, index: int, sheet: Sheet) -> Iterator[FormulaC
             call=driver.compiled(formula, index).call,
             reason=reason,
             has_saved=position in sheet.values,
-            text=partial(shown, formula, owner),
+            text=partial(shown_text, formula, owner),
         )
-
-
-def shown(formula: Formula, position: Position) -> str:
-    """A formula as the engineer reads it in its own cell."""
-    text = moved_text(formula.text, position[0] - formula.row, position[1] - formula.column, formula.language)
-    sign = "=" if formula.language == "excel" else "of:="
-    return f"{{{sign}{text}}}" if formula.kind == "array" and not formula.dynamic else f"{sign}{text}"

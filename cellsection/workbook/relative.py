@@ -4,9 +4,9 @@ from __future__ import annotations
 
 import re
 
-from cellsection.workbook.book import column_letters, column_number
+from cellsection.workbook.book import Formula, Position, column_letters, column_number
 
-__all__ = ["moved_text", "relative_key"]
+__all__ = ["moved_text", "relative_key", "shown_text"]
 
 BEFORE = r"(?<![\w.$\\])"  # a reference does not begin inside a word
 EXCEL = re.compile(
@@ -58,3 +58,15 @@ def moved_text(text: str, down: int, across: int, language: str) -> str:
         return ":".join(pin + (name if pin else str(int(name) + down)) for pin, name in ends)
 
     return (EXCEL if language == "excel" else OPEN_ROWS).sub(moved, text)
+
+
+FILE_PREFIX = re.compile(r"_xl(?:fn|ws|udf|pm|op)\.")
+
+
+def shown_text(formula: Formula, position: Position) -> str:
+    """A formula as the engineer reads it in its own cell: without the prefixes that only the file carries."""
+    text = moved_text(formula.text, position[0] - formula.row, position[1] - formula.column, formula.language)
+    if "_xl" in text:
+        text = FILE_PREFIX.sub("", text)
+    sign = "=" if formula.language == "excel" else "of:="
+    return f"{{{sign}{text}}}" if formula.kind == "array" and not formula.dynamic else f"{sign}{text}"

@@ -6,6 +6,7 @@ import io
 import re
 from collections.abc import Iterator
 from datetime import datetime
+from math import isfinite
 
 from lxml import etree
 
@@ -18,6 +19,7 @@ __all__ = ["read_xlsx"]
 
 REFERENCE = re.compile(r"\$?([A-Za-z]{1,3})\$?([0-9]{1,7})")
 ESCAPED = re.compile(r"_x([0-9A-Fa-f]{4})_")
+AGAIN = "Save the workbook again"
 LAST_ROW, LAST_COLUMN = 1_048_576, 16_384
 
 
@@ -52,10 +54,12 @@ def read_xlsx(package: Package, limits: Limits) -> Book:
     strings = read_sst(package, shared) if shared in package else []
     dynamic = read_metadata(package, kinds.get("sheetMetadata", ""))
     read_workbook_pr(root, book)
-    read_external_references(root, relations, package, book, limits)
+    read_external_references(root, relations, package, book)
     cells = 0
     for entry in children(root, "sheets", "sheet"):
         kind, target, _ = relations.get(relation_id(entry), ("", "", False))
+        if not target:
+            raise WorkbookError(f"{package.name} does not say where its sheet {entry.get('name')} is", remedy=AGAIN)
         sheet = Sheet(entry.get("name", ""), part=target)
         book.sheets.append(sheet)
         if kind != "worksheet":
@@ -223,12 +227,10 @@ def read_c(
 def read_v(text: str, kind: str, strings: list[str]) -> Scalar:
     """A value by the kind its cell states."""
     if kind == "n":
-        return float(text) if text.strip() else None
+        return read_number(text)
     if kind == "s":
-        index = int(text)
-        return (
-            strings[index] if 0 <= index < len(strings) else ErrorValue("#REF!", "shared string missing from the file")
-        )
+        known = text.strip().isdigit() and int(text) < len(strings)
+        return strings[int(text)] if known else ErrorValue("#REF!", "its text is missing from the file")
     if kind in ("str", "inlineStr"):
         return unescaped(text)
     if kind == "b":
@@ -239,6 +241,17 @@ def read_v(text: str, kind: str, strings: list[str]) -> Scalar:
         moment = datetime.fromisoformat(text.replace("Z", ""))
         return (moment - datetime(1899, 12, 30)).total_seconds() / 86400
     return unescaped(text)
+
+
+def read_number(text: str) -> Scalar:
+    """A number as saved; what is none, or not finite, is an error value that says so."""
+    if not text.strip():
+        return None
+    try:
+        number = float(text) if "_" not in text else float("nan")
+    except ValueError:
+        number = float("nan")
+    return number if isfinite(number) else ErrorValue("#NUM!", f'its saved value "{text[:24]}" is no number')
 
 
 def read_f(
@@ -305,7 +318,7 @@ def read_table(root: etree._Element, sheet: str, book: Book) -> None:
 
 
 def read_external_references(
-    root: etree._Element, relations: dict[str, tuple[str, str, bool]], package: Package, book: Book, limits: Limits
+    root: etree._Element, relations: dict[str, tuple[str, str, bool]], package: Package, book: Book
 ) -> None:
     """Other books that formulas refer to as [1], [2] ...: their file names and saved values."""
     for number, entry in enumerate(children(root, "externalReferences", "externalReference"), start=1):

@@ -48,9 +48,18 @@ def factdouble(x: float) -> float:
     return float(math.prod(range(n, 0, -2))) if n > 0 else 1.0
 
 
+def choices(n: int, k: int) -> float:
+    """Number of ways to choose k out of n; #NUM! where it is beyond a number, told from its logarithm first."""
+    if not n >= k >= 0:
+        return fail(NUM)
+    if math.lgamma(n + 1) - math.lgamma(k + 1) - math.lgamma(n - k + 1) > 710:
+        return fail(NUM)
+    return float(math.comb(n, k)) if min(k, n - k) < 10_000 else fail(NUM)
+
+
 @builtin("COMBIN", "number number")
 def combin(n: float, k: float) -> float:
-    return float(math.comb(int(n), int(k))) if int(n) >= int(k) >= 0 else fail(NUM)
+    return choices(int(n), int(k))
 
 
 @builtin("COMBINA", "number number")
@@ -58,22 +67,27 @@ def combina(n: float, k: float) -> float:
     a, b = int(n), int(k)
     if a < 0 or b < 0 or (a == 0 and b > 0):
         return fail(NUM)
-    return float(math.comb(a + b - 1, b)) if a else 1.0
+    return choices(a + b - 1, b) if a else 1.0
 
 
 @builtin("PERMUT", "number number")
 def permut(n: float, k: float) -> float:
-    return float(math.perm(int(n), int(k))) if int(n) >= int(k) >= 0 else fail(NUM)
+    a, b = int(n), int(k)
+    if not a >= b >= 0 or math.lgamma(a + 1) - math.lgamma(a - b + 1) > 710:
+        return fail(NUM)
+    return float(math.perm(a, b))
 
 
 @builtin("PERMUTATIONA", "number number")
 def permutationa(n: float, k: float) -> float:
-    return float(int(n) ** int(k)) if n >= 0 and k >= 0 else fail(NUM)
+    return float(int(n)) ** int(k) if n >= 0 and k >= 0 else fail(NUM)
 
 
 @builtin("MULTINOMIAL", "range+")
 def multinomial(*arguments: Any) -> float:
     parts = naturals(arguments)
+    if sum(parts) > 170:
+        return fail(NUM)
     return float(math.factorial(sum(parts)) // math.prod(map(math.factorial, parts)))
 
 

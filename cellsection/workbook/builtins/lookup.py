@@ -6,7 +6,7 @@ from typing import Any
 
 from cellsection.workbook.builtins.registry import Context, ErrorResult, builtin
 from cellsection.workbook.builtins.traits import array_of, cells_of, matcher, whole
-from cellsection.workbook.coercion import NA, REF, VALUE, compared, equal, number_of
+from cellsection.workbook.coercion import NA, REF, VALUE, compared, equal
 from cellsection.workbook.values import Array, ErrorValue, Scalar
 
 
@@ -287,5 +287,5 @@ def hyperlink(target: str, shown: Scalar = None) -> Scalar:
 
 @builtin("FORMULATEXT", "context reference")
 def formulatext(context: Context, area: Any) -> Any:
-    context.unsupported("function FORMULATEXT")
-    return number_of(None)
+    text = context.formula_text(area.sheet, area.top, area.left) if not isinstance(area, tuple) else ""
+    return text or NA

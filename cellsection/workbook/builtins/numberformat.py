@@ -162,7 +162,7 @@ def digit_section(pieces: list[re.Match[str]], number: float) -> str:
         kept -= 1
     part = part[:kept]
     sign = "-" if scaled < 0 else ""
-    return sign + laid_out(pieces, integer, part, "." in body, exponent, power)
+    return sign + laid_out(pieces, integer, part, "." in body, power)
 
 
 def group(digits: str) -> str:
@@ -172,9 +172,7 @@ def group(digits: str) -> str:
     return ",".join(groups)
 
 
-def laid_out(
-    pieces: list[re.Match[str]], integer: str, part: str, point: bool, exponent: re.Match[str] | None, power: int
-) -> str:
+def laid_out(pieces: list[re.Match[str]], integer: str, part: str, point: bool, power: int) -> str:
     """The digits put where the pattern has its placeholders; literals inside the digits split them from the right."""
     before: list[str] = []
     slots: list[int] = []  # how many digits belong to each placeholder before the point

@@ -77,6 +77,10 @@ class Context(Protocol):
         """Outermost function of a cell's formula, "" where there is none."""
         ...
 
+    def formula_text(self, sheet: str, row: int, column: int) -> str:
+        """The formula of a cell as the engineer reads it, "" where there is none."""
+        ...
+
     def now(self) -> datetime:
         """When the recalculation began."""
         ...
