@@ -8,7 +8,7 @@ can form a circle, and chains of any length need no recursion.
 from __future__ import annotations
 
 import time
-from collections.abc import Callable, Iterator
+from collections.abc import Callable, Iterable, Iterator
 from dataclasses import dataclass
 from datetime import datetime
 from typing import TYPE_CHECKING, Any, TypeAlias
@@ -230,10 +230,11 @@ class Machine:
                 self.stain(kept[1])
             return kept[0]
         self.check_size((bottom - top + 1) * (right - left + 1))
-        rows = self.read_rows(index, top, left, bottom, right)
+        rows, filled = self.read_rows(index, top, left, bottom, right)
         pending: list[Place] = []
         outer, self.taint = self.taint, None
-        for r, values in enumerate(rows):
+        for r in filled:
+            values = rows[r]
             for c, value in enumerate(values):
                 if value.__class__ is Special:
                     if value is PENDING:
@@ -243,21 +244,23 @@ class Machine:
         taint, self.taint = self.taint, outer
         if pending:
             raise Pending(pending)
-        array: Array = tuple(map(tuple, rows))  # type: ignore[arg-type]
+        array: Array = tuple(map(tuple, rows))
         if self.cached_cells < 5_000_000:
-            self.cached_cells += len(rows) * len(columns)
+            self.cached_cells += len(rows) * (right - left + 1)
             self.areas[key] = (array, taint)
         if taint is not None:
             self.stain(taint)
         return array
 
-    def read_rows(self, index: int, top: int, left: int, bottom: int, right: int) -> list[list[Any]]:
-        """What the store holds of a rectangle; of one that is mostly blank, found from the cells there are."""
+    def read_rows(
+        self, index: int, top: int, left: int, bottom: int, right: int
+    ) -> tuple[list[list[Any]], Iterable[int]]:
+        """What the store holds of a rectangle, and which rows hold anything; a mostly blank one is read sparsely."""
         store, width, height = self.stores[index], right - left + 1, bottom - top + 1
         if width * height < 20 * len(store) + 1000:
             get = store.get
             columns = range(left, right + 1)
-            return [[get((row, column)) for column in columns] for row in range(top, bottom + 1)]
+            return [[get((row, column)) for column in columns] for row in range(top, bottom + 1)], range(height)
         rows: list[list[Any]] = [[None] * width] * height  # blank rows are one and the same until they hold something
         touched: set[int] = set()
         for (row, column), value in store.items():
@@ -267,7 +270,7 @@ class Machine:
                     touched.add(r)
                     rows[r] = [None] * width
                 rows[r][column - left] = value
-        return rows
+        return rows, sorted(touched)
 
     def check_size(self, cells: int) -> None:
         """Refuse an array beyond the cap."""
