@@ -9,7 +9,7 @@ from typing import Any
 
 from cellsection.workbook.builtins.registry import ErrorResult, builtin
 from cellsection.workbook.builtins.traits import array_of, whole
-from cellsection.workbook.coercion import CALC, NA, NUM, VALUE, compared, logical_of
+from cellsection.workbook.coercion import CALC, NA, NUM, VALUE, compared, logical_of, number_of
 from cellsection.workbook.values import Array, ErrorValue, Scalar
 
 
@@ -97,11 +97,19 @@ def transpose(array: Array) -> Array:
     return tuple(zip(*array, strict=True))
 
 
-@builtin("SEQUENCE", "number number? number? number?")
-def sequence(rows: float, columns: float = 1.0, start: float = 1.0, step: float = 1.0) -> Array:
-    r, c = int(rows), int(columns)
+def given(value: Scalar, default: float) -> float:
+    """A number, or its default where it is left out or written but empty."""
+    number = default if value is None else number_of(value)
+    if isinstance(number, ErrorValue):
+        raise ErrorResult(number)
+    return number
+
+
+@builtin("SEQUENCE", "value value? value? value?")
+def sequence(height: Scalar, width: Scalar = None, first: Scalar = None, by: Scalar = None) -> Array:
+    r, c, start, step = int(given(height, 1.0)), int(given(width, 1.0)), given(first, 1.0), given(by, 1.0)
     if r < 1 or c < 1:
-        raise ErrorResult(CALC if r == 0 or c == 0 else VALUE)
+        raise ErrorResult(VALUE)
     if r * c > 5_000_000:
         raise ErrorResult(NUM)
     return cells([start + (i * c + j) * step for j in range(c)] for i in range(r))
@@ -111,13 +119,16 @@ def sequence(rows: float, columns: float = 1.0, start: float = 1.0, step: float 
 
 
 def order_key(descending: bool) -> Any:
-    """Numbers, text, logicals, then blanks and errors last whichever the direction."""
+    """Numbers, text, logicals, errors; downwards the other way round; blanks last either way."""
 
     def compare(a: Scalar, b: Scalar) -> int:
-        last_a, last_b = a is None or isinstance(a, ErrorValue), b is None or isinstance(b, ErrorValue)
-        if last_a or last_b:
-            return int(last_a) - int(last_b)
-        return -compared(a, b) if descending else compared(a, b)
+        if a is None or b is None:
+            return (a is None) - (b is None)
+        if isinstance(a, ErrorValue) or isinstance(b, ErrorValue):
+            side = isinstance(a, ErrorValue) - isinstance(b, ErrorValue)
+        else:
+            side = compared(a, b)
+        return -side if descending else side
 
     return cmp_to_key(compare)
 
@@ -207,6 +218,8 @@ def cut(count: float | None, length: int, drop: bool) -> slice:
         return slice(None)
     n = int(count)
     if drop:
+        if abs(n) >= length:
+            raise ErrorResult(VALUE)
         return slice(n, None) if n >= 0 else slice(None, max(length + n, 0))
     if n == 0:
         raise ErrorResult(CALC)

@@ -115,8 +115,8 @@ def poisson_dist(x: float, m: float, cumulative: bool) -> float:
 def binom_dist(k: float, n: float, p: float, cumulative: bool) -> float:
     if not 0 <= int(k) <= int(n) or not 0 <= p <= 1:
         return fail(NUM)
-    law = stats().binom(int(n), p)
-    return finite(law.cdf(int(k)) if cumulative else law.pmf(int(k)))
+    law = stats().binom(float(int(n)), p)
+    return finite(law.cdf(float(int(k))) if cumulative else law.pmf(float(int(k))))
 
 
 @builtin("BINOM.INV CRITBINOM", "number number number")
@@ -325,7 +325,7 @@ def hypgeom_dist(k: float, n: float, successes: float, population: float, cumula
     law = stats().hypergeom(int(population), int(successes), int(n))
     if not 0 <= int(k) <= min(int(n), int(successes)) or int(n) > int(population):
         return fail(NUM)
-    return finite(law.cdf(int(k)) if cumulative else law.pmf(int(k)))
+    return finite(law.cdf(float(int(k))) if cumulative else law.pmf(float(int(k))))
 
 
 @builtin("NEGBINOM.DIST", "number number number logical")

@@ -39,7 +39,7 @@ def fv(rate: float, periods: float, payment: float, present: float = 0.0, early:
 @builtin("PV", "number number number number? number?")
 def pv(rate: float, periods: float, payment: float, future: float = 0.0, early: float = 0.0) -> float:
     growth, series = growth_and_sum(rate, periods)
-    return -(future + payment * (1 + (rate if early else 0)) * series) / growth if growth else fail(NUM)
+    return -(future + payment * (1 + (rate if early else 0)) * series) / growth if growth else fail(DIV0)
 
 
 @builtin("PMT", "number number number number? number?")
@@ -161,9 +161,11 @@ def irr(area: Any, guess: float = 0.1) -> float:
 def mirr(area: Any, finance: float, reinvest: float) -> float:
     flows = list(numbers((area,)))
     n = len(flows)
+    if reinvest == -1 or finance == -1:
+        return fail(DIV0)
     gains = sum(max(f, 0.0) / power(1 + reinvest, k) for k, f in enumerate(flows))
     losses = sum(min(f, 0.0) / power(1 + finance, k) for k, f in enumerate(flows))
-    if not gains or not losses or n < 2:
+    if not losses or n < 2:
         return fail(DIV0)
     return power(-gains * power(1 + reinvest, n - 1) / losses, 1 / (n - 1)) - 1
 

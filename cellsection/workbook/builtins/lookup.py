@@ -152,8 +152,15 @@ def searched(wanted: Scalar, cells: list[Scalar], match_mode: float, search_mode
     return None if position is None else order[position]
 
 
-@builtin("XMATCH", "value range number? number?")
-def xmatch(wanted: Scalar, area: Any, match_mode: float = 0.0, search_mode: float = 1.0) -> Any:
+def plain_mode(context: Context, match_mode: float) -> None:
+    """Regular expressions are not supported."""
+    if match_mode == 3:
+        context.unsupported("a search by regular expression")
+
+
+@builtin("XMATCH", "context value range number? number?")
+def xmatch(context: Context, wanted: Scalar, area: Any, match_mode: float = 0.0, search_mode: float = 1.0) -> Any:
+    plain_mode(context, match_mode)
     array = whole(area)
     if array and len(array) > 1 and len(array[0]) > 1:
         return VALUE
@@ -161,10 +168,17 @@ def xmatch(wanted: Scalar, area: Any, match_mode: float = 0.0, search_mode: floa
     return NA if found is None else float(found + 1)
 
 
-@builtin("XLOOKUP", "value range range any? number? number?")
+@builtin("XLOOKUP", "context value range range any? number? number?")
 def xlookup(
-    wanted: Scalar, area: Any, results: Any, missing: Scalar = NA, match_mode: float = 0.0, search_mode: float = 1.0
+    context: Context,
+    wanted: Scalar,
+    area: Any,
+    results: Any,
+    missing: Scalar = NA,
+    match_mode: float = 0.0,
+    search_mode: float = 1.0,
 ) -> Any:
+    plain_mode(context, match_mode)
     keys, values = whole(area), whole(results)
     upright = len(keys[0]) == 1
     if (len(values) if upright else len(values[0])) != (len(keys) if upright else len(keys[0])):

@@ -6,7 +6,6 @@ import re
 
 from cellsection.workbook.builtins.calendar import clock_of, day_of
 from cellsection.workbook.builtins.mathematics import rounded
-from cellsection.workbook.coercion import number_text
 from cellsection.workbook.values import Scalar
 
 __all__ = ["formatted"]
@@ -118,12 +117,23 @@ def number_section(section: str, number: float, date1904: bool) -> str | None:
     ):
         return date_section(pieces, number, date1904)
     if any(m["general"] for m in pieces):
-        body = number_text(abs(number))
+        body = general(abs(number))
         sign = "-" if number < 0 else ""
         return sign + "".join(body if m["general"] else literal(m) for m in pieces)
     if any(m["other"] == "/" for m in pieces):
         return fraction_section(section, number)
     return digit_section(pieces, number)
+
+
+def general(x: float) -> str:
+    """A number that is not negative in the General format, which has room for eleven characters."""
+    exponent = int(f"{x:.10e}".partition("e")[2]) if x else 0
+    places = 10 - max(exponent + 1, 1)
+    if exponent >= 11 or (exponent < -4 and float(f"{x:.{places}f}") != x):
+        mantissa, _, power = f"{x:.5e}".partition("e")
+        return f"{mantissa.rstrip('0').rstrip('.')}E{power[0]}{power[1:].zfill(2)}"
+    shown = f"{rounded(x, places, 'half'):.{max(places, 0)}f}"
+    return shown.rstrip("0").rstrip(".") if "." in shown else shown
 
 
 def digit_section(pieces: list[re.Match[str]], number: float) -> str:

@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import math
-from itertools import pairwise
 from typing import Any
 
 from cellsection.workbook.builtins.mathematics import fail, paired, total
@@ -302,11 +301,15 @@ def standardize(x: float, m: float, s: float) -> float:
 
 @builtin("FREQUENCY", "array array")
 def frequency(data: Array, bins: Array) -> Array:
-    values, edges = list(numbers((data,))), sorted(numbers((bins,)))
-    counts = [sum(x <= edges[0] for x in values)] if edges else []
-    counts += [sum(low < x <= high for x in values) for low, high in pairwise(edges)]
-    counts.append(sum(x > edges[-1] for x in values) if edges else len(values))
-    return tuple((float(each),) for each in counts)
+    values, given = list(numbers((data,))), list(numbers((bins,)))
+    edges = sorted(set(given))
+    counts = dict.fromkeys(edges, 0)
+    for x in values:
+        edge = next((each for each in edges if x <= each), None)
+        if edge is not None:
+            counts[edge] += 1
+    listed = [counts.pop(edge, 0) for edge in given]  # in the order the bins are written, a repeated one counts once
+    return tuple((float(each),) for each in (*listed, len(values) - sum(listed)))
 
 
 # ---- two variables

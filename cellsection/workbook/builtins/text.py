@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 import unicodedata
 from typing import Any
 
@@ -234,42 +235,50 @@ def dollar(x: float, decimals: float = 2.0) -> str:
     return f"({body})" if y < 0 else body
 
 
-@builtin("TEXTBEFORE", "text text number? number? number? any?")
-def textbefore(text: str, mark: str, n: float = 1.0, fold: float = 0.0, end: float = 0.0, missing: Scalar = NA) -> Any:
-    place = nth(text, mark, int(n), bool(fold))
-    if place is None:
+@builtin("TEXTBEFORE", "text array number? number? number? any?")
+def textbefore(
+    text: str, marks: Array, n: float = 1.0, fold: float = 0.0, end: float = 0.0, missing: Scalar = NA
+) -> Any:
+    found = nth(text, marks, int(n), bool(fold))
+    if found is None:
         return text if end else missing
-    return text[:place]
+    return text[: found[0]]
 
 
-@builtin("TEXTAFTER", "text text number? number? number? any?")
-def textafter(text: str, mark: str, n: float = 1.0, fold: float = 0.0, end: float = 0.0, missing: Scalar = NA) -> Any:
-    place = nth(text, mark, int(n), bool(fold))
-    if place is None:
+@builtin("TEXTAFTER", "text array number? number? number? any?")
+def textafter(
+    text: str, marks: Array, n: float = 1.0, fold: float = 0.0, end: float = 0.0, missing: Scalar = NA
+) -> Any:
+    found = nth(text, marks, int(n), bool(fold))
+    if found is None:
         return "" if end else missing
-    return text[place + len(mark) :]
+    return text[found[1] :]
 
 
-def nth(text: str, mark: str, n: int, fold: bool) -> int | None:
+def separators(marks: Array, fold: bool) -> re.Pattern[str]:
+    """A pattern for any of the marks, the longest first."""
+    words = sorted((plain(cell) for row in marks for cell in row), key=len, reverse=True)
+    if not all(words):
+        raise ErrorResult(VALUE)
+    return re.compile("|".join(map(re.escape, words)), re.IGNORECASE if fold else 0)
+
+
+def nth(text: str, marks: Array, n: int, fold: bool) -> tuple[int, int] | None:
     """Place of the n-th mark, from the end where n is negative."""
     if n == 0:
         raise ErrorResult(VALUE)
-    where, what = (text.casefold(), mark.casefold()) if fold else (text, mark)
-    places, at = [], where.find(what)
-    while at >= 0 and what:
-        places.append(at)
-        at = where.find(what, at + len(what))
+    places = [match.span() for match in separators(marks, fold).finditer(text)]
     return places[n - 1 if n > 0 else n] if abs(n) <= len(places) else None
 
 
-@builtin("TEXTSPLIT", "text text? text? logical? number? any?")
+@builtin("TEXTSPLIT", "text array array? logical? number? any?")
 def textsplit(
-    text: str, columns: str = "", rows: str = "", skip: bool = False, fold: float = 0.0, pad: Scalar = NA
+    text: str, columns: Array, rows: Array | None = None, skip: bool = False, fold: float = 0.0, pad: Scalar = NA
 ) -> Array:
-    if fold:
-        columns, rows = columns.casefold(), rows.casefold()
-    lines = text.split(rows) if rows else [text]
-    table = [line.split(columns) if columns else [line] for line in lines]
+    across = None if columns == ((None,),) else separators(columns, bool(fold))
+    down = None if rows is None or rows == ((None,),) else separators(rows, bool(fold))
+    lines = down.split(text) if down else [text]
+    table = [across.split(line) if across else [line] for line in lines]
     if skip:
         table = [[piece for piece in line if piece] for line in table]
     width = max(map(len, table))

@@ -134,6 +134,8 @@ def criterion(wanted: Scalar) -> Callable[[Scalar], bool]:
     number = text_number(rest)
     if sign in ORDERS:
         return ordered(sign, rest, number)
+    if sign == "<>" and number is not None:  # text that spells the number is not that number here
+        return lambda cell: not (cell.__class__ is float and compared(cell, number) == 0)
     holds = equal_to(rest, number, explicit=bool(sign))
     if sign == "<>":
         return lambda cell: not holds(cell)
