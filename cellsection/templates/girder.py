@@ -15,7 +15,6 @@ from cellsection.templates.style import (
     LENGTH,
     PLAIN,
     Look,
-    array,
     furnish,
     heading,
     input_area,
@@ -39,24 +38,24 @@ VALUES = RESULTS + 2  # first row of CS_TOTALS
 FAULTS = RESULTS + 22
 NOTES = FAULTS + FAULT_ROWS + 5
 CHART_AT = f"F{RESULTS + 1}"
-WIDTHS = {"A": 4.3, "B": 21, "C": 12.5, "D": 11.5, "E": 11} | dict.fromkeys("FGHIJ", 7.6)
+WIDTHS = {"A": 4.3, "B": 21, "C": 12.5, "D": 11.5, "E": 11} | dict.fromkeys("FGHIJ", 7.8)
 WIDTHS |= {"K": 8, "L": 8, "M": 6.5, "N": 5.5, "O": 5.5, "P": 12}
 
-# What the rows of CS_TOTALS mean, the name of their value, and how it is shown.
-TOTALS = (
-    ("area", "area", LENGTH),
-    ("centroid", "centroid_x", LENGTH),
-    ("", "centroid_y", LENGTH),
-    ("second moments", "Ix", LARGE),
-    ("", "Iy", LARGE),
-    ("product moment", "Ixy", LARGE),
-    ("polar moment", "Ip", LARGE),
-    ("radii of gyration", "rx", LENGTH),
-    ("", "ry", LENGTH),
-    ("principal moments", "moment_1", LARGE),
-    ("", "moment_2", LARGE),
-    ("angle from x to axis 1", "angle_1", LENGTH),
-)
+# The symbols of CS_TOTALS: what each means, the name of its value, how it is shown, what its unit adds to the length.
+TOTALS = {
+    "A": ("area", "area", LENGTH, "²"),
+    "x": ("centroid", "centroid_x", LENGTH, ""),
+    "y": ("", "centroid_y", LENGTH, ""),
+    "Ix": ("second moments", "Ix", LARGE, "⁴"),
+    "Iy": ("", "Iy", LARGE, "⁴"),
+    "Ixy": ("product moment", "Ixy", LARGE, "⁴"),
+    "Ip": ("polar moment", "Ip", LARGE, "⁴"),
+    "rx": ("radii of gyration", "rx", LENGTH, ""),
+    "ry": ("", "ry", LENGTH, ""),
+    "I1": ("principal moments", "moment_1", LARGE, "⁴"),
+    "I2": ("", "moment_2", LARGE, "⁴"),
+    "angle": ("from x to axis 1", "angle_1", LENGTH, "°"),
+}
 FIBRES = ("top", "bottom", "left", "right")
 
 
@@ -96,8 +95,8 @@ def _status(sheet: Worksheet) -> None:
 def _title_block(sheet: Worksheet, content: Content) -> None:
     label = CAPTION.but(align="left", size=10)
     fields = {
-        "B4": ("project", "C4:H4", content.project),
-        "B5": ("member", "C5:H5", content.member),
+        "B4": ("project", "C4:G4", content.project),
+        "B5": ("member", "C5:G5", content.member),
         "I4": ("prepared by", "K4:M4", content.prepared_by),
         "I5": ("checked by", "K5:M5", content.checked_by),
         "O4": ("date", "P4", content.issued),
@@ -156,21 +155,33 @@ def _results(book: Workbook, sheet: Worksheet) -> None:
     heading(sheet, RESULTS, "3  Drawing", "G:P", "to one scale, fitted to its frame; cut-outs dashed")
     sheet.row_dimensions[RESULTS + 1].height = 6
     quiet = CAPTION.but(size=10)
-    unit = PLAIN.but(align="left", indent=1)
-    last = VALUES + len(TOTALS) - 1
-    array(sheet, f"C{VALUES}:E{last}", "=CS_TOTALS(parts)", [PLAIN.but(align="center"), PLAIN, unit])
-    for row, (text, name, shown) in enumerate(TOTALS, start=VALUES):
+    for row, (symbol, (text, name, shown, power)) in enumerate(TOTALS.items(), start=VALUES):
         put(sheet, f"B{row}", text or None, quiet)
-        sheet[f"D{row}"].number_format = shown
+        put(sheet, f"C{row}", symbol, PLAIN.but(align="center"))
+        put(sheet, f"D{row}", f"=CS_TOTALS(parts,C{row})", PLAIN.but(format=shown))
         name_range(book, name, f"{GIRDER}!$D${row}")
-    head = last + 2
-    put(sheet, f"C{head}", "fibre", HEADER)
-    put(sheet, f"D{head}", "distance", HEADER.but(align="right"))
-    put(sheet, f"E{head}", "modulus", HEADER.but(align="right"))
-    put(sheet, f"B{head + 1}", "extreme fibres", quiet)
-    looks = [PLAIN.but(align="center"), PLAIN.but(format=LENGTH), PLAIN.but(format=LARGE)]
-    array(sheet, f"C{head + 1}:E{head + 4}", "=CS_FIBRES(parts)", looks)
-    for row, word in enumerate(FIBRES, start=head + 1):
+        unit = f'=length_unit&"{power}"' if power else "=length_unit"
+        put(sheet, f"E{row}", "°" if power == "°" else unit, PLAIN.but(align="left", indent=1))
+    put(sheet, f"E{VALUES + 1}", "=INDEX(CS_TOTALS(parts),2,3)", PLAIN.but(align="left", indent=1))
+    name_range(book, "length_unit", f"{GIRDER}!$E${VALUES + 1}")
+    _fibres(book, sheet, VALUES + len(TOTALS) + 1)
+
+
+def _fibres(book: Workbook, sheet: Worksheet, head: int) -> None:
+    for column, text, unit in (
+        ("C", "fibre", ""),
+        ("D", "distance", "=length_unit"),
+        ("E", "modulus", '=length_unit&"³"'),
+    ):
+        align = "center" if column == "C" else "right"
+        put(sheet, f"{column}{head}", text, PLAIN.but(bold=True, align=align))
+        put(sheet, f"{column}{head + 1}", unit or None, CAPTION.but(align=align, under=HEADER.under))
+    put(sheet, f"B{head + 2}", "extreme fibres", CAPTION.but(size=10))
+    for number, word in enumerate(FIBRES, start=1):
+        row = head + 1 + number
+        put(sheet, f"C{row}", word, PLAIN.but(align="center"))
+        put(sheet, f"D{row}", f"=INDEX(CS_FIBRES(parts),{number},2)", PLAIN.but(format=LENGTH))
+        put(sheet, f"E{row}", f"=INDEX(CS_FIBRES(parts),{number},3)", PLAIN.but(format=LARGE))
         name_range(book, f"fibre_{word}", f"{GIRDER}!$D${row}")
         name_range(book, f"modulus_{word}", f"{GIRDER}!$E${row}")
 
@@ -179,7 +190,7 @@ def _faults(book: Workbook, sheet: Worksheet, content: Content) -> None:
     heading(sheet, FAULTS, "4  Faults", "A:P", "double-counted overlaps, cut-outs outside the solid, loose pieces")
     sheet.row_dimensions[FAULTS + 1].height = 6
     verdict = f"B{FAULTS + 2}"
-    array(sheet, verdict, "=CS_FAULTS(parts,gap)", Look(bold=True))
+    put(sheet, verdict, "=CS_FAULTS(parts,gap)", Look(bold=True))
     judged(sheet, verdict, f'{verdict}="no faults"', f'{verdict}<>"no faults"')
     name_range(book, "faults", f"{GIRDER}!$B${FAULTS + 2}")
     put(sheet, f"O{FAULTS + 2}", "pieces up to this far apart count as connected", CAPTION.but(align="right", size=10))
@@ -188,7 +199,7 @@ def _faults(book: Workbook, sheet: Worksheet, content: Content) -> None:
     areas = ("B#", "C#:F#", "G#:K#", "L#:P#")  # part, fault, effect, remedy
     for number in range(1, FAULT_ROWS + 1):
         row = FAULTS + 2 + number
-        sheet.row_dimensions[row].height = 30
+        sheet.row_dimensions[row].height = 28
         for column, area in enumerate(areas, start=1):
             place = area.replace("#", str(row))
             if ":" in place:

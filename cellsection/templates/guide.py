@@ -18,7 +18,7 @@ LINES = (
     "For each part choose its shape and type the dimensions that shape has; the cell says which.",
     "Place it: x and y are where its datum lies. A plate on top of another: datum bottom, y the level it stands on.",
     "Turn it if it does not stand upright. A channel as a cap, its web on top: shape channel, turn -90, datum left.",
-    "Take holes away as parts of their own with sign -1, inside the solid. A hole that parts a plate needs its width as gap.",
+    "Take holes away as parts with sign -1, inside the solid. Where a hole parts a plate, type its width as gap.",
     f"There is room for {PARTS} parts. For more, make a second table on a sheet of your own; CS_JOINED joins both.",
     "Read Faults first: where two parts overlap, area is counted twice. Then the checks on Ledger, made by hand.",
     "Use the results in your own sheets: they have names, such as area, centroid_y, Ix, Iy, modulus_top.",

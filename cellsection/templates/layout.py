@@ -24,6 +24,7 @@ __all__ = [
     "LEDGER",
     "LEDGER_COLUMNS",
     "LEDGER_HEAD",
+    "LEDGER_LIST",
     "LEDGER_TOP",
     "LEDGER_TOTALS",
     "PARTS",
@@ -43,6 +44,7 @@ LEDGER_TOP, LEDGER_TOTALS = LEDGER_HEAD + 1, LEDGER_HEAD + 1 + PARTS
 HAND = LEDGER_TOTALS + 2  # heading of the same by hand
 HAND_HEAD = HAND + 2
 HAND_TOP, HAND_TOTALS = HAND_HEAD + 1, HAND_HEAD + 1 + PARTS
+LEDGER_LIST = 36  # on Workings: row of the header of the ledger as CS_LEDGER gives it, in the same columns
 
 
 def name_range(book: Workbook, name: str, area: str) -> None:

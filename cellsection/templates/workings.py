@@ -1,4 +1,9 @@
-"""The sheet Workings: what feeds the drawing and the list of faults."""
+"""The sheet Workings: what the other sheets show, as the functions give it, and what feeds the drawing.
+
+All array formulas stand here, each of exactly the right size. The sheets that are read and printed take their cells
+from here one by one: LibreOffice calculates array formulas anew when it opens a file, and where it does not know the
+functions it would show an error in place of the saved values. The values of other formulas it shows as saved.
+"""
 
 from __future__ import annotations
 
@@ -12,8 +17,7 @@ from cellsection.templates.layout import (
     FIRST,
     GIRDER,
     LAST,
-    LEDGER,
-    LEDGER_HEAD,
+    LEDGER_LIST,
     PARTS,
     WORKINGS,
     name_range,
@@ -21,6 +25,7 @@ from cellsection.templates.layout import (
 from cellsection.templates.style import (
     CAPTION,
     HEADER,
+    LEDGER_LOOKS,
     LENGTH,
     PLAIN,
     QUIET,
@@ -42,8 +47,8 @@ __all__ = ["traces", "workings_sheet"]
 FRAME = 4  # row of the heading over the frame
 LINES = 13  # over the axes and dimensions
 FAULTS = 27  # over the list of faults
-OUTLINES = 34  # over the outlines
-LAST_COLUMN = get_column_letter(1 + 4 * PARTS)
+OUTLINES = LEDGER_LIST + PARTS + 3  # over the outlines
+WIDE = 6  # columns an outline takes: as given, solid, cut-out
 CUT_OUT = "B4531F"
 
 MIDDLE = 3  # the point of a dimension line that carries its text
@@ -64,13 +69,14 @@ Points = tuple[tuple[str, str], ...]
 def workings_sheet(book: Workbook) -> Worksheet:
     """Add the sheet to the workbook."""
     sheet: Worksheet = book.create_sheet(WORKINGS)
-    widths(sheet, {"A": 24} | {get_column_letter(column): 10.5 for column in range(2, 2 + 4 * PARTS)})
-    title_strip(sheet, "Workings", "M", "Feeds the drawing and the list of faults on Girder; nothing is typed here.")
+    widths(sheet, {"A": 24} | {get_column_letter(column): 10.5 for column in range(2, 2 + WIDE * PARTS)})
+    title_strip(sheet, "Workings", "M", "Feeds the drawing, the ledger and the list of faults; nothing is typed here.")
     _frame(book, sheet)
     _lines(sheet)
     _faults(book, sheet)
+    _ledger(sheet)
     _outlines(sheet)
-    furnish(sheet, f"A1:M{OUTLINES - 1}", across=True)
+    furnish(sheet, f"A1:M{FAULTS - 1}", across=True)
     return sheet
 
 
@@ -91,7 +97,6 @@ def _frame(book: Workbook, sheet: Worksheet) -> None:
         if y:
             put(sheet, f"C{row}", y, PLAIN.but(format=shown))
     name_range(book, "parts_used", f"{WORKINGS}!$B$5")
-    name_range(book, "drawing_middle", f"{WORKINGS}!$B$10:$C$10")
     name_range(book, "drawing_side", f"{WORKINGS}!$B$11")
 
 
@@ -150,32 +155,46 @@ def _faults(book: Workbook, sheet: Worksheet) -> None:
     first, last = FAULTS + 2, FAULTS + 1 + FAULT_ROWS
     for number, row in enumerate(range(first, last + 1), start=1):
         put(sheet, f"A{row}", number, PLAIN.but(align="right"))
-    array(sheet, f"B{first}:E{last}", f'=IF($A${first}:$A${last}<=fault_count,CS_FAULTS(parts,gap),"")')
+    some = f'IF($A${first}:$A${last}<=fault_count,CS_FAULTS(parts,gap),"")'
+    array(sheet, f"B{first}:E{last}", f'=IF(fault_count=0,"",{some})')
     name_range(book, "fault_list", f"{WORKINGS}!$B${first}:$E${last}")
 
 
+def _ledger(sheet: Worksheet) -> None:
+    heading(sheet, LEDGER_LIST - 2, "Ledger", "A:M")
+    last = LEDGER_LIST + PARTS
+    for number, row in enumerate(range(LEDGER_LIST, last + 1)):
+        put(sheet, f"A{row}", number, PLAIN.but(align="right"))  # the header row is 0: one comparison picks all in use
+    numbers = f"$A${LEDGER_LIST}:$A${last}"
+    area = f"B{LEDGER_LIST}:M{last}"
+    array(sheet, area, f'=IF({numbers}<=parts_used,CS_LEDGER(parts),"")', LEDGER_LOOKS)
+    put(sheet, f"A{last + 1}", "total", PLAIN.but(align="right"))
+    array(sheet, f"B{last + 1}:M{last + 1}", "=INDEX(CS_LEDGER(parts),parts_used+2,0)", LEDGER_LOOKS)
+
+
 def _outlines(sheet: Worksheet) -> None:
-    hint = "scaled to the frame; a part's solid outline, then the same for a cut-out"
-    heading(sheet, OUTLINES, "Outlines", f"A:{LAST_COLUMN}")
-    put(sheet, f"D{OUTLINES}", hint, CAPTION.but(italic=True))
-    for row, text in enumerate(("series", "part drawn", "sign of its area", "outline"), start=OUTLINES + 1):
+    heading(sheet, OUTLINES, "Outlines", f"A:{get_column_letter(1 + WIDE * PARTS)}")
+    rows = ("number", "part drawn", "sign of its area", "outline by CS_OUTLINE; scaled to the frame, solid; cut-out")
+    for row, text in enumerate(rows, start=OUTLINES + 1):
         put(sheet, f"A{row}", text)
-    top = OUTLINES + 5
+    top, bottom = OUTLINES + 5, OUTLINES + 4 + POINTS
     for number in range(1, PARTS + 1):
-        column = 4 * number - 2
-        letters = [get_column_letter(column + each) for each in range(4)]
-        solid = letters[0]
-        put(sheet, f"{solid}{OUTLINES + 1}", number, HEADER.but(align="right"))
-        put(sheet, f"{solid}{OUTLINES + 2}", f"=MIN({solid}{OUTLINES + 1},parts_used)")
-        area = f"INDEX({LEDGER}!$C${LEDGER_HEAD + 1}:$C${LEDGER_HEAD + PARTS},{solid}{OUTLINES + 2})"
-        put(sheet, f"{solid}{OUTLINES + 3}", f"=SIGN({area})")
-        for letter, text in zip(letters, ("x", "y", "x cut", "y cut"), strict=True):
+        x, y, *drawn = (get_column_letter(2 + WIDE * (number - 1) + each) for each in range(WIDE))
+        put(sheet, f"{x}{OUTLINES + 1}", number, HEADER.but(align="right"))
+        put(sheet, f"{x}{OUTLINES + 2}", f"=MIN({x}{OUTLINES + 1},parts_used)")
+        areas = f"$C${LEDGER_LIST + 1}:$C${LEDGER_LIST + PARTS}"
+        put(sheet, f"{x}{OUTLINES + 3}", f"=SIGN(INDEX({areas},{x}{OUTLINES + 2}))")
+        for letter, text in zip((x, y, *drawn), ("x", "y", "x solid", "y solid", "x cut", "y cut"), strict=True):
             put(sheet, f"{letter}{OUTLINES + 4}", text, CAPTION.but(align="right"))
-        outline = f"(CS_OUTLINE(parts,{solid}${OUTLINES + 2},{POINTS})-drawing_middle)/drawing_side"
-        look = PLAIN.but(format=SMALL)
-        for pair, wanted in (((0, 1), ">0"), ((2, 3), "<0")):
-            place = f"{letters[pair[0]]}{top}:{letters[pair[1]]}{top + POINTS - 1}"
-            array(sheet, place, f"=IF({solid}${OUTLINES + 3}{wanted},{outline},0)", look)
+        outline = f"CS_OUTLINE(parts,{x}${OUTLINES + 1},{POINTS})"
+        if number > 1:  # a part the table does not have repeats the one before
+            left, right = (get_column_letter(2 + WIDE * (number - 2) + each) for each in range(2))
+            outline = f"IF({x}${OUTLINES + 1}<=parts_used,{outline},{left}{top}:{right}{bottom})"
+        array(sheet, f"{x}{top}:{y}{bottom}", f"={outline}", PLAIN.but(format=LENGTH))
+        for letter, source, middle, sign in zip(drawn, (x, y) * 2, ("$B$10", "$C$10") * 2, ">><<", strict=True):
+            for row in range(top, bottom + 1):
+                scaled = f"({source}{row}-{middle})/drawing_side"
+                put(sheet, f"{letter}{row}", f"=IF({x}${OUTLINES + 3}{sign}0,{scaled},0)", PLAIN.but(format=SMALL))
 
 
 def traces() -> list[Trace]:
@@ -200,8 +219,7 @@ def traces() -> list[Trace]:
         )
         found.append(trace)
     top, bottom = OUTLINES + 5, OUTLINES + 4 + POINTS
-    found += [Trace(WORKINGS, top, bottom, 2 + 4 * part) for part in range(PARTS)]
-    found += [
-        Trace(WORKINGS, top, bottom, 4 + 4 * part, weight=1, colour=CUT_OUT, dash="sysDash") for part in range(PARTS)
-    ]
+    starts = [4 + WIDE * part for part in range(PARTS)]
+    found += [Trace(WORKINGS, top, bottom, column) for column in starts]
+    found += [Trace(WORKINGS, top, bottom, column + 2, weight=1, colour=CUT_OUT, dash="sysDash") for column in starts]
     return found

@@ -5,7 +5,6 @@ from __future__ import annotations
 from typing import TYPE_CHECKING, Any
 
 from cellsection.hosts.headless import recalculate
-
 from cellsection.templates.books import girder
 from cellsection.templates.content import COLUMNS, LETTER
 from cellsection.templates.layout import FIRST, LAST

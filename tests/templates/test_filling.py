@@ -69,7 +69,7 @@ def test_the_hand_ledger_agrees_for_every_datum_and_half_turn(turn: int, tmp_pat
     out = filled(tmp_path / "datums.xlsx", parts)
     assert by_hand(out)[: len(parts)] == ["hand"] * len(parts)
     met = values(out)
-    assert all(met["Ledger", f"N{row}"] is True for row in check_rows(out))
+    assert all(met["Ledger", f"Q{row}"] is True for row in check_rows(out))
 
 
 def check_rows(path: Path) -> range:

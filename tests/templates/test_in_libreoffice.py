@@ -40,9 +40,10 @@ def converted(soffice: str, book: Path, folder: Path, *, anew: bool) -> Workbook
     return load_workbook(out / book.name, data_only=True)
 
 
-def cells(book: Workbook) -> Iterator[tuple[str, str, Any]]:
+def printed(book: Workbook) -> Iterator[tuple[str, str, Any]]:
+    """What stands in the print areas."""
     for sheet in book:
-        for row in sheet.iter_rows():
+        for row in sheet[sheet.print_area.rpartition("!")[2].replace("$", "")]:
             for cell in row:
                 if cell.value not in (None, ""):
                     yield sheet.title, cell.coordinate, cell.value
@@ -59,11 +60,14 @@ def differing(expected: dict[tuple[str, str], Any], met: Workbook) -> list[tuple
 
 
 @pytest.mark.parametrize("name", TEMPLATES)
-def test_libreoffice_shows_the_saved_values_and_no_error(name: str, soffice: str, tmp_path: Path) -> None:
+def test_libreoffice_prints_the_saved_values_and_no_error(name: str, soffice: str, tmp_path: Path) -> None:
+    # Our functions are not there. Beside the printed pages stand arrays and logicals: it calculates those in any case.
     book = WORKBOOKS / f"{name}.xlsx"
-    saved = {(sheet, address): value for sheet, address, value in cells(load_workbook(book, data_only=True))}
+    saved = {(sheet, address): value for sheet, address, value in printed(load_workbook(book, data_only=True))}
     met = converted(soffice, book, tmp_path, anew=False)
-    assert not [each for each in cells(met) if str(each[2]).startswith(("#", "Err:"))]
+    shown = [each for each in printed(met) if str(each[2]).startswith(("#", "Err:"))]
+    assert not shown
+    assert len(saved) > 300
     assert not differing(saved, met)
 
 

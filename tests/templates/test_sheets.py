@@ -16,7 +16,7 @@ from cellsection.templates.books import girder
 from cellsection.templates.content import COLUMNS
 from cellsection.templates.drawing import POINTS
 from cellsection.templates.entry import DATUMS, SHAPES
-from cellsection.templates.layout import FIRST, GIRDER, HEAD, LAST, PARTS
+from cellsection.templates.layout import FAULT_ROWS, FIRST, GIRDER, HEAD, LAST, PARTS
 
 if TYPE_CHECKING:
     from pathlib import Path
@@ -69,50 +69,58 @@ def test_the_parts_range_is_a_parts_block_of_the_catalogue(book: Workbook, saved
     assert CATALOGUE["CS_TOTALS"].call(block, "A") == pytest.approx(2 * 220 * 20 + 10 * 560)
 
 
-@pytest.mark.parametrize("function", ["CS_TOTALS", "CS_FIBRES"])
-def test_a_plain_array_has_exactly_the_size_of_its_result(function: str, book: Workbook, saved: Workbook) -> None:
-    block = table(saved[GIRDER], f"B{HEAD}:P{LAST}")
-    result = CATALOGUE[function].call(block)
-    (area,) = [ref for (_, ref), text in arrays(book).items() if text == f"={function}(parts)"]
+def size(area: str) -> tuple[int, int]:
+    """Rows and columns of an area."""
     left, top, right, bottom = range_boundaries(area)
-    assert (bottom - top + 1, right - left + 1) == (len(result), len(result[0]))
+    return bottom - top + 1, right - left + 1
 
 
 def test_the_ledger_has_room_for_every_part_its_header_and_its_totals(book: Workbook, saved: Workbook) -> None:
     block = table(saved[GIRDER], f"B{HEAD}:P{LAST}")
     width = len(CATALOGUE["CS_LEDGER"].call(block)[0])
-    sizes = {
-        (bottom - top + 1, right - left + 1)
-        for (_, ref), text in arrays(book).items()
-        if "CS_LEDGER" in text
-        for left, top, right, bottom in [range_boundaries(ref)]
-    }
-    assert sizes == {(1 + PARTS, width), (1, width)}
+    sizes = [size(ref) for (_, ref), text in arrays(book).items() if "CS_LEDGER" in text]
+    assert sorted(sizes) == [(1, width), (1 + PARTS, width)]
 
 
-def test_every_part_of_the_table_has_an_outline_and_one_as_a_cut_out(book: Workbook) -> None:
+def test_the_list_of_faults_is_as_wide_as_a_fault(book: Workbook) -> None:
+    twice = (("shape", "b", "h"), ("rectangle", 4.0, 2.0), ("rectangle", 4.0, 2.0))
+    (width,) = {len(row) for row in CATALOGUE["CS_FAULTS"].call(twice)}
+    (area,) = [ref for (_, ref), text in arrays(book).items() if "CS_FAULTS" in text]
+    assert size(area) == (FAULT_ROWS, width)
+
+
+def test_array_formulas_stand_on_the_sheet_that_is_not_read(book: Workbook) -> None:
+    assert {sheet for sheet, _ in arrays(book)} == {"Workings"}
+
+
+def test_every_part_of_the_table_has_an_outline_of_the_length_asked_for(book: Workbook, saved: Workbook) -> None:
     outlines = [ref for (_, ref), text in arrays(book).items() if "CS_OUTLINE" in text]
-    assert len(outlines) == 2 * PARTS
-    for ref in outlines:
-        left, top, right, bottom = range_boundaries(ref)
-        assert (bottom - top + 1, right - left + 1) == (POINTS, 2)
+    block = table(saved[GIRDER], f"B{HEAD}:P{LAST}")
+    points = CATALOGUE["CS_OUTLINE"].call(block, 1, POINTS)
+    assert [size(ref) for ref in outlines] == [(len(points), len(points[0]))] * PARTS
 
 
-def test_no_cell_shows_an_error_or_is_left_without_a_value(book: Workbook, saved: Workbook) -> None:
-    for sheet in book:
-        for row in sheet.iter_rows():
-            for cell in row:
-                value = saved[sheet.title][cell.coordinate].value
-                assert not str(value).startswith("#"), f"{sheet.title}!{cell.coordinate}"
-                # An empty text is saved as no value at all, as openpyxl reads it.
-                if cell.data_type == "f" and value is None:
-                    assert '""' in str(getattr(cell.value, "text", cell.value)), f"{sheet.title}!{cell.coordinate}"
+def test_the_drawing_has_a_line_a_part_one_for_it_as_a_cut_out_and_its_axes_and_dimensions() -> None:
+    (chart,) = girder()[GIRDER]._charts
+    assert len(chart.series) == 2 * PARTS + 6
+
+
+def test_no_cell_shows_an_error(saved: Workbook) -> None:
+    shown = [
+        (sheet.title, cell.coordinate)
+        for sheet in saved
+        for row in sheet.iter_rows()
+        for cell in row
+        if cell.data_type == "e" or str(cell.value).startswith("#")
+    ]
+    assert not shown
 
 
 def test_every_input_column_has_its_limits_with_a_word_of_help(book: Workbook) -> None:
     rules = book[GIRDER].data_validations.dataValidation
     covered = {str(area).split(":")[0]: rule for rule in rules for area in rule.sqref.ranges}
-    assert set(covered) == {f"{column}{FIRST}" for column in COLUMNS if column != "B"}  # B is a free label
+    gap = book.defined_names["gap"].attr_text.replace("$", "").split("!")[1]
+    assert set(covered) == {gap, *(f"{column}{FIRST}" for column in COLUMNS if column != "B")}  # B is a free label
     for rule in covered.values():
         assert rule.allow_blank
         assert 0 < len(rule.prompt) <= 255
