@@ -168,7 +168,7 @@ def test_a_refused_part_is_told_with_row_column_and_remedy(tmp_path: Path) -> No
     result = run("check", write_book(tmp_path / "girder.xlsx", cells))
     assert result.exit_code == 1
     assert "Errors (1)" in result.output
-    assert "Girder!F1  #VALUE!" in result.output
+    assert "#VALUE!  Girder!F1  CS_TOTALS" in result.output
     assert "row 3, column h" in " ".join(result.output.split())
     assert "passed on to 1 cell: Girder!F2" in result.output
 

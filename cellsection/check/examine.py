@@ -36,6 +36,7 @@ if TYPE_CHECKING:
 __all__ = ["NO_FAULTS", "check_book", "examine"]
 
 NO_FAULTS = "no faults"  # what CS_FAULTS says of a sound parts block
+FUNCTION_IN_FRONT = re.compile(r"CS_\w+[:,] *")
 SECTION_FUNCTION = re.compile(r"\bCS[_.]\w+ *\(", re.IGNORECASE)
 STANDARD = Tolerance()
 
@@ -163,22 +164,31 @@ class _Examination:
         ]
 
     def _error_findings(self, book: Recalculation) -> list[Finding]:
-        origins = set(self.errors)
-        known = {key: cell for cell in book.cells if (key := (cell.sheet, cell.address)) in origins} if origins else {}
-        return [self._error(origin, met, known.get(origin)) for origin, met in self.errors.items()]
+        if not self.errors:
+            return []
+        formulas = {key: cell for cell in book.cells if (key := (cell.sheet, cell.address)) in self.errors}
+        by_cause: dict[tuple[str, object], list[tuple[str, str]]] = defaultdict(list)
+        for origin, met in self.errors.items():
+            value = met[0][0].value
+            assert isinstance(value, ErrorValue)
+            # The same words from several functions of the same parts are one cause; without words each cell is its own.
+            by_cause[value.code, _bare(value.message) or origin].append(origin)
+        return [self._error(code, origins, formulas) for (code, _), origins in by_cause.items()]
 
-    def _error(self, origin: tuple[str, str], met: list[tuple[FormulaCell, bool]], source: FormulaCell | None) -> Error:
-        value = next(cell.value for cell, _ in met)
+    def _error(self, code: str, origins: list[tuple[str, str]], formulas: dict[tuple[str, str], FormulaCell]) -> Error:
+        met = [each for origin in origins for each in self.errors[origin]]
+        value, source = met[0][0].value, formulas.get(origins[0])
         assert isinstance(value, ErrorValue)
-        spot = _spot(source) if source else Spot(*origin)
+        spot, arising = _spot(source) if source else Spot(*origins[0]), set(origins)
         return Error(
             spot=spot,
-            code=value.code,
-            cause=value.message,
+            code=code,
+            cause=_bare(value.message) if len(origins) > 1 else value.message,
             saved=source.saved if source and source.has_saved else None,
-            echoes=tuple(key for cell, _ in met if (key := (cell.sheet, cell.address)) != origin),
+            cells=tuple(origins),
+            echoes=tuple(key for cell, _ in met if (key := (cell.sheet, cell.address)) not in arising),
             saved_alike=all(holds for _, holds in met),
-            refused=bool(value.message and value.code == "#VALUE!" and SECTION_FUNCTION.search(spot.formula)),
+            refused=bool(value.message and code == "#VALUE!" and SECTION_FUNCTION.search(spot.formula)),
         )
 
     def _unverified_findings(self) -> list[Finding]:
@@ -229,8 +239,13 @@ def _origin(cell: FormulaCell) -> tuple[str, str]:
     return sheet or cell.sheet, address
 
 
+def _bare(message: str) -> str:
+    """What a section function said, without its name in front."""
+    return FUNCTION_IN_FRONT.sub("", message)
+
+
 def _cause(error: ErrorValue) -> str:
-    return error.message or (f"{error.code} from {error.origin}" if error.origin else error.code)
+    return _bare(error.message) or (f"{error.code} from {error.origin}" if error.origin else error.code)
 
 
 def _spot(cell: FormulaCell) -> Spot:

@@ -98,11 +98,13 @@ class Difference:
 
 @dataclass(frozen=True, slots=True)
 class Error:
-    """An error value, told once, at the cell where it arises; `echoes` are the cells that only pass it on.
+    """An error value, told once a cause; `echoes` are the cells that only pass it on.
 
+    spot : the first cell where it arises
+    cells : all cells where it arises, for the one cause
     saved_alike : the saved file shows the same error in every one of these cells, so that the book is consistent
     refused : a section function refused its input there; that counts though the file was saved so
-    saved : what the file holds where the error arises, None where it stores nothing
+    saved : what the file holds in the first of these cells, None where it stores nothing
     """
 
     kind: ClassVar[str] = "error"
@@ -110,6 +112,7 @@ class Error:
     code: str
     cause: str
     saved: Scalar
+    cells: Cells
     echoes: Cells
     saved_alike: bool
     refused: bool

@@ -86,18 +86,18 @@ def _sections(report: Report, every: bool) -> Iterator[tuple[str, RenderableType
     if cycles := _of(report, Cycle):
         yield f"Circular references ({len(cycles):,})", _paragraphs([_cycle(each, every) for each in cycles], every)
     if unverified := _of(report, NotVerified):
-        lines = [_wrapped(f"{each.reason}: {places_in_words(each.cells, every=every)}") for each in unverified]
+        lines = [Text(f"{each.reason}: {places_in_words(each.cells, every=every)}") for each in unverified]
         yield "Not verified for another reason", _paragraphs(lines, every)
     if unsaved := _of(report, Unsaved):
         cells = unsaved[0].cells
         said = "Nothing to compare with; open the book in the spreadsheet application and save it"
-        yield f"No saved value ({len(cells):,})", _wrapped(f"{places_in_words(cells, every=every)}. {said}.")
+        yield f"No saved value ({len(cells):,})", Text(f"{places_in_words(cells, every=every)}. {said}.")
     if saved_alike := [each for each in errors if each.verdict is Verdict.HOLDS]:
         title = f"Errors that the saved file shows too ({len(saved_alike):,})"
         yield title, _paragraphs([_error(each, every) for each in saved_alike], every)
     if report.notes:
         lines = [
-            _wrapped(note.text + (f": {places_in_words(note.cells, every=every)}" if note.cells else ""))
+            Text(note.text + (f": {places_in_words(note.cells, every=every)}" if note.cells else ""))
             for note in report.notes
         ]
         yield "Notes", _paragraphs(lines, every)
@@ -127,43 +127,41 @@ def _unmet_checks(unmet: Sequence[UnmetCheck], every: bool) -> RenderableType:
     for each in _first(unmet, every):
         values = (each.expected, each.saved, each.recalculated)
         _row(table, str(each.spot), *(_value(value, every) for value in values), _formula(each.spot.formula, every))
-        if each.cause:
-            _row(table, "", "", "", "", f"because: {each.cause}")
-    return Group(table, *_rest(unmet, every))
+    causes = dict.fromkeys(each.cause for each in unmet if each.cause)
+    because = [Text(f"because {cause}") for cause in causes]
+    return Group(table, *_rest(unmet, every), *_first(because, every), *_rest(because, every))
 
 
 def _error(error: Error, every: bool) -> RenderableType:
-    lines = [Text.assemble((f"{error.spot}  {error.code}", "bold"), f"  {error.cause}")]
+    place = str(error.spot) if len(error.cells) == 1 else f"{len(error.cells):,} cells"
+    lines: list[RenderableType] = []
+    if len(error.cells) > 1:
+        lines.append(Text(f"arises in {places_in_words(error.cells, every=every)}"))
     if error.spot.formula:
+        first = f"first {error.spot}  " if len(error.cells) > 1 else ""
         saved = f"   saved: {value_in_words(error.saved, every=every)}" if not error.saved_alike else ""
-        lines.append(Text(f"  {_formula(error.spot.formula, every)}{saved}", style="dim"))
+        lines.append(Text(f"{first}{_formula(error.spot.formula, every)}{saved}", style="dim"))
     if error.echoes:
-        passed = f"  passed on to {counted(len(error.echoes), 'cell')}: {places_in_words(error.echoes, every=every)}"
-        lines.append(_wrapped(passed))
-    return Group(*lines)
+        cells = counted(len(error.echoes), "cell")
+        lines.append(Text(f"passed on to {cells}: {places_in_words(error.echoes, every=every)}"))
+    return _entry(Text.assemble((f"{error.code}  {place}", "bold"), f"  {error.cause}"), lines)
 
 
 def _unsupported(each: Unsupported, every: bool) -> RenderableType:
-    lines = [
-        Text.assemble(
-            (each.construct, "bold"),
-            f" in {counted(len(each.cells), 'cell')}: {places_in_words(each.cells, every=every)}",
-        ),
-        Text(f"  {each.example}  {_formula(each.example.formula, every)}", style="dim"),
-        *_dependants(each.dependants, every),
-    ]
-    return Group(*lines)
+    cells = f" in {counted(len(each.cells), 'cell')}: {places_in_words(each.cells, every=every)}"
+    example = Text(f"{each.example}  {_formula(each.example.formula, every)}", style="dim")
+    return _entry(Text.assemble((each.construct, "bold"), cells), [example, *_dependants(each.dependants, every)])
 
 
 def _cycle(each: Cycle, every: bool) -> RenderableType:
-    return Group(_wrapped(each.circle), *_dependants(each.dependants, every))
+    return _entry(Text(each.circle), _dependants(each.dependants, every))
 
 
 def _dependants(cells: tuple[tuple[str, str], ...], every: bool) -> list[Text]:
     if not cells:
         return []
     depend = counted(len(cells), "cell depends", "cells depend")
-    return [_wrapped(f"  {depend} on it, not verified: {places_in_words(cells, every=every)}")]
+    return [Text(f"{depend} on it, not verified: {places_in_words(cells, every=every)}")]
 
 
 # The small pieces
@@ -182,6 +180,11 @@ def _row(table: Table, *texts: str) -> None:
     table.add_row(*(Text(text) for text in texts))
 
 
+def _entry(heading: Text, lines: Sequence[RenderableType]) -> RenderableType:
+    """A heading with its lines set in below it."""
+    return Group(heading, Padding(Group(*lines), (0, 0, 0, 2), expand=False)) if lines else heading
+
+
 def _paragraphs(found: Sequence[RenderableType], every: bool) -> RenderableType:
     return Group(*_first(found, every), *_rest(found, every))
 
@@ -193,10 +196,6 @@ def _first(found: Sequence[Any], every: bool) -> Sequence[Any]:
 def _rest(found: Sequence[object], every: bool) -> list[Text]:
     more = 0 if every else len(found) - LISTED
     return [Text(f"and {more:,} more; --all lists them", style="dim")] if more > 0 else []
-
-
-def _wrapped(text: str) -> Text:
-    return Text(text, overflow="fold")
 
 
 def _value(value: Scalar, every: bool) -> str:

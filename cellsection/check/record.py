@@ -94,6 +94,7 @@ def _facts(finding: Finding) -> Record:
                 "saved": _value(finding.saved),
                 "saved alike": finding.saved_alike,
                 "input refused": finding.refused,
+                "cells": _addresses(finding.cells),
                 "passed on to": _addresses(finding.echoes),
             }
         case Unsupported():

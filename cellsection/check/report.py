@@ -45,8 +45,8 @@ def calm_lines(report: Report, *, every: bool = False) -> list[str]:
     lines = list(filter(None, (tally_line(report), checks_line(report))))
     errors = [finding for finding in report.findings if isinstance(finding, Error)]
     if errors:
-        cells = tuple(key for error in errors for key in (error.spot.key, *error.echoes))
-        arise = [error.spot.key for error in errors]
+        cells = tuple(key for error in errors for key in (*error.cells, *error.echoes))
+        arise = [key for error in errors for key in error.cells]
         lines.append(
             f"{counted(len(cells), 'cell shows', 'cells show')} an error value, as in the saved file; "
             f"they arise in {places_in_words(arise, every=every)}"

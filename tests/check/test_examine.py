@@ -46,8 +46,29 @@ def test_the_echoes_of_an_error_are_folded_into_the_cell_where_it_arises() -> No
     assert isinstance(found, Error)
     assert (str(found.spot), found.spot.formula) == ("Girder!F12", '=CS_TOTALS(A4:I7,"Ix")')
     assert "column tw" in found.cause
+    assert found.cells == (("Girder", "F12"),)
     assert found.echoes == (("Girder", "F13"), ("Girder", "F14"), ("Girder", "F15"))
     assert report.tally.differ == 4
+
+
+def test_one_cause_told_by_several_functions_is_one_error() -> None:
+    words = 'parts, row 2, column tw: "10.2 mm" is text. Retype as a number.'
+    totals = ErrorValue("#VALUE!", f"CS_TOTALS: {words}", "Girder!D29")
+    fibres = ErrorValue("#VALUE!", f"CS_FIBRES: {words}", "Girder!D44")
+    other = ErrorValue("#VALUE!", "CS_TOTALS: parts, row 3, column h: 0 is not positive. Enter it.", "Girder!D99")
+    cells = [cell("D29", 1.0, totals), cell("D30", 1.0, totals), cell("D44", 1.0, fibres), cell("D99", 1.0, other)]
+    first, second = examine(book(*cells)).findings
+    assert isinstance(first, Error)
+    assert isinstance(second, Error)
+    assert first.cause == words
+    assert first.cells == (("Girder", "D29"), ("Girder", "D44"))
+    assert first.echoes == (("Girder", "D30"),)
+    assert second.cells == (("Girder", "D99"),)
+
+
+def test_errors_without_words_are_told_apart_by_where_they_arise() -> None:
+    cells = [cell(at, 1.0, ErrorValue("#DIV/0!", "", f"Girder!{at}")) for at in ("A1", "A2")]
+    assert [len(found.cells) for found in examine(book(*cells)).findings if isinstance(found, Error)] == [1, 1]
 
 
 def test_an_error_arising_in_a_typed_in_value_names_that_cell() -> None:
