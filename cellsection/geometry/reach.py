@@ -63,7 +63,7 @@ def _slabs(
     # Arc ends are levels, too: between them and the extremes an arc only rises or falls.
     levels = {value for _i, _segment, low, high in segments for value in (low, high)}
     levels |= {ux * segment.x1 + uy * segment.y1 for _i, segment, _low, _high in segments}
-    bands = [level for level in sorted(levels, reverse=True) if bottom <= level <= top]
+    bands = [top, *sorted((level for level in levels if bottom < level < top), reverse=True), bottom]
     for high, low in pairwise(bands):
         if high - low <= sliver:
             continue

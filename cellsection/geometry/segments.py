@@ -200,7 +200,7 @@ class Arc:
         return 4.0 * atan(self.T)
 
     def divisions(self, chord: float) -> int:
-        """In how many chords the arc is drawn without straying more than `chord` from it."""
+        """In how many chords, two at least, the arc is drawn without straying more than `chord` from it."""
         (ex, ey), T = self._half_chord(), self.T
         to_E, to_N = (1.0 + T * T) / (2.0 * T), (1.0 + T * T) / (2.0 * T * T)
         nn, ee = to_N * hypot(self.bx, self.by), to_E * hypot(ex, ey)
@@ -209,7 +209,7 @@ class Arc:
         radius = sqrt((nn * nn + ee * ee) / 2.0 + hypot((nn * nn - ee * ee) / 2.0, across))
         # A chord over the angle 2δ strays by radius (1 - cos δ) = 2 radius sin²(δ/2).
         half = 2.0 * atan2(sqrt(chord), sqrt(max(2.0 * radius - chord, 0.0)))
-        return max(1, ceil(self.sweep / (2.0 * half)))
+        return max(2, ceil(self.sweep / (2.0 * half)))
 
     def drawn(self, pieces: int) -> list[tuple[float, float]]:
         """Points after the start, at equal angles."""

@@ -52,7 +52,7 @@ def dimensions(draw: st.DrawFn, word: str) -> dict[str, float]:
             return size | {"r": draw(radius) * min((b - size["tw"]) / 2, h - size["tf"])}
         case "channel":
             size |= {"tw": b * draw(share), "tf": h * draw(share) / 3}
-            slope = draw(radius) * 0.9 * min(2 * size["tf"] / b, (h / 2 - size["tf"]) / b)
+            slope = draw(radius) * min(0.5, 1.8 * size["tf"] / b, 0.9 * (h / 2 - size["tf"]) / b)
             tip, root = size["tf"] - slope * b / 2, size["tf"] + slope * (b / 2 - size["tw"])
             r2 = draw(share) * min(tip, (b - size["tw"]) / 2)
             return size | {"slope": slope, "r2": r2, "r": draw(share) * 0.8 * min(h / 2 - root, (b - size["tw"]) / 2)}
