@@ -46,7 +46,7 @@ REMARK = CAPTION.but(align="left")
 def bending_sheet(book: Workbook) -> Worksheet:
     """Add the sheet to the workbook: actions, the girder as built and strengthened, stresses, utilisation."""
     sheet: Worksheet = book.create_sheet(BENDING)
-    widths(sheet, {"A": 4.3, "B": 30, "C": 11, "D": 13, "E": 13, "F": 9} | dict.fromkeys("GHIJKL", 8.5) | {"M": 9})
+    widths(sheet, {"A": 4.3, "B": 30, "C": 10, "D": 14, "E": 14, "F": 9} | dict.fromkeys("GHIJKL", 8.5) | {"M": 9})
     title_strip(sheet, "Bending", "M")
     put(sheet, "A3", f'={GIRDER}!C5&""', PLAIN.but(bold=True))
     _actions(book, sheet)

@@ -14,6 +14,7 @@ from cellsection.templates.style import (
     LARGE,
     LENGTH,
     PLAIN,
+    TITLE,
     Look,
     furnish,
     heading,
@@ -64,6 +65,7 @@ def girder_sheet(book: Workbook, content: Content) -> Worksheet:
     sheet: Worksheet = book.create_sheet(GIRDER)
     widths(sheet, WIDTHS)
     title_strip(sheet, content.title, "P")
+    put(sheet, "A1", content.title, TITLE.but(unlocked=True))
     _status(sheet)
     _title_block(sheet, content)
     _parts(sheet, content)
@@ -74,21 +76,23 @@ def girder_sheet(book: Workbook, content: Content) -> Worksheet:
     guard_inputs(sheet, FIRST, LAST, f"P{FAULTS + 2}")
     furnish(sheet, f"A1:P{NOTES + 7}")
     sheet.freeze_panes = "A3"
+    for pane in sheet.sheet_view.selection:
+        pane.activeCell = pane.sqref = f"B{FIRST}"
     return sheet
 
 
 def _status(sheet: Worksheet) -> None:
     """The verdict, where it stays in sight while the parts are typed."""
     text = (
-        '=IF(fault_count=0,"no faults",fault_count&IF(fault_count=1," fault"," faults"))'
-        '&"  ·  "&checks_met&" of "&ROWS(checks)&" checks agree"'
+        '=IFERROR(IF(fault_count=0,"no faults",fault_count&IF(fault_count=1," fault"," faults"))'
+        '&"  ·  "&checks_met&" of "&ROWS(checks)&" checks agree","an entry cannot be read")'
     )
     look = Look(bold=True, align="center")
     for cell in sheet["K1:P1"][0]:
         put(sheet, cell.coordinate, None, look)
     sheet.merge_cells("K1:P1")
     put(sheet, "K1", text, look)
-    sound = "AND(fault_count=0,checks_met=ROWS(checks))"
+    sound = "IFERROR(AND(fault_count=0,checks_met=ROWS(checks)),FALSE)"
     judged(sheet, "K1:P1", sound, f"NOT({sound})")
 
 
@@ -193,6 +197,8 @@ def _faults(book: Workbook, sheet: Worksheet, content: Content) -> None:
     put(sheet, verdict, "=CS_FAULTS(parts,gap)", Look(bold=True))
     judged(sheet, verdict, f'{verdict}="no faults"', f'{verdict}<>"no faults"')
     name_range(book, "faults", f"{GIRDER}!$B${FAULTS + 2}")
+    first = '=IF(fault_count=0,"","is the first of "&fault_count&IF(fault_count=1," fault"," faults"))'
+    put(sheet, f"C{FAULTS + 2}", first, PLAIN.but(indent=1, align="left"))
     put(sheet, f"O{FAULTS + 2}", "pieces up to this far apart count as connected", CAPTION.but(align="right", size=10))
     put(sheet, f"P{FAULTS + 2}", content.gap, _beside(INPUT, "K"))
     name_range(book, "gap", f"{GIRDER}!$P${FAULTS + 2}")

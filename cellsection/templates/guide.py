@@ -20,7 +20,7 @@ LINES = (
     "Turn it if it does not stand upright. A channel as a cap, its web on top: shape channel, turn -90, datum left.",
     "Take holes away as parts with sign -1, inside the solid. Where a hole parts a plate, type its width as gap.",
     f"There is room for {PARTS} parts. For more, make a second table on a sheet of your own; CS_JOINED joins both.",
-    "Read Faults first: where two parts overlap, area is counted twice. Then the checks on Ledger, made by hand.",
+    "Read Faults first: where parts overlap, area counts twice. Then the checks on Ledger, sums by plain formulas.",
     "Use the results in your own sheets: they have names, such as area, centroid_y, Ix, Iy, modulus_top.",
     "Save. Then cellsection check recalculates the saved file without this application, and names what differs.",
     "Where cellsection is not installed the saved values can be read and printed; a new calculation shows #NAME?.",

@@ -12,7 +12,7 @@ from cellsection.errors import WorkbookError
 __all__ = ["picture"]
 
 WIDTH = 1200  # pixels
-LEFT, TOP, ACROSS, DOWN = 0.45, 0.4, 7.37, 7.6  # inches of the A4 page: no margins, down to the drawing
+LEFT, TOP, ACROSS, DOWN = 0.45, 0.4, 7.37, 7.65  # inches of the A4 page: no margins, down to the drawing
 PATIENCE = 120  # seconds
 
 

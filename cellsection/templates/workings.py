@@ -81,7 +81,7 @@ def workings_sheet(book: Workbook) -> Worksheet:
 
 
 def _frame(book: Workbook, sheet: Worksheet) -> None:
-    heading(sheet, FRAME, "Frame of the drawing", "A:M", "the longer side of the section is 1")
+    heading(sheet, FRAME, "Frame of the drawing", "A:M", "1 is the height, or the width over 1.25 where that is more")
     rows = (
         ("parts in use", f"=COUNTA({GIRDER}!C{FIRST}:C{LAST})", None, "0"),
         ("centroid x, y", "=centroid_x", "=centroid_y", LENGTH),
@@ -89,7 +89,7 @@ def _frame(book: Workbook, sheet: Worksheet) -> None:
         ("extent below, above it", "=fibre_bottom", "=fibre_top", LENGTH),
         ("width, height over all", "=B7+C7", "=B8+C8", LENGTH),
         ("middle x, y", "=B6+(C7-B7)/2", "=C6+(C8-B8)/2", LENGTH),
-        ("longer side", "=MAX(B9:C9)", None, LENGTH),
+        ("length drawn as 1", "=MAX(B9/1.25,C9)", None, LENGTH),
     )
     for row, (text, x, y, shown) in enumerate(rows, start=FRAME + 1):
         put(sheet, f"A{row}", text)
@@ -97,7 +97,7 @@ def _frame(book: Workbook, sheet: Worksheet) -> None:
         if y:
             put(sheet, f"C{row}", y, PLAIN.but(format=shown))
     name_range(book, "parts_used", f"{WORKINGS}!$B$5")
-    name_range(book, "drawing_side", f"{WORKINGS}!$B$11")
+    name_range(book, "drawn_as_1", f"{WORKINGS}!$B$11")
 
 
 def _dimension(along: str, low: str, high: str, *, upright: bool) -> Points:
@@ -120,8 +120,8 @@ def _dimension(along: str, low: str, high: str, *, upright: bool) -> Points:
 
 
 # In the frame: half of the width and height, and the centroid.
-HALF_W, HALF_H = "$B$9/2/drawing_side", "$C$9/2/drawing_side"
-XC, YC = "($B$6-$B$10)/drawing_side", "($C$6-$C$10)/drawing_side"
+HALF_W, HALF_H = "$B$9/2/drawn_as_1", "$C$9/2/drawn_as_1"
+XC, YC = "($B$6-$B$10)/drawn_as_1", "($C$6-$C$10)/drawn_as_1"
 LEFT, RIGHT, BELOW = f"(-{HALF_W}-0.14)", f"({HALF_W}+0.14)", f"(-{HALF_H}-0.075)"
 LINES_DRAWN: tuple[tuple[str, str, Points], ...] = (
     ("axis x", '="x"', ((f"=-{HALF_W}-0.04", f"={YC}"), (f"={HALF_W}+0.19", f"={YC}"))),
@@ -174,18 +174,17 @@ def _ledger(sheet: Worksheet) -> None:
 
 def _outlines(sheet: Worksheet) -> None:
     heading(sheet, OUTLINES, "Outlines", f"A:{get_column_letter(1 + WIDE * PARTS)}")
-    rows = ("number", "part drawn", "sign of its area", "outline by CS_OUTLINE; scaled to the frame, solid; cut-out")
+    rows = ("number", "sign of its area", "outline by CS_OUTLINE; scaled to the frame, solid; cut-out")
     for row, text in enumerate(rows, start=OUTLINES + 1):
         put(sheet, f"A{row}", text)
-    top, bottom = OUTLINES + 5, OUTLINES + 4 + POINTS
+    top, bottom = OUTLINES + 4, OUTLINES + 3 + POINTS
     for number in range(1, PARTS + 1):
         x, y, *drawn = (get_column_letter(2 + WIDE * (number - 1) + each) for each in range(WIDE))
         put(sheet, f"{x}{OUTLINES + 1}", number, HEADER.but(align="right"))
-        put(sheet, f"{x}{OUTLINES + 2}", f"=MIN({x}{OUTLINES + 1},parts_used)")
-        areas = f"$C${LEDGER_LIST + 1}:$C${LEDGER_LIST + PARTS}"
-        put(sheet, f"{x}{OUTLINES + 3}", f"=SIGN(INDEX({areas},{x}{OUTLINES + 2}))")
+        area = f"$C${LEDGER_LIST + number}"
+        put(sheet, f"{x}{OUTLINES + 2}", f"=IF({x}{OUTLINES + 1}<=parts_used,SIGN({area}),0)")
         for letter, text in zip((x, y, *drawn), ("x", "y", "x solid", "y solid", "x cut", "y cut"), strict=True):
-            put(sheet, f"{letter}{OUTLINES + 4}", text, CAPTION.but(align="right"))
+            put(sheet, f"{letter}{OUTLINES + 3}", text, CAPTION.but(align="right"))
         outline = f"CS_OUTLINE(parts,{x}${OUTLINES + 1},{POINTS})"
         if number > 1:  # a part the table does not have repeats the one before
             left, right = (get_column_letter(2 + WIDE * (number - 2) + each) for each in range(2))
@@ -193,8 +192,8 @@ def _outlines(sheet: Worksheet) -> None:
         array(sheet, f"{x}{top}:{y}{bottom}", f"={outline}", PLAIN.but(format=LENGTH))
         for letter, source, middle, sign in zip(drawn, (x, y) * 2, ("$B$10", "$C$10") * 2, ">><<", strict=True):
             for row in range(top, bottom + 1):
-                scaled = f"({source}{row}-{middle})/drawing_side"
-                put(sheet, f"{letter}{row}", f"=IF({x}${OUTLINES + 3}{sign}0,{scaled},0)", PLAIN.but(format=SMALL))
+                scaled = f"({source}{row}-{middle})/drawn_as_1"
+                put(sheet, f"{letter}{row}", f"=IF({x}${OUTLINES + 2}{sign}0,{scaled},0)", PLAIN.but(format=SMALL))
 
 
 def traces() -> list[Trace]:
@@ -218,7 +217,7 @@ def traces() -> list[Trace]:
             upright=name in ("height over all", "centroid to below", "centroid to above"),
         )
         found.append(trace)
-    top, bottom = OUTLINES + 5, OUTLINES + 4 + POINTS
+    top, bottom = OUTLINES + 4, OUTLINES + 3 + POINTS
     starts = [4 + WIDE * part for part in range(PARTS)]
     found += [Trace(WORKINGS, top, bottom, column) for column in starts]
     found += [Trace(WORKINGS, top, bottom, column + 2, weight=1, colour=CUT_OUT, dash="sysDash") for column in starts]

@@ -20,10 +20,13 @@ if TYPE_CHECKING:
 __all__ = ["filled", "values", "wrong"]
 
 
-def filled(out: Path, parts: Sequence[Entry | None], headers: dict[str, str] | None = None) -> Path:
+def filled(
+    out: Path, parts: Sequence[Entry | None], headers: dict[str, str] | None = None, gap: float | None = None
+) -> Path:
     """The template with these parts, row by row from the top of its table; None leaves a row blank.
 
     headers : other texts for columns of the header row, by letter
+    gap : what counts as connected
     """
     book = girder()
     sheet = book["Girder"]
@@ -35,6 +38,7 @@ def filled(out: Path, parts: Sequence[Entry | None], headers: dict[str, str] | N
             sheet[f"{LETTER[word]}{row}"].value = value
     for column, text in (headers or {}).items():
         sheet[f"{column}{FIRST - 1}"].value = text
+    sheet[book.defined_names["gap"].attr_text.split("!")[1].replace("$", "")].value = gap
     write_book(book, out)
     return out
 

@@ -7,6 +7,8 @@ from typing import TYPE_CHECKING
 import pytest
 
 from cellsection.check import Verdict, check_book
+from cellsection.templates.acceptance import CHECKS
+from cellsection.templates.content import COLUMNS
 from cellsection.templates.entry import DATUMS, SHAPES
 from cellsection.templates.layout import HAND_TOP, PARTS
 from tests.templates.filled import filled, values, wrong
@@ -16,6 +18,7 @@ if TYPE_CHECKING:
 
     from cellsection.templates.content import Entry
 
+CHECK_ROWS = range(CHECKS + 3, CHECKS + 11)  # on the sheet Ledger
 PLATE: Entry = {"part": "plate", "shape": "rectangle", "b": 200, "h": 20}
 
 
@@ -50,13 +53,15 @@ def test_a_full_table_holds(tmp_path: Path) -> None:
 SIZES = {"b": 100, "h": 120, "tw": 6, "tf": 8, "t": 7, "r": 9, "d": 90}
 
 
-@pytest.mark.parametrize("word", SHAPES)
-def test_every_shape_on_offer_can_be_typed_in(word: str, tmp_path: Path) -> None:
-    entry: Entry = {"part": word, "shape": word}
-    entry |= {each: SIZES[each] for each in SHAPES[word].replace(",", "").split()}
-    out = filled(tmp_path / "shape.xlsx", [entry])
+def test_every_shape_on_offer_can_be_typed_in(tmp_path: Path) -> None:
+    parts: list[Entry] = []
+    for place, (word, dimensions) in enumerate(SHAPES.items()):
+        sizes: Entry = {each: SIZES[each] for each in dimensions.replace(",", "").split()}
+        parts.append({"part": word, "shape": word, "x": 200 * place, **sizes})
+    out = filled(tmp_path / "shapes.xlsx", parts, gap=200)
     assert not wrong(out)
-    assert check_book(out).verdict is Verdict.HOLDS
+    report = check_book(out)
+    assert report.verdict is Verdict.HOLDS, report.findings
 
 
 @pytest.mark.parametrize("turn", [0, 180, -180])
@@ -69,14 +74,7 @@ def test_the_hand_ledger_agrees_for_every_datum_and_half_turn(turn: int, tmp_pat
     out = filled(tmp_path / "datums.xlsx", parts)
     assert by_hand(out)[: len(parts)] == ["hand"] * len(parts)
     met = values(out)
-    assert all(met["Ledger", f"Q{row}"] is True for row in check_rows(out))
-
-
-def check_rows(path: Path) -> range:
-    """Rows of the acceptance checks on the sheet Ledger."""
-    from cellsection.templates.acceptance import CHECKS
-
-    return range(CHECKS + 3, CHECKS + 11)
+    assert all(met["Ledger", f"Q{row}"] is True for row in CHECK_ROWS)
 
 
 def test_a_part_on_its_side_is_taken_from_the_ledger_by_hand_and_still_checked(tmp_path: Path) -> None:
@@ -103,9 +101,13 @@ def test_an_overlap_is_shown_in_words_and_counted(tmp_path: Path) -> None:
     assert not wrong(out)
 
 
-def test_inches_in_the_headers_reach_the_results(tmp_path: Path) -> None:
-    from cellsection.templates.content import COLUMNS
+def test_an_entry_that_cannot_be_read_is_said_in_words_on_top(tmp_path: Path) -> None:
+    out = filled(tmp_path / "slip.xlsx", [plate(r=5)])
+    assert values(out)["Girder", "K1"] == "an entry cannot be read"
+    assert any("row 2, column r [mm]" in reason for _, _, reason in wrong(out))
 
+
+def test_inches_in_the_headers_reach_the_results(tmp_path: Path) -> None:
     inches = {column: text.replace("mm", "in") for column, text in COLUMNS.items()}
     out = filled(tmp_path / "inches.xlsx", [plate(b=8, h=0.5)], inches)
     assert check_book(out).verdict is Verdict.HOLDS
