@@ -37,7 +37,9 @@ class Fault(NamedTuple):
 def faults(parts: Sequence[Part], gap: float | None = None, unit: str = "") -> tuple[Fault, ...]:
     """Every fault found, none where the section is sound.
 
-    gap : pieces up to this far apart count as connected (through lacing, welds or mortar); blank: they must touch [L]
+    gap : pieces up to this far apart count as connected, through lacing, welds or mortar [L]. Blank: parts must touch,
+        and a part that a cut-out divides stays one, as a plate does beside its bolt holes. With a gap, 0 among them,
+        the pieces that cut-outs leave are looked at instead.
     unit : of length, for the texts
 
     Reported are: totals that no real section has; two solid parts that cover the same area; cut-outs outside solid
@@ -154,7 +156,7 @@ class _Seen:
         """Pieces that do not touch the largest one, nor each other through the gap."""
         if not self.solids:
             return
-        material = surplus(self.solid, self.cut)
+        material = self.solid[0] if gap is None else surplus(self.solid, self.cut)
         if material.is_empty:
             return
         left, low, right, high = material.bounds

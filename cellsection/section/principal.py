@@ -51,7 +51,7 @@ def principal_axes(section: Transformed) -> tuple[float, float, float]:
     difference = Ix - Iy if abs(Ix - Iy) > rounding else 0.0
     if not Ixy:
         # No product moment: x and y are the axes themselves, to the last digit.
-        return (Iy, Ix, 90.0) if difference < 0.0 else (Ix, Iy, 0.0)
+        return max(Ix, Iy), min(Ix, Iy), 90.0 if difference < 0.0 else 0.0
     I1 = (Ix + Iy) / 2.0 + hypot((Ix - Iy) / 2.0, Ixy)
     I2 = (Ix * Iy - Ixy * Ixy) / I1  # the product of both is the determinant; taking the difference would cancel
     if not I2 > 0.0:

@@ -1,7 +1,7 @@
 """Every shape drawn a second time, from shapely's boxes, discs and buffers, without a line of the library.
 
-Discs are polygons of 4·QUARTER sides; their area is short by (π/2/QUARTER)²/6 of itself. A radius at a corner that is no
-right angle comes from morphology: rolling a disc along the outside or inside of the sharp outline.
+Discs are polygons of 4·QUARTER sides; their area is short by (π/2/QUARTER)²/6 of itself. A radius at a corner that is
+no right angle comes from morphology: rolling a disc along the outside or inside of the sharp outline.
 """
 
 from __future__ import annotations

@@ -15,8 +15,8 @@ from cellsection.geometry import Arc, Line, Moments
 from cellsection.geometry.caps import AREA, FIRST, RISE, SPAN, cap_factors
 
 x, y, u, alpha = sp.symbols("x y u alpha", real=True, positive=True)
-# Six forms P dx + Q dy whose line integrals are the six integrals of the area, since dQ/dx - dP/dy is the integrand. The
-# symmetric choice (-y/m, x/m) f for f homogeneous of degree m - 2 gives nothing along lines through the origin.
+# Six forms P dx + Q dy whose line integrals are the six integrals of the area, since dQ/dx - dP/dy is the integrand:
+# (-y/m, x/m) f for f homogeneous of degree m - 2, the choice that gives nothing along lines through the origin.
 INTEGRANDS = {"A": sp.Integer(1), "Qx": y, "Qy": x, "Ix": y**2, "Iy": x**2, "Ixy": x * y}
 coordinate = st.floats(-1e3, 1e3)
 
