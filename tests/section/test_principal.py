@@ -117,5 +117,5 @@ def test_a_section_of_negative_least_moment_is_refused() -> None:
     parts = [part("rectangle", b=100, h=100)]
     parts += [part("rectangle", s * 100, s * 100, b=20, h=20, sign=-1) for s in (-1, 1)]
     for asked in (principal, totals):
-        with pytest.raises(InputError, match="I2 = .* is not positive"):
+        with pytest.raises(InputError, match=r"I2 = .* is not positive"):
             asked(parts)
