@@ -167,7 +167,7 @@ def _with_progress(paths: Sequence[Path], reports: Iterable[Report]) -> Iterator
 def _show(report: Report, *, every: bool, first: bool) -> None:
     """Print one report: a calm one in plain lines, one with something to lay out through rich."""
     from cellsection.check.findings import Verdict
-    from cellsection.check.report import calm_lines
+    from cellsection.check.report import calm_lines, printable
 
     if not first:
         click.echo()
@@ -175,7 +175,7 @@ def _show(report: Report, *, every: bool, first: bool) -> None:
         colour = "green" if report.verdict is Verdict.HOLDS else "red"
         click.echo(f"{report.path}: {click.style(report.verdict.words, fg=colour, bold=True)}")
         for line in calm_lines(report, every=every):
-            click.echo(f"  {line}")
+            click.echo(f"  {printable(line)}")
     else:
         from cellsection.check.layout import lay_out
 

@@ -18,6 +18,7 @@ from cellsection.check.report import (
     checks_line,
     counted,
     places_in_words,
+    printable,
     shortened,
     tally_line,
     value_in_words,
@@ -59,13 +60,13 @@ def lay_out(report: Report, *, every: bool = False) -> None:
 
 def _write(console: Console, report: Report, every: bool) -> None:
     console.print(
-        Text.assemble(f"{report.path}: ", (report.verdict.words, f"bold {COLOUR[report.verdict]}")), soft_wrap=True
+        _assembled(f"{report.path}: ", (report.verdict.words, f"bold {COLOUR[report.verdict]}")), soft_wrap=True
     )
     for line in filter(None, (tally_line(report), checks_line(report))):
         console.print(f"  {line}", soft_wrap=True)
     for title, body in _sections(report, every):
         console.print()
-        console.print(Text(f"  {title}", style="bold"))
+        console.print(_text(f"  {title}", style="bold"))
         console.print(Padding(body, (0, 0, 0, 4), expand=False))
 
 
@@ -86,18 +87,18 @@ def _sections(report: Report, every: bool) -> Iterator[tuple[str, RenderableType
     if cycles := _of(report, Cycle):
         yield f"Circular references ({len(cycles):,})", _paragraphs([_cycle(each, every) for each in cycles], every)
     if unverified := _of(report, NotVerified):
-        lines = [Text(f"{each.reason}: {places_in_words(each.cells, every=every)}") for each in unverified]
+        lines = [_text(f"{each.reason}: {places_in_words(each.cells, every=every)}") for each in unverified]
         yield "Not verified for another reason", _paragraphs(lines, every)
     if unsaved := _of(report, Unsaved):
         cells = unsaved[0].cells
         said = "Nothing to compare with; open the book in the spreadsheet application and save it"
-        yield f"No saved value ({len(cells):,})", Text(f"{places_in_words(cells, every=every)}. {said}.")
+        yield f"No saved value ({len(cells):,})", _text(f"{places_in_words(cells, every=every)}. {said}.")
     if saved_alike := [each for each in errors if each.verdict is Verdict.HOLDS]:
         title = f"Errors that the saved file shows too ({len(saved_alike):,})"
         yield title, _paragraphs([_error(each, every) for each in saved_alike], every)
     if report.notes:
         lines = [
-            Text(note.text + (f": {places_in_words(note.cells, every=every)}" if note.cells else ""))
+            _text(note.text + (f": {places_in_words(note.cells, every=every)}" if note.cells else ""))
             for note in report.notes
         ]
         yield "Notes", _paragraphs(lines, every)
@@ -128,7 +129,7 @@ def _unmet_checks(unmet: Sequence[UnmetCheck], every: bool) -> RenderableType:
         values = (each.expected, each.saved, each.recalculated)
         _row(table, str(each.spot), *(_value(value, every) for value in values), _formula(each.spot.formula, every))
     causes = dict.fromkeys(each.cause for each in unmet if each.cause)
-    because = [Text(f"because {cause}") for cause in causes]
+    because = [_text(f"because {cause}") for cause in causes]
     return Group(table, *_rest(unmet, every), *_first(because, every), *_rest(because, every))
 
 
@@ -136,35 +137,48 @@ def _error(error: Error, every: bool) -> RenderableType:
     place = str(error.spot) if len(error.cells) == 1 else f"{len(error.cells):,} cells"
     lines: list[RenderableType] = []
     if len(error.cells) > 1:
-        lines.append(Text(f"arises in {places_in_words(error.cells, every=every)}"))
+        lines.append(_text(f"arises in {places_in_words(error.cells, every=every)}"))
     if error.spot.formula:
         first = f"first {error.spot}  " if len(error.cells) > 1 else ""
         saved = f"   saved: {value_in_words(error.saved, every=every)}" if not error.saved_alike else ""
-        lines.append(Text(f"{first}{_formula(error.spot.formula, every)}{saved}", style="dim"))
+        lines.append(_text(f"{first}{_formula(error.spot.formula, every)}{saved}", style="dim"))
     if error.echoes:
         cells = counted(len(error.echoes), "cell")
-        lines.append(Text(f"passed on to {cells}: {places_in_words(error.echoes, every=every)}"))
-    return _entry(Text.assemble((f"{error.code}  {place}", "bold"), f"  {error.cause}"), lines)
+        lines.append(_text(f"passed on to {cells}: {places_in_words(error.echoes, every=every)}"))
+    return _entry(_assembled((f"{error.code}  {place}", "bold"), f"  {error.cause}"), lines)
 
 
 def _unsupported(each: Unsupported, every: bool) -> RenderableType:
     cells = f" in {counted(len(each.cells), 'cell')}: {places_in_words(each.cells, every=every)}"
-    example = Text(f"{each.example}  {_formula(each.example.formula, every)}", style="dim")
-    return _entry(Text.assemble((each.construct, "bold"), cells), [example, *_dependants(each.dependants, every)])
+    example = _text(f"{each.example}  {_formula(each.example.formula, every)}", style="dim")
+    return _entry(_assembled((each.construct, "bold"), cells), [example, *_dependants(each.dependants, every)])
 
 
 def _cycle(each: Cycle, every: bool) -> RenderableType:
-    return _entry(Text(each.circle), _dependants(each.dependants, every))
+    return _entry(_text(each.circle), _dependants(each.dependants, every))
 
 
 def _dependants(cells: tuple[tuple[str, str], ...], every: bool) -> list[Text]:
     if not cells:
         return []
     depend = counted(len(cells), "cell depends", "cells depend")
-    return [Text(f"{depend} on it, not verified: {places_in_words(cells, every=every)}")]
+    return [_text(f"{depend} on it, not verified: {places_in_words(cells, every=every)}")]
 
 
 # The small pieces
+
+
+def _text(text: str, style: str = "") -> Text:
+    return Text(printable(text), style=style)
+
+
+def _assembled(*pieces: str | tuple[str, str]) -> Text:
+    """Pieces of text in a row, some with a style."""
+    text = Text()
+    for piece in pieces:
+        words, style = (piece, "") if isinstance(piece, str) else piece
+        text.append(printable(words), style=style)
+    return text
 
 
 def _table(*columns: str) -> Table:
@@ -177,7 +191,7 @@ def _table(*columns: str) -> Table:
 
 
 def _row(table: Table, *texts: str) -> None:
-    table.add_row(*(Text(text) for text in texts))
+    table.add_row(*(_text(text) for text in texts))
 
 
 def _entry(heading: Text, lines: Sequence[RenderableType]) -> RenderableType:
@@ -195,7 +209,7 @@ def _first(found: Sequence[Any], every: bool) -> Sequence[Any]:
 
 def _rest(found: Sequence[object], every: bool) -> list[Text]:
     more = 0 if every else len(found) - LISTED
-    return [Text(f"and {more:,} more; --all lists them", style="dim")] if more > 0 else []
+    return [_text(f"and {more:,} more; --all lists them", style="dim")] if more > 0 else []
 
 
 def _value(value: Scalar, every: bool) -> str:

@@ -22,6 +22,7 @@ __all__ = [
     "counted",
     "headline",
     "places_in_words",
+    "printable",
     "tally_line",
     "value_in_words",
 ]
@@ -116,9 +117,22 @@ def value_in_words(value: Scalar, *, every: bool = False) -> str:
     return str(value) if kind(value) == "error" else f"{value:.15g}"
 
 
+def printable(text: str) -> str:
+    r"""A text without the signs that steer a terminal: what stands in a book must not reach it.
+
+    >>> printable("a plate\x1b[2J") == "a plate\N{REPLACEMENT CHARACTER}[2J"
+    True
+    """
+    return text if text.isprintable() else "".join(_printable(sign) for sign in text)
+
+
+def _printable(sign: str) -> str:
+    return sign if sign.isprintable() else " " if sign.isspace() else "\N{REPLACEMENT CHARACTER}"
+
+
 def shortened(text: str, longest: int, *, every: bool = False) -> str:
     """A text on one line, cut where it is too long to be read in passing."""
-    line = " ".join(text.split())
+    line = printable(" ".join(text.split()))
     return line if every or len(line) <= longest else line[: longest - 1] + "…"
 
 

@@ -70,6 +70,15 @@ def test_brackets_in_formulas_are_not_taken_for_styles(capsys: pytest.CaptureFix
     assert "=[1]Loads!A1+Table[red]" in capsys.readouterr().out
 
 
+def test_nothing_in_a_book_steers_the_terminal(capsys: pytest.CaptureFixture[str]) -> None:
+    sly = "\x1b[2Jplate\u202e"
+    note = cell("A3", 1.0, 1.0, sheet=sly, notes=(sly,))
+    lay_out(examine(book(cell("A1", sly, 1.0, formula=f'="{sly}"'), cell("A2", 1.0, ErrorValue("#N/A", sly)), note)))
+    shown = capsys.readouterr().out
+    assert shown.count("plate") > 3
+    assert all(line.isprintable() for line in shown.splitlines())
+
+
 def test_a_long_text_is_cut_and_shown_whole_when_asked_for() -> None:
     text = "plate " * 40
     assert value_in_words(text).endswith('…"')
