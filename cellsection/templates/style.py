@@ -5,8 +5,10 @@ Everything must read in black and white: an input cell has a tint and a fine lin
 
 from __future__ import annotations
 
+from copy import copy
 from dataclasses import dataclass, replace
 from typing import TYPE_CHECKING
+from weakref import WeakKeyDictionary
 
 from openpyxl.formatting.rule import Rule
 from openpyxl.styles import Alignment, Border, Font, PatternFill, Protection, Side
@@ -17,6 +19,9 @@ from openpyxl.worksheet.properties import PageSetupProperties
 if TYPE_CHECKING:
     from collections.abc import Iterable
 
+    from openpyxl import Workbook
+    from openpyxl.cell import Cell
+    from openpyxl.styles.cell_style import StyleArray
     from openpyxl.worksheet.worksheet import Worksheet
 
 __all__ = [
@@ -99,20 +104,31 @@ LEDGER_LOOKS = [
 INPUT = Look(tint=TINT, under=FINE, unlocked=True)
 
 
+# The styles of a workbook under construction, by look: the library compares style objects one by one, which is slow.
+_STYLES: WeakKeyDictionary[Workbook, dict[Look, StyleArray]] = WeakKeyDictionary()
+
+
 def put(sheet: Worksheet, address: str, value: object = None, look: Look = PLAIN) -> None:
     """Put a value or a formula into a cell, with its look; a value of None only gives the look."""
     cell = sheet[address]
     if value is not None:
         cell.value = value
+    assert sheet.parent is not None
+    styles = _STYLES.setdefault(sheet.parent, {})
+    if look not in styles:
+        _dress(cell, look)
+        styles[look] = copy(cell._style)
+    cell._style = copy(styles[look])
+
+
+def _dress(cell: Cell, look: Look) -> None:
+    """Give a cell its look."""
     cell.font = Font(name=FACE, size=look.size, bold=look.bold, italic=look.italic, color=look.colour)
-    cell.alignment = Alignment(
-        horizontal=look.align, vertical=look.upright, wrap_text=look.wrap, indent=look.indent, shrink_to_fit=False
-    )
+    cell.alignment = Alignment(horizontal=look.align, vertical=look.upright, wrap_text=look.wrap, indent=look.indent)
     cell.border = Border(bottom=look.under, top=look.over)
     cell.number_format = look.format
     cell.protection = Protection(locked=not look.unlocked)
-    if look.tint:
-        cell.fill = PatternFill("solid", start_color=look.tint)
+    cell.fill = PatternFill("solid", start_color=look.tint) if look.tint else PatternFill()
 
 
 def array(sheet: Worksheet, area: str, formula: str, looks: Iterable[Look] | Look = PLAIN) -> None:
