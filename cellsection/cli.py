@@ -155,7 +155,7 @@ def _with_progress(paths: Sequence[Path], reports: Iterable[Report]) -> Iterator
     coming = iter(reports)
     for number, path in enumerate(paths, start=1):
         if told:
-            click.echo(f"\r\033[K  checking {number} of {len(paths)}: {path.name} ...", nl=False, err=True)
+            click.echo(f"\r\033[K  checking {number} of {len(paths)}: {path.name[:50]} ...", nl=False, err=True)
         report = next(coming, None)
         if told:
             click.echo("\r\033[K", nl=False, err=True)
