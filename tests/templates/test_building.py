@@ -66,10 +66,11 @@ def test_a_template_is_written_into_the_current_folder_by_its_bare_name(
 
 
 @pytest.mark.parametrize(("old", "new"), [(b"<v>560</v>", b"<v>561</v>"), (b"<v>10</v>", b"<v>12</v>")])
-def test_a_plate_changed_in_the_saved_file_is_caught_by_the_check(old: bytes, new: bytes, tmp_path: Path) -> None:
-    out, edited = tmp_path / "book.xlsx", tmp_path / "edited.xlsx"
-    build("girder", out)
-    with ZipFile(out) as parts, ZipFile(edited, "w") as copy:
+def test_a_plate_changed_in_the_saved_file_is_caught_by_the_check(
+    old: bytes, new: bytes, built: Path, tmp_path: Path
+) -> None:
+    edited = tmp_path / "edited.xlsx"
+    with ZipFile(built) as parts, ZipFile(edited, "w") as copy:
         for each in parts.namelist():
             content = parts.read(each)
             if each == "xl/worksheets/sheet1.xml":
@@ -81,9 +82,7 @@ def test_a_plate_changed_in_the_saved_file_is_caught_by_the_check(old: bytes, ne
     assert report.tally.differ > 20
 
 
-def test_the_spreadsheet_application_is_not_asked_to_recalculate_on_opening(tmp_path: Path) -> None:
-    out = tmp_path / "book.xlsx"
-    build("girder", out)
-    with ZipFile(out) as parts:
+def test_the_spreadsheet_application_is_not_asked_to_recalculate_on_opening(built: Path) -> None:
+    with ZipFile(built) as parts:
         workbook = parts.read("xl/workbook.xml").decode()
     assert 'fullCalcOnLoad="1"' not in workbook

@@ -11,7 +11,7 @@ from openpyxl.worksheet.formula import ArrayFormula
 
 from cellsection.catalogue import CATALOGUE
 from cellsection.geometry import SHAPES as GEOMETRY_SHAPES
-from cellsection.templates import TEMPLATES, build
+from cellsection.templates import TEMPLATES
 from cellsection.templates.books import girder
 from cellsection.templates.content import COLUMNS
 from cellsection.templates.drawing import POINTS
@@ -23,13 +23,6 @@ if TYPE_CHECKING:
 
     from openpyxl import Workbook
     from openpyxl.worksheet.worksheet import Worksheet
-
-
-@pytest.fixture(scope="module")
-def built(tmp_path_factory: pytest.TempPathFactory) -> Path:
-    out = tmp_path_factory.mktemp("templates") / "girder.xlsx"
-    build("girder", out)
-    return out
 
 
 @pytest.fixture(scope="module")
