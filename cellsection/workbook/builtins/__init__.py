@@ -10,6 +10,7 @@ from cellsection.workbook.builtins import (
     logical,
     lookup,
     mathematics,
+    regression,
     statistics,
     text,
 )
@@ -26,6 +27,7 @@ __all__ = [
     "logical",
     "lookup",
     "mathematics",
+    "regression",
     "statistics",
     "text",
 ]

@@ -38,6 +38,14 @@ def mmult(a: Array, b: Array) -> Array:
     return cells([sum(p * q for p, q in zip(row, column, strict=True)) for column in columns] for row in x)
 
 
+def given(value: Scalar, default: float) -> float:
+    """A number, or its default where it is left out or written but empty."""
+    number = default if value is None else number_of(value)
+    if isinstance(number, ErrorValue):
+        raise ErrorResult(number)
+    return number
+
+
 def square(array: Array) -> list[list[float]]:
     """A square matrix."""
     rows = matrix(array)
@@ -95,14 +103,6 @@ def munit(n: float) -> Array:
 @builtin("TRANSPOSE", "array")
 def transpose(array: Array) -> Array:
     return tuple(zip(*array, strict=True))
-
-
-def given(value: Scalar, default: float) -> float:
-    """A number, or its default where it is left out or written but empty."""
-    number = default if value is None else number_of(value)
-    if isinstance(number, ErrorValue):
-        raise ErrorResult(number)
-    return number
 
 
 @builtin("SEQUENCE", "value value? value? value?")
@@ -212,11 +212,11 @@ def unique(array: Array, by_column: bool = False, once: bool = False) -> Array:
 # ---- cutting and stacking
 
 
-def cut(count: float | None, length: int, drop: bool) -> slice:
+def cut(count: Scalar, length: int, drop: bool) -> slice:
     """The rows or columns that TAKE keeps or DROP leaves."""
     if count is None:
         return slice(None)
-    n = int(count)
+    n = int(given(count, 0.0))
     if drop:
         if abs(n) >= length:
             raise ErrorResult(VALUE)
@@ -226,7 +226,7 @@ def cut(count: float | None, length: int, drop: bool) -> slice:
     return slice(0, n) if n > 0 else slice(max(length + n, 0), None)
 
 
-def cropped(array: Array, rows: float | None, columns: float | None, drop: bool) -> Array:
+def cropped(array: Array, rows: Scalar, columns: Scalar, drop: bool) -> Array:
     """TAKE and DROP."""
     result = tuple(row[cut(columns, len(array[0]), drop)] for row in array[cut(rows, len(array), drop)])
     if not result or not result[0]:
@@ -305,8 +305,8 @@ def wrapcols(array: Array, count: float, pad: Scalar = NA) -> Array:
 
 @builtin("EXPAND", "array value? value? any?")
 def expand(array: Array, rows: Any = None, columns: Any = None, pad: Scalar = NA) -> Array:
-    height, width = int(rows or len(array)), int(columns or len(array[0]))
-    if height < len(array) or width < len(array[0]):
+    height, width = int(given(rows, len(array))), int(given(columns, len(array[0])))
+    if height < len(array) or width < len(array[0]) or height * width > 5_000_000:
         raise ErrorResult(VALUE)
     body = [(*row, *((pad,) * (width - len(row)))) for row in array]
     return (*body, *(((pad,) * width,) * (height - len(array))))

@@ -32,6 +32,11 @@ def probability(p: float, *, ends: bool = False) -> float:
     return p if (0 <= p <= 1 if ends else 0 < p < 1) else fail(NUM)
 
 
+def whole(x: float) -> float:
+    """A count or degrees of freedom: the whole part, #NUM! beyond what the tables reach."""
+    return float(int(x)) if abs(x) <= 1e10 else fail(NUM)
+
+
 def finite(x: Any) -> float:
     """A result, #NUM! where it is none."""
     value = float(x)
@@ -108,101 +113,101 @@ def poisson_dist(x: float, m: float, cumulative: bool) -> float:
     if x < 0 or m < 0:
         return fail(NUM)
     law = stats().poisson(m)
-    return finite(law.cdf(int(x)) if cumulative else law.pmf(int(x)))
+    return finite(law.cdf(whole(x)) if cumulative else law.pmf(whole(x)))
 
 
 @builtin("BINOM.DIST BINOMDIST", "number number number logical")
 def binom_dist(k: float, n: float, p: float, cumulative: bool) -> float:
     if not 0 <= int(k) <= int(n) or not 0 <= p <= 1:
         return fail(NUM)
-    law = stats().binom(float(int(n)), p)
-    return finite(law.cdf(float(int(k))) if cumulative else law.pmf(float(int(k))))
+    law = stats().binom(whole(n), p)
+    return finite(law.cdf(whole(k)) if cumulative else law.pmf(whole(k)))
 
 
 @builtin("BINOM.INV CRITBINOM", "number number number")
 def binom_inv(n: float, p: float, alpha: float) -> float:
-    return finite(stats().binom.ppf(probability(alpha), int(n), probability(p, ends=True)))
+    return finite(stats().binom.ppf(probability(alpha), whole(n), probability(p, ends=True)))
 
 
 @builtin("T.DIST", "number number logical")
 def t_dist(x: float, freedom: float, cumulative: bool) -> float:
-    if int(freedom) < 1:
+    if whole(freedom) < 1:
         return fail(NUM)
-    law = stats().t(int(freedom))
+    law = stats().t(whole(freedom))
     return finite(law.cdf(x) if cumulative else law.pdf(x))
 
 
 @builtin("T.DIST.RT", "number number")
 def t_dist_rt(x: float, freedom: float) -> float:
-    return finite(stats().t.sf(x, int(freedom))) if int(freedom) >= 1 else fail(NUM)
+    return finite(stats().t.sf(x, whole(freedom))) if whole(freedom) >= 1 else fail(NUM)
 
 
 @builtin("T.DIST.2T", "number number")
 def t_dist_2t(x: float, freedom: float) -> float:
-    return finite(2 * stats().t.sf(x, int(freedom))) if int(freedom) >= 1 and x >= 0 else fail(NUM)
+    return finite(2 * stats().t.sf(x, whole(freedom))) if whole(freedom) >= 1 and x >= 0 else fail(NUM)
 
 
 @builtin("TDIST", "number number number")
 def tdist(x: float, freedom: float, tails: float) -> float:
-    if x < 0 or int(freedom) < 1 or int(tails) not in (1, 2):
+    if x < 0 or whole(freedom) < 1 or int(tails) not in (1, 2):
         return fail(NUM)
-    return finite(int(tails) * stats().t.sf(x, int(freedom)))
+    return finite(int(tails) * stats().t.sf(x, whole(freedom)))
 
 
 @builtin("T.INV", "number number")
 def t_inv(p: float, freedom: float) -> float:
-    return finite(stats().t.ppf(probability(p), int(freedom))) if int(freedom) >= 1 else fail(NUM)
+    return finite(stats().t.ppf(probability(p), whole(freedom))) if whole(freedom) >= 1 else fail(NUM)
 
 
 @builtin("T.INV.2T TINV", "number number")
 def t_inv_2t(p: float, freedom: float) -> float:
-    return finite(stats().t.isf(p / 2, int(freedom))) if int(freedom) >= 1 and 0 < p <= 1 else fail(NUM)
+    return finite(stats().t.isf(p / 2, whole(freedom))) if whole(freedom) >= 1 and 0 < p <= 1 else fail(NUM)
 
 
 @builtin("CHISQ.DIST", "number number logical")
 def chisq_dist(x: float, freedom: float, cumulative: bool) -> float:
-    if x < 0 or int(freedom) < 1:
+    if x < 0 or whole(freedom) < 1:
         return fail(NUM)
-    law = stats().chi2(int(freedom))
+    law = stats().chi2(whole(freedom))
     return finite(law.cdf(x) if cumulative else law.pdf(x))
 
 
 @builtin("CHISQ.DIST.RT CHIDIST", "number number")
 def chisq_dist_rt(x: float, freedom: float) -> float:
-    return finite(stats().chi2.sf(x, int(freedom))) if x >= 0 and int(freedom) >= 1 else fail(NUM)
+    return finite(stats().chi2.sf(x, whole(freedom))) if x >= 0 and whole(freedom) >= 1 else fail(NUM)
 
 
 @builtin("CHISQ.INV", "number number")
 def chisq_inv(p: float, freedom: float) -> float:
-    return finite(stats().chi2.ppf(p, int(freedom))) if 0 <= p < 1 and int(freedom) >= 1 else fail(NUM)
+    return finite(stats().chi2.ppf(p, whole(freedom))) if 0 <= p < 1 and whole(freedom) >= 1 else fail(NUM)
 
 
 @builtin("CHISQ.INV.RT CHIINV", "number number")
 def chisq_inv_rt(p: float, freedom: float) -> float:
-    return finite(stats().chi2.isf(p, int(freedom))) if 0 < p <= 1 and int(freedom) >= 1 else fail(NUM)
+    return finite(stats().chi2.isf(p, whole(freedom))) if 0 < p <= 1 and whole(freedom) >= 1 else fail(NUM)
 
 
 @builtin("F.DIST", "number number number logical")
 def f_dist(x: float, a: float, b: float, cumulative: bool) -> float:
     if x < 0 or int(a) < 1 or int(b) < 1:
         return fail(NUM)
-    law = stats().f(int(a), int(b))
+    law = stats().f(whole(a), whole(b))
     return finite(law.cdf(x) if cumulative else law.pdf(x))
 
 
 @builtin("F.DIST.RT FDIST", "number number number")
 def f_dist_rt(x: float, a: float, b: float) -> float:
-    return finite(stats().f.sf(x, int(a), int(b))) if x >= 0 and int(a) >= 1 and int(b) >= 1 else fail(NUM)
+    return finite(stats().f.sf(x, whole(a), whole(b))) if x >= 0 and int(a) >= 1 and int(b) >= 1 else fail(NUM)
 
 
 @builtin("F.INV", "number number number")
 def f_inv(p: float, a: float, b: float) -> float:
-    return finite(stats().f.ppf(p, int(a), int(b))) if 0 <= p < 1 and int(a) >= 1 and int(b) >= 1 else fail(NUM)
+    return finite(stats().f.ppf(p, whole(a), whole(b))) if 0 <= p < 1 and int(a) >= 1 and int(b) >= 1 else fail(NUM)
 
 
 @builtin("F.INV.RT FINV", "number number number")
 def f_inv_rt(p: float, a: float, b: float) -> float:
-    return finite(stats().f.isf(p, int(a), int(b))) if 0 < p <= 1 and int(a) >= 1 and int(b) >= 1 else fail(NUM)
+    return finite(stats().f.isf(p, whole(a), whole(b))) if 0 < p <= 1 and int(a) >= 1 and int(b) >= 1 else fail(NUM)
 
 
 @builtin("GAMMA", "number")
@@ -283,6 +288,8 @@ def fisherinv(y: float) -> float:
 def t_test(a: Array, b: Array, tails: float, kind: float) -> float:
     if int(tails) not in (1, 2) or int(kind) not in (1, 2, 3):
         return fail(NUM)
+    if min(len(list(numbers((each,)))) for each in (a, b)) < 2:
+        return fail(DIV0)
     if int(kind) == 1:
         pairs = paired(a, b)
         x, y = [p[0] for p in pairs], [p[1] for p in pairs]
@@ -322,18 +329,18 @@ def chisq_test(actual: Array, expected: Array) -> float:
 
 @builtin("HYPGEOM.DIST", "number number number number logical")
 def hypgeom_dist(k: float, n: float, successes: float, population: float, cumulative: bool) -> float:
-    law = stats().hypergeom(int(population), int(successes), int(n))
+    law = stats().hypergeom(whole(population), whole(successes), whole(n))
     if not 0 <= int(k) <= min(int(n), int(successes)) or int(n) > int(population):
         return fail(NUM)
-    return finite(law.cdf(float(int(k))) if cumulative else law.pmf(float(int(k))))
+    return finite(law.cdf(whole(k)) if cumulative else law.pmf(whole(k)))
 
 
 @builtin("NEGBINOM.DIST", "number number number logical")
 def negbinom_dist(failures: float, successes: float, p: float, cumulative: bool) -> float:
     if failures < 0 or successes < 1 or not 0 < p <= 1:
         return fail(NUM)
-    law = stats().nbinom(int(successes), p)
-    return finite(law.cdf(int(failures)) if cumulative else law.pmf(int(failures)))
+    law = stats().nbinom(whole(successes), p)
+    return finite(law.cdf(whole(failures)) if cumulative else law.pmf(whole(failures)))
 
 
 @builtin("ERF ERF.PRECISE", "number number?")

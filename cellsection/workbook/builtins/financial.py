@@ -250,7 +250,7 @@ def syd(cost: float, salvage: float, life: float, period: float) -> float:
 @builtin("DB", "number number number number number?")
 def db(cost: float, salvage: float, life: float, period: float, months: float = 12.0) -> float:
     n, p, m = int(life), int(period), int(months)
-    if cost < 0 or salvage < 0 or n <= 0 or p < 1 or not 1 <= m <= 12 or p > n + (m < 12):
+    if cost < 0 or salvage < 0 or n <= 0 or p < 1 or not 1 <= m <= 12 or p > n + (m < 12) or p > 100_000:
         return fail(NUM)
     if cost == 0:
         return 0.0

@@ -236,7 +236,8 @@ def rand() -> float:
 def randbetween(low: float, high: float) -> float:
     import random
 
-    return float(random.randint(math.ceil(low), math.floor(high))) if low <= high else fail(NUM)
+    first, last = math.ceil(low), math.floor(high)
+    return float(random.randint(first, last)) if first <= last else fail(NUM)
 
 
 @builtin("RANDARRAY", "number? number? number? number? logical?", volatile=True)

@@ -10,7 +10,7 @@ from cellsection.workbook.builtins.mathematics import rounded
 from cellsection.workbook.builtins.numberformat import formatted
 from cellsection.workbook.builtins.registry import Context, ErrorResult, builtin
 from cellsection.workbook.builtins.traits import cells_of, wildcard
-from cellsection.workbook.coercion import NA, NUM, VALUE, number_of, text_number, text_of
+from cellsection.workbook.coercion import CALC, NA, NUM, VALUE, number_of, text_number, text_of
 from cellsection.workbook.values import Array, ErrorValue, Scalar
 
 LONGEST = 32_767
@@ -224,13 +224,13 @@ def text_(context: Context, cell: Scalar, pattern: str) -> Any:
 
 @builtin("FIXED", "number number? logical?")
 def fixed(x: float, decimals: float = 2.0, no_commas: bool = False) -> str:
-    y = rounded(x, decimals, "half")
+    y = rounded(x, decimals, "half") if decimals <= 127 else float(fail_text(VALUE))
     return f"{y:{'' if no_commas else ','}.{max(int(decimals), 0)}f}"
 
 
 @builtin("DOLLAR", "number number?")
 def dollar(x: float, decimals: float = 2.0) -> str:
-    y = rounded(x, decimals, "half")
+    y = rounded(x, decimals, "half") if decimals <= 127 else float(fail_text(VALUE))
     body = f"${abs(y):,.{max(int(decimals), 0)}f}"
     return f"({body})" if y < 0 else body
 
@@ -282,6 +282,8 @@ def textsplit(
     if skip:
         table = [[piece for piece in line if piece] for line in table]
     width = max(map(len, table))
+    if not width:
+        raise ErrorResult(CALC)
     return tuple((*line, *((pad,) * (width - len(line)))) for line in table)
 
 
