@@ -6,27 +6,42 @@ Where a dimension may equal its limit and where it must stay below is decided sh
 
 from __future__ import annotations
 
-from math import isfinite
-
 from cellsection.errors import InputError
 
-__all__ = ["at_most", "below", "not_negative", "positive"]
+__all__ = ["SMALLEST", "at_most", "below", "not_negative", "place", "positive"]
 
 SLACK = 1e-12
+# Beyond these, fourth powers leave the range of floating point numbers.
+LARGEST, SMALLEST = 1e50, 1e-50
+
+
+def place(column: str, value: float) -> None:
+    """Refuse a coordinate or offset that is no number, or too large to compute with.
+
+    >>> place("x", float("nan"))
+    Traceback (most recent call last):
+    cellsection.errors.InputError: column x: x = nan is not a number to compute with. Enter a number below 1e+50.
+    """
+    if not abs(value) <= LARGEST:
+        raise InputError(
+            f"{column} = {value:g} is not a number to compute with",
+            remedy=f"Enter a number below {LARGEST:g}",
+            column=column,
+        )
 
 
 def positive(column: str, value: float) -> None:
-    """Refuse a size that is zero, negative or no finite number."""
-    if not isfinite(value):
-        raise InputError(f"{column} = {value} is not a finite number", remedy="Enter a number", column=column)
+    """Refuse a size that is zero, negative, no number, or beyond all lengths."""
+    place(column, value)
     if not value > 0.0:
         raise InputError(f"{column} = {value:g} is not positive", remedy="Enter a length greater than 0", column=column)
+    if value < SMALLEST:
+        raise InputError(f"{column} = {value:g} is too small", remedy="Enter it in a smaller unit", column=column)
 
 
 def not_negative(column: str, value: float) -> None:
-    """Refuse a radius, lip or slope that is negative or no finite number; 0 means there is none."""
-    if not isfinite(value):
-        raise InputError(f"{column} = {value} is not a finite number", remedy="Enter a number", column=column)
+    """Refuse a radius, lip or slope that is negative or no number; 0 means there is none."""
+    place(column, value)
     if value < 0.0:
         raise InputError(
             f"{column} = {value:g} is negative", remedy="Enter 0 or more, or leave it blank", column=column

@@ -2,8 +2,10 @@
 
 from __future__ import annotations
 
-from math import cos, fsum, radians, sin
+from math import cos, fsum, isfinite, radians, sin
 from typing import TYPE_CHECKING, NamedTuple
+
+from cellsection.errors import InputError
 
 if TYPE_CHECKING:
     from collections.abc import Iterable
@@ -77,9 +79,13 @@ def second_moments(Ix: float, Iy: float, Ixy: float, turn: float) -> tuple[float
 def cosine_sine(degrees: float) -> tuple[float, float]:
     """Cosine and sine of an angle in degrees, exact at every quarter turn.
 
+    Raises InputError for an angle that is no finite number.
+
     >>> cosine_sine(90.0), cosine_sine(-540.0)
     ((0.0, 1.0), (-1.0, 0.0))
     """
+    if not isfinite(degrees):
+        raise InputError(f"the angle {degrees} is not a number", remedy="Enter an angle in degrees")
     turn = degrees % 360.0
     quarters, rest = divmod(turn, 90.0)
     # Within one quarter, and mirrored at 45 degrees, so that sin 30 and cos 60 are the very same number.

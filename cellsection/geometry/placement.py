@@ -5,6 +5,7 @@ from __future__ import annotations
 from typing import TYPE_CHECKING
 
 from cellsection.errors import InputError
+from cellsection.geometry.limits import place
 
 if TYPE_CHECKING:
     from cellsection.geometry.region import Region
@@ -53,6 +54,8 @@ def placed(
     >>> placed(SHAPES["rectangle"].build(b=200, h=12), x=0, y=500, datum="bottom").bounds()
     (-100.0, 500.0, 100.0, 512.0)
     """
+    place("x", x)
+    place("y", y)
     shape = region.mirrored() if mirrored else region
     px, py = datum_point(shape, datum)
     moved = shape.moved(x - px, y - py)

@@ -4,10 +4,11 @@ from __future__ import annotations
 
 from dataclasses import dataclass, replace
 from functools import cached_property
-from math import hypot, isfinite
+from math import hypot
 from typing import TYPE_CHECKING
 
 from cellsection.errors import InputError
+from cellsection.geometry.limits import SMALLEST, place
 from cellsection.geometry.moments import Centroidal, Moments, cosine_sine, summed
 from cellsection.geometry.outline import Loop, area, backwards, box, chain, closed, drawn, drawn_closely
 from cellsection.geometry.simple import refuse_crossing
@@ -68,9 +69,9 @@ class Region:
         >>> Region.from_points([(0, 0), (0, 3), (4, 0)]).moments().A
         6.0
         """
-        for number, point in enumerate(points, start=1):
-            if not all(isfinite(value) for value in point):
-                raise InputError(f"corner {number} is {point}", remedy="Enter numbers", column="x")
+        for point in points:
+            for column, value in zip("xy", point, strict=True):
+                place(column, value)
         # Repeated corners, the first at the end among them, are dropped; the rest keep the numbers the engineer knows.
         kept = [
             (number, float(point[0]), float(point[1]))
@@ -87,7 +88,7 @@ class Region:
         local = chain([(px - x, py - y) for _number, px, py in kept])
         enclosed = area(local)
         reach = max(hypot(side.x1, side.y1) for side in local)
-        if abs(enclosed) <= FLAT * reach * reach:
+        if reach < SMALLEST or abs(enclosed) <= FLAT * reach * reach:
             raise InputError("the corners lie on one line", remedy="Enter corners that enclose an area", column="x")
         refuse_crossing(local, abs(enclosed), [number for number, _x, _y in kept])
         return cls((local if enclosed > 0.0 else backwards(local),), x, y)

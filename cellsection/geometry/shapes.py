@@ -3,12 +3,11 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
-from math import isfinite
 from typing import TYPE_CHECKING
 
 from cellsection.errors import InputError
 from cellsection.geometry import coldformed, figures, profiles
-from cellsection.geometry.limits import not_negative, positive
+from cellsection.geometry.limits import not_negative, place, positive
 
 if TYPE_CHECKING:
     from collections.abc import Callable
@@ -61,8 +60,7 @@ class Shape:
                     column=letter,
                 )
             if letter in PLACES:
-                if not isfinite(value):
-                    raise InputError(f"{letter} = {value} is not finite", remedy="Enter a number", column=letter)
+                place(letter, value)
             elif letter in self.required or letter in POSITIVE_WHERE_GIVEN:
                 positive(letter, value)
             else:

@@ -2,8 +2,10 @@
 
 from __future__ import annotations
 
+from math import isfinite
 from typing import TYPE_CHECKING, NamedTuple
 
+from cellsection.errors import InputError
 from cellsection.geometry import second_moments
 from cellsection.section.principal import principal_axes
 from cellsection.section.transformed import radius_of_gyration, transformed
@@ -73,6 +75,9 @@ def about(parts: Sequence[Part], x: float, y: float, turn: float = 0.0) -> tuple
     >>> about([Part("", "rectangle", SHAPES["rectangle"].build(b=6, h=4))], x=0, y=0)   # b·h³/3, h·b³/3, b²·h²/4
     (128.0, 288.0, 144.0)
     """
+    for argument, value in (("x", x), ("y", y)):
+        if not isfinite(value):
+            raise InputError(f"{argument} = {value} is not a number", remedy="Give a number", argument=argument)
     A, xc, yc, Ix, Iy, Ixy, _rounding = transformed(parts)
     dx, dy = xc - x, yc - y
     return second_moments(Ix + A * dy * dy, Iy + A * dx * dx, Ixy + A * dx * dy, turn)

@@ -22,7 +22,8 @@ if TYPE_CHECKING:
 __all__ = ["Fault", "faults"]
 
 # Pieces nearer than this share of the section's size touch each other, whatever the gap.
-TOUCHING = 1e-6
+TOUCHING = 1e-5
+SAME_RATIO = 1e-9
 
 
 class Fault(NamedTuple):
@@ -138,7 +139,9 @@ class _Seen:
         """A cut-out whose n is that of none of the parts it lies in."""
         import shapely
 
-        same = [each for each in self.solids if abs(each.part.n - cut.part.n) <= 1e-9 * cut.part.n]
+        same = [each for each in self.solids if abs(each.part.n - cut.part.n) <= SAME_RATIO * cut.part.n]
+        if len(same) == len(self.solids):
+            return
         rest = cut.shape.difference(shapely.union_all([each.shape for each in same]))
         for each in self.solids:
             if each in same:

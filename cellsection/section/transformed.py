@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from math import fsum, hypot, inf, sqrt
+from math import fsum, hypot, sqrt
 from typing import TYPE_CHECKING, NamedTuple
 
 from cellsection.errors import InputError
@@ -18,6 +18,7 @@ __all__ = ["Transformed", "named", "radius_of_gyration", "transformed", "weighte
 # A product moment, or a difference between Ix and Iy, below this share of the larger cannot be told from rounding.
 ROUNDING = 1e-12
 EPSILON = 2.0**-52
+LARGEST_RATIO = 1e12  # no two materials differ by more; a larger number is a slip
 
 
 class Transformed(NamedTuple):
@@ -56,9 +57,9 @@ def transformed(parts: Sequence[Part]) -> Transformed:
     for part in parts:
         if part.sign not in (1, -1):
             raise InputError(f"sign = {part.sign} is neither 1 nor -1", remedy="Enter 1 for solid, -1 for a cut-out")
-        if not 0.0 < part.n < inf:
+        if not 0.0 < part.n <= LARGEST_RATIO:
             raise InputError(
-                f"n = {part.n:g} is not a positive number", remedy="Enter E of the part over E of the reference"
+                f"n = {part.n:g} is not a positive ratio", remedy="Enter E of the part over E of the reference"
             )
     rows = [weighted(part) for part in parts]
     net, gross = fsum(row.A for row in rows), fsum(abs(row.A) for row in rows)
@@ -80,8 +81,11 @@ def transformed(parts: Sequence[Part]) -> Transformed:
                 remedy="Check the signs, and that every cut-out lies inside a solid part",
             )
     larger = max(Ix, Iy)
-    # Places are rounded, too: by an EPSILON of how far out they are, on an arm of about one radius of gyration.
-    rounding = ROUNDING * larger + 8.0 * EPSILON * gross * hypot(x, y) * sqrt(larger / net)
+    # Solids and cut-outs that almost cancel leave the rounding of what they were. Places are rounded, too, by EPSILON
+    # of how far out they are, on an arm of about one radius of gyration.
+    cancelled = max(fsum(abs(row.Ix) for row in rows), fsum(abs(row.Iy) for row in rows))
+    shifted = gross * hypot(x, y) * sqrt(larger / net)
+    rounding = ROUNDING * larger + EPSILON * (64.0 * cancelled + 8.0 * shifted)
     return Transformed(net, x, y, Ix, Iy, Ixy if abs(Ixy) > rounding else 0.0, rounding)
 
 

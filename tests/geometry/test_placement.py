@@ -57,6 +57,18 @@ def test_each_datum_word_names_its_point_of_the_box(datum: str, bounds: tuple[fl
     assert placed(SHAPES["rectangle"].build(b=200, h=12), 0, 0, datum=datum).bounds() == bounds
 
 
+@pytest.mark.parametrize(("x", "y", "column"), [(float("nan"), 0, "x"), (0, float("inf"), "y"), (1e60, 0, "x")])
+def test_a_place_that_is_no_number_is_refused(x: float, y: float, column: str) -> None:
+    with pytest.raises(InputError, match="not a number to compute with") as met:
+        placed(CHANNEL, x, y)
+    assert met.value.column == column
+
+
+def test_a_turn_that_is_no_number_is_refused() -> None:
+    with pytest.raises(InputError, match="angle nan is not a number"):
+        placed(CHANNEL, 0, 0, turn=float("nan"))
+
+
 def test_an_unknown_datum_is_refused_with_the_words_there_are() -> None:
     with pytest.raises(InputError, match="'middle' is not known") as met:
         placed(CHANNEL, 0, 0, datum="middle")

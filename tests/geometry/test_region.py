@@ -160,8 +160,8 @@ def test_a_cut_that_leads_to_a_hole_is_allowed() -> None:
         ([(0, 0), (4, 0), (4, 4), (0, 4), (5, 2)], "side 2-3 meets side 4-5"),
         # Two rounds of the same square: nothing crosses, everything counts twice.
         ([*SQUARE, *SQUARE], "crosses itself"),
-        ([(0, 0), (float("nan"), 0), (1, 1)], "corner 2"),
-        ([(0, 0), (float("inf"), 0), (1, 1)], "corner 2"),
+        ([(0, 0), (float("nan"), 0), (1, 1)], "x = nan is not a number"),
+        ([(0, 0), (float("inf"), 0), (1, 1)], "x = inf is not a number"),
         # Two triangles with a common corner, run through in opposite senses.
         ([(0, 0), (2, 0), (1, 1), (0, 2.2), (2, 2.2), (1, 1)], "crosses itself"),
     ],

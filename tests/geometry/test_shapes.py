@@ -57,6 +57,9 @@ LIPPED = {"h": 200, "b": 70, "c": 20, "t": 2}
         ("rectangle", {"b": float("inf"), "h": 10}, "b"),
         ("triangle", {"b": 10, "h": 10, "a": float("nan")}, "a"),
         ("circle", {"d": 0}, "d"),
+        ("circle", {"d": 1e-60}, "d"),
+        ("circle", {"d": 1e60}, "d"),
+        ("fillet", {"r": float("inf")}, "r"),
         ("sector", {"r": 10, "angle": 360}, "angle"),
         ("segment", {"r": 10, "angle": 0}, "angle"),
         ("segment", {"r": 10, "angle": 400}, "angle"),
@@ -138,6 +141,12 @@ def test_a_radius_may_fill_its_space_exactly(word: str, dims: dict[str, float]) 
     shape = SHAPES[word].build(**dims).polygon(1e-3)
     assert shape.is_valid
     assert shape.geom_type == "Polygon"
+
+
+@pytest.mark.parametrize("size", [1e-48, 1e-12, 1e12, 1e49])
+def test_any_length_that_is_accepted_is_computed_with(size: float) -> None:
+    ring = SHAPES["tube"].build(d=size, t=size / 10).centroidal()
+    assert ring.Ix == pytest.approx(pi / 64 * (1 - 0.8**4) * size**4, rel=1e-13)
 
 
 def test_round_tubes_of_box_and_tube_agree() -> None:

@@ -149,9 +149,9 @@ def test_about_any_point_and_angle_is_the_parallel_axis_theorem_and_a_rotation()
         ([part("circle", d=10), part("circle", d=20, sign=-1)], "net area is negative"),
         ([part("rectangle", b=10, h=10), part("rectangle", 0, 50, b=9, h=9, sign=-1)], "Ix = .* is not positive"),
         ([part("rectangle", b=10, h=10), part("rectangle", 50, 0, b=9, h=9, sign=-1)], "Iy = .* is not positive"),
-        ([part("circle", d=10, n=0)], "n = 0 is not a positive number"),
-        ([part("circle", d=10, n=-8)], "n = -8 is not a positive number"),
-        ([part("circle", d=10, n=float("nan"))], "n = nan is not a positive number"),
+        ([part("circle", d=10, n=0)], "n = 0 is not a positive ratio"),
+        ([part("circle", d=10, n=-8)], "n = -8 is not a positive ratio"),
+        ([part("circle", d=10, n=float("nan"))], "n = nan is not a positive ratio"),
         ([part("circle", d=10, sign=2)], "sign = 2 is neither 1 nor -1"),
     ],
 )
@@ -161,6 +161,12 @@ def test_what_is_no_section_is_refused_in_one_line(parts: list[Part], fault: str
             asked(parts)
         assert "\n" not in str(met.value)
         assert met.value.remedy
+
+
+@pytest.mark.parametrize(("x", "y", "turn"), [(float("nan"), 0, 0), (0, float("inf"), 0), (0, 0, float("nan"))])
+def test_axes_that_are_no_numbers_are_refused(x: float, y: float, turn: float) -> None:
+    with pytest.raises(InputError, match="is not a number"):
+        about(girder(), x, y, turn)
 
 
 @pytest.mark.parametrize(("second_moment", "area"), [(-1.0, 4.0), (1.0, 0.0), (0.0, 1.0), (1.0, -1.0)])
