@@ -39,7 +39,7 @@ OUTSIDE = {  # packages that only some rooms may load; all others are free
     "xlwings": "hosts",
     "pandas": "face",
     "numpy": "geometry section face",
-    "scipy": "geometry section",
+    "scipy": "geometry section workbook",  # workbook: the distributions, loaded by the first formula that needs one
 }
 LONGEST = 500
 # Written in pieces, so that this file does not find itself.

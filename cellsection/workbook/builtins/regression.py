@@ -10,60 +10,97 @@ from cellsection.workbook.coercion import NA, NUM, REF, VALUE, logical_of, numbe
 from cellsection.workbook.values import Array, ErrorValue, Scalar
 
 
-def design(x: Array | None, y: list[float], constant: bool) -> tuple[list[list[float]], int]:
-    """Rows of the design matrix (highest column first is left to the caller), and the number of variables."""
+def variables_of(x: Array | None, count: int) -> list[list[float]]:
+    """The independent variables, each a list as long as the dependent one; 1, 2, 3 ... where none are given."""
     if x is None:
-        columns = [[float(k + 1) for k in range(len(y))]]
-    else:
-        cells = [[plain_number(cell) for cell in row] for row in x]
-        if len(cells) * len(cells[0]) == len(y):
-            columns = [[cell for row in cells for cell in row]]
-        elif len(cells) == len(y):
-            columns = [list(column) for column in zip(*cells, strict=True)]
-        elif len(cells[0]) == len(y):
-            columns = [list(row) for row in cells]
-        else:
-            raise ErrorResult(REF)
-    rows = [[*(column[k] for column in columns), *([1.0] if constant else [])] for k in range(len(y))]
-    return rows, len(columns)
+        return [[float(k + 1) for k in range(count)]]
+    cells = [[plain_number(cell) for cell in row] for row in x]
+    if len(cells) * len(cells[0]) == count:
+        return [[cell for row in cells for cell in row]]
+    if len(cells) == count:
+        return [list(column) for column in zip(*cells, strict=True)]
+    if len(cells[0]) == count:
+        return [list(row) for row in cells]
+    raise ErrorResult(REF)
+
+
+def dot(a: list[float], b: list[float]) -> float:
+    """Inner product."""
+    return math.fsum(p * q for p, q in zip(a, b, strict=True))
+
+
+def orthogonal(columns: list[list[float]]) -> tuple[list[list[float]], list[list[float]], list[int]]:
+    """Q and R of the columns by Gram-Schmidt, twice over to keep its digits, and which columns are independent.
+
+    A column that the ones before it make up (to 1e-12 of its length) is left out; its coefficient is 0.
+    """
+    Q: list[list[float]] = []
+    R: list[list[float]] = []
+    kept: list[int] = []
+    for k, column in enumerate(columns):
+        rest, shares = list(column), [0.0] * len(Q)
+        for _ in range(2):
+            for i, q in enumerate(Q):
+                share = dot(q, rest)
+                shares[i] += share
+                rest = [v - share * w for v, w in zip(rest, q, strict=True)]
+        length = math.sqrt(dot(rest, rest))
+        if length > 1e-12 * math.sqrt(dot(column, column)):
+            Q.append([v / length for v in rest])
+            R.append([*shares, length])
+            kept.append(k)
+    return Q, R, kept
+
+
+def inverse_of(R: list[list[float]]) -> list[list[float]]:
+    """Inverse of the triangle R, whose k-th list is its k-th column down to the diagonal; rows of the inverse."""
+    n = len(R)
+    inverse = [[0.0] * n for _ in range(n)]
+    for k in range(n):
+        inverse[k][k] = 1.0 / R[k][k]
+        for i in range(k):
+            inverse[i][k] = -math.fsum(inverse[i][m] * R[k][m] for m in range(i, k)) / R[k][k]
+    return inverse
 
 
 def fitted(y: Array, x: Array | None, constant: bool, statistics: bool) -> list[list[float | ErrorValue]]:
-    """Least squares by QR, coefficients in reverse order as the application lists them; with statistics five rows."""
-    import numpy as np
+    """Least squares, coefficients in reverse order as the application lists them; with statistics five rows.
 
+    Source: linear regression by orthogonal decomposition, any text on statistics or numerical analysis. With a constant
+    the columns are centred first, so that the solution keeps its digits.
+    """
     values = list(numbers((y,)))
-    if not values or len(values) != sum(len(row) for row in y):
+    n = len(values)
+    if not n or n != sum(len(row) for row in y):
         raise ErrorResult(VALUE)
-    rows, variables = design(x, values, constant)
-    if len(rows) != len(values):
-        raise ErrorResult(REF)
-    matrix, right = np.array(rows, dtype=float), np.array(values, dtype=float)
-    if constant:  # centred, so that the solution keeps its digits
-        centre = matrix[:, :variables].mean(axis=0)
-        shifted, level = matrix[:, :variables] - centre, right.mean()
-        solution, *_ = np.linalg.lstsq(shifted, right - level, rcond=None)
-        coefficients = np.append(solution, level - solution @ centre)
-    else:
-        coefficients, *_ = np.linalg.lstsq(matrix, right, rcond=None)
-    listing: list[float | ErrorValue] = [float(c) for c in coefficients[:variables][::-1]]
-    listing.append(float(coefficients[variables]) if constant else 0.0)
+    columns = variables_of(x, n)
+    m = len(columns)
+    centre = [math.fsum(column) / n if constant else 0.0 for column in columns]
+    level = math.fsum(values) / n if constant else 0.0
+    Q, R, kept = orthogonal([[v - c for v in column] for column, c in zip(columns, centre, strict=True)])
+    inverse, shares = inverse_of(R), [dot(q, [v - level for v in values]) for q in Q]
+    slopes = [0.0] * m
+    for row, k in enumerate(kept):
+        slopes[k] = dot(inverse[row], shares)
+    intercept = level - dot(slopes, centre)
+    listing: list[float | ErrorValue] = [*slopes[::-1], intercept if constant else 0.0]
     if not statistics:
         return [listing]
-    residual = right - matrix @ coefficients
-    rss = float(residual @ residual)
-    tss = float(((right - right.mean()) ** 2).sum()) if constant else float(right @ right)
-    freedom = len(values) - variables - constant
+    predicted_values = [intercept + math.fsum(s * c[k] for s, c in zip(slopes, columns, strict=True)) for k in range(n)]
+    rss = math.fsum((v - p) ** 2 for v, p in zip(values, predicted_values, strict=True))
+    tss = math.fsum((v - level) ** 2 for v in values)
+    freedom = n - len(kept) - constant
     sey = math.sqrt(rss / freedom) if freedom > 0 else 0.0
-    with np.errstate(over="ignore"):  # what overflows ends as #NUM! by itself
-        inverse = np.linalg.pinv(matrix.T @ matrix)
-    errors = [sey * math.sqrt(max(float(inverse[k, k]), 0.0)) for k in range(matrix.shape[1])]
-    deviation: list[float | ErrorValue] = [*errors[:variables][::-1], errors[variables] if constant else NA]
-    blanks: list[float | ErrorValue] = [NA] * (variables - 1)
-    f: float | ErrorValue = (tss - rss) / variables / (rss / freedom) if freedom > 0 and rss else NUM
+    errors = [0.0] * m
+    for row, k in enumerate(kept):
+        errors[k] = sey * math.sqrt(dot(inverse[row], inverse[row]))
+    lever = [math.fsum(inverse[row][c] * centre[k] for row, k in enumerate(kept)) for c in range(len(kept))]
+    error_of_constant: float | ErrorValue = sey * math.sqrt(1 / n + dot(lever, lever)) if constant else NA
+    blanks: list[float | ErrorValue] = [NA] * (m - 1)
+    f: float | ErrorValue = (tss - rss) / len(kept) / (rss / freedom) if freedom > 0 and rss and kept else NUM
     return [
-        listing, deviation, [1 - rss / tss if tss else 1.0, sey, *blanks], [f, float(freedom), *blanks],
-        [tss - rss, rss, *blanks],
+        listing, [*errors[::-1], error_of_constant], [1 - rss / tss if tss else 1.0, sey, *blanks],
+        [f, float(freedom), *blanks], [tss - rss, rss, *blanks],
     ]  # fmt: skip
 
 
