@@ -8,11 +8,14 @@ from __future__ import annotations
 
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass
-from math import isfinite
-from typing import Any, NamedTuple, TypeAlias
+from typing import TYPE_CHECKING, Any, NamedTuple, TypeAlias
 
 from cellsection.errors import InputError
-from cellsection.section.parts import PartRow, read_rows
+from cellsection.section.headers import quoted
+from cellsection.section.parts import PartRow, number_fault, read_rows
+
+if TYPE_CHECKING:
+    from cellsection.section.part import Part
 
 __all__ = [
     "Argument", "ReadBlock", "anything", "block", "blocks", "choice", "column", "number", "position", "table", "words",
@@ -23,9 +26,10 @@ Raw: TypeAlias = Cell | Sequence[Sequence[Cell]]
 
 
 class ReadBlock(NamedTuple):
-    """A parts block as a function gets it: its rows, and its length unit ("" where its headers name none)."""
+    """A parts block as a function gets it: its rows, the parts they make, and its length unit ("" without one)."""
 
     rows: tuple[PartRow, ...]
+    parts: tuple[Part, ...]
     unit: str
 
 
@@ -86,23 +90,27 @@ def rows_of(raw: Raw) -> tuple[tuple[Cell, ...], ...]:
 
 def plain_number(cell: Any, row: int | None = None, column: str = "") -> float:
     """A cell that must hold a number."""
-    if isinstance(cell, bool) or not isinstance(cell, (int, float)):
-        shown = "a blank cell" if cell is None or cell == "" else f'"{cell}"' if isinstance(cell, str) else f"{cell}"
-        remedy = "Retype as a number" if isinstance(cell, str) and cell else "Enter a number"
-        raise InputError(f"{shown} stands where a number should", remedy=remedy, row=row, column=column)
-    if not isfinite(cell):
-        raise InputError(f"{cell} is not a finite number", remedy="Enter a number", row=row, column=column)
+    fault = number_fault(cell)
+    if fault:
+        remedy = "Retype as a number" if isinstance(cell, str) and cell.strip() else "Enter a number"
+        raise InputError(fault, remedy=remedy, row=row, column=column)
     return float(cell)
+
+
+def read_parts(raw: Raw) -> ReadBlock:
+    """A parts block. Impossible dimensions are refused here too, before a block is moved or joined."""
+    rows, unit = read_rows(rows_of(raw))
+    return ReadBlock(rows, tuple(row.part() for row in rows), unit)
 
 
 def block(name: str, text: str = "the parts block: the range with its header row") -> Argument:
     """A parts block."""
-    return Argument(name, "parts block", lambda raw: ReadBlock(*read_rows(rows_of(raw))), text)
+    return Argument(name, "parts block", read_parts, text)
 
 
 def blocks(name: str, text: str) -> Argument:
     """Parts blocks, one or more."""
-    return Argument(name, "parts blocks", lambda raw: ReadBlock(*read_rows(rows_of(raw))), text, repeats=True)
+    return Argument(name, "parts blocks", read_parts, text, repeats=True)
 
 
 def number(name: str, text: str, dimension: str = "", default: str = "", *, optional: bool = False) -> Argument:
@@ -124,7 +132,7 @@ def choice(name: str, text: str, options: Sequence[str]) -> Argument:
         value = single(raw)
         if not isinstance(value, str) or value.strip().lower() not in options:
             raise InputError(
-                f"{value!r} is not one of {', '.join(options)}", remedy=f"Choose from {', '.join(options)}"
+                f"{quoted(value)} is not one of {', '.join(options)}", remedy=f"Choose from {', '.join(options)}"
             )
         return value.strip().lower()
 
@@ -138,8 +146,7 @@ def words(name: str, text: str, options: Sequence[str], default: str) -> Argumen
     def one(cell: Any, row: int | None) -> str:
         option = known.get(cell.strip().casefold()) if isinstance(cell, str) else None
         if option is None:
-            shown = "a blank cell" if cell is None or cell == "" else repr(cell)
-            raise InputError(f"{shown} is no symbol here", remedy=f"Choose from {', '.join(options)}", row=row)
+            raise InputError(f"{quoted(cell)} is no symbol here", remedy=f"Choose from {', '.join(options)}", row=row)
         return option
 
     def read(raw: Raw) -> str | tuple[tuple[str, ...], ...]:

@@ -143,7 +143,7 @@ def mirrored(parts: ReadBlock, axis: str, position: float | None) -> Rows:
 
 def joined(*parts: ReadBlock) -> Rows:
     """All parts of the blocks in one block."""
-    rows, unit = joined_rows(parts)
+    rows, unit = joined_rows([(each.rows, each.unit) for each in parts])
     return written(rows, unit)
 
 

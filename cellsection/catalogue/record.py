@@ -26,13 +26,12 @@ ARGUMENT_NAME = re.compile(r"[a-z][a-z0-9_]*")
 LONGEST_HELP = 255
 WIZARD = 254  # number of arguments plus the length of their names
 # Words the Excel side's macro language keeps for itself, as far as an argument might be so called.
-RESERVED = frozenset(
-    """
+RESERVED_WORDS = """
     and as call case caller const date dim do each else end enum event exit false for friend function get goto if in is
     let like loop me mod new next not nothing null of on option optional or print private property public rem resume
     return select set static step stop string sub then to true type until variant wend while with xor
-    """.split()
-)
+"""
+RESERVED = frozenset(RESERVED_WORDS.split())
 
 
 @dataclass(frozen=True, slots=True)

@@ -12,9 +12,8 @@ from cellsection.section import fibres as extreme_fibres
 from cellsection.section import ledger as ledger_of
 from cellsection.section import principal as principal_of
 from cellsection.section import totals as totals_of
-from cellsection.section.part import Part
 
-__all__ = ["RESULTS", "power_unit", "section_parts"]
+__all__ = ["RESULTS", "power_unit"]
 
 Listing: TypeAlias = tuple[tuple[str, float, str], ...]
 PARALLEL = "parallel-axis theorem for composite areas (Steiner); any text on mechanics of materials, from memory"
@@ -36,11 +35,6 @@ def power_unit(power: int, unit: str) -> str:
     return (unit or "L") + {1: "", 2: "²", 3: "³", 4: "⁴"}[power] if power else "°"
 
 
-def section_parts(parts: ReadBlock) -> tuple[Part, ...]:
-    """The parts of a block as the mechanics take them."""
-    return tuple(row.part() for row in parts.rows)
-
-
 def listed(values: dict[str, float], powers: dict[str, int], unit: str) -> Listing:
     """Rows symbol, value, unit."""
     return tuple((symbol, values[symbol], power_unit(power, unit)) for symbol, power in powers.items())
@@ -59,12 +53,12 @@ def asked(
 
 def totals(parts: ReadBlock, which: str | tuple[tuple[str, ...], ...] | None) -> object:
     """Totals of the composite section."""
-    return asked(which, totals_of(section_parts(parts))._asdict(), TOTALS, parts.unit)
+    return asked(which, totals_of(parts.parts)._asdict(), TOTALS, parts.unit)
 
 
 def ledger(parts: ReadBlock) -> object:
     """The hand method, a row a part."""
-    whole = ledger_of(section_parts(parts))
+    whole = ledger_of(parts.parts)
     units = {name: f"{name} [{power_unit(power, parts.unit)}]" for name, power in LEDGER_POWERS.items()}
     header = ("part", *(units[name] if parts.unit else name for name in LEDGER_COLUMNS[1:]))
     return (header, *(tuple(row) for row in (*whole.rows, whole.total)))
@@ -72,18 +66,18 @@ def ledger(parts: ReadBlock) -> object:
 
 def about(parts: ReadBlock, x: float | None, y: float | None, turn: float | None) -> Listing:
     """Second moments about any axes."""
-    Ix, Iy, Ixy = moments_about(section_parts(parts), x or 0.0, y or 0.0, turn or 0.0)
+    Ix, Iy, Ixy = moments_about(parts.parts, x or 0.0, y or 0.0, turn or 0.0)
     return listed({"Ix": Ix, "Iy": Iy, "Ixy": Ixy}, ABOUT, parts.unit)
 
 
 def principal(parts: ReadBlock, which: str | tuple[tuple[str, ...], ...] | None) -> object:
     """Principal moments, their direction and radii."""
-    return asked(which, principal_of(section_parts(parts))._asdict(), PRINCIPAL, parts.unit)
+    return asked(which, principal_of(parts.parts)._asdict(), PRINCIPAL, parts.unit)
 
 
 def fibres(parts: ReadBlock, turn: float | None) -> object:
     """Extreme fibres and elastic moduli."""
-    found = extreme_fibres(section_parts(parts), turn or 0.0)
+    found = extreme_fibres(parts.parts, turn or 0.0)
     return tuple((side, fibre.distance, fibre.modulus) for side, fibre in found._asdict().items())
 
 

@@ -5,24 +5,24 @@ from __future__ import annotations
 import hashlib
 from functools import lru_cache
 
+from cellsection import __version__
 from cellsection.catalogue.arguments import Cell, ReadBlock, anything, block, number, position
 from cellsection.catalogue.record import CellFunction, Example, Returns
-from cellsection.catalogue.results import section_parts
 from cellsection.errors import InputError
 from cellsection.section import faults as faults_of
+from cellsection.section.headers import quoted
 
 __all__ = ["NO_FAULTS", "VIEW", "edition"]
 
 NO_FAULTS = "no faults"
 POINTS = 48  # of an outline, where the call does not say
-VERSION = "0.1.0"
 
 
 def faults(parts: ReadBlock, gap: float | None) -> object:
     """What is wrong with a section although it can be summed."""
     if gap is not None and gap < 0:
         raise InputError(f"gap {gap:g} is negative", remedy="Give 0 or a small length", argument="gap")
-    found = faults_of(section_parts(parts), gap, parts.unit)
+    found = faults_of(parts.parts, gap, parts.unit)
     return tuple(tuple(fault) for fault in found) or NO_FAULTS
 
 
@@ -33,12 +33,12 @@ def outline(parts: ReadBlock, part: float | str, points: float | None) -> object
         raise InputError(
             f"{count:g} points cannot be drawn", remedy="Ask for a whole number from 4 to 100000", argument="points"
         )
-    found = section_parts(parts)
+    found = parts.parts
     if isinstance(part, str):
         index = next((k for k, each in enumerate(found) if each.label.casefold() == part.casefold()), None)
         if index is None:
             labels = ", ".join(each.label for each in found if each.label) or "none has a label"
-            raise InputError(f'no part is labelled "{part}"', remedy=f"Choose from: {labels}", argument="part")
+            raise InputError(f"no part is labelled {quoted(part)}", remedy=f"Choose from: {labels}", argument="part")
     else:
         if part != int(part) or not 1 <= part <= len(found):
             raise InputError(
@@ -60,7 +60,9 @@ def agrees(value: Cell, reference: Cell, tolerance: float | None) -> bool:
         return value.strip().casefold() == reference.strip().casefold()
     for name, each in (("value", value), ("reference", reference)):
         if isinstance(each, bool) or not isinstance(each, (int, float)):
-            raise InputError(f"{each!r} is not a number", remedy="Compare two numbers, or two texts", argument=name)
+            raise InputError(
+                f"{quoted(each)} is not a number", remedy="Compare two numbers, or two texts", argument=name
+            )
     assert isinstance(value, (int, float))
     assert isinstance(reference, (int, float))
     allowed = 1e-9 if tolerance is None else tolerance
@@ -69,7 +71,7 @@ def agrees(value: Cell, reference: Cell, tolerance: float | None) -> bool:
 
 def edition() -> str:
     """Version and digest of the verified catalogue."""
-    return f"cellsection {VERSION} {digest()}"
+    return f"cellsection {__version__} {digest()}"
 
 
 @lru_cache(maxsize=1)

@@ -15,7 +15,7 @@ from difflib import get_close_matches
 from cellsection.errors import InputError
 from cellsection.geometry import SHAPES
 
-__all__ = ["LENGTHS", "ORDER", "UNITS", "Column", "read_header"]
+__all__ = ["LENGTHS", "ORDER", "UNITS", "WORDS", "Column", "quoted", "read_header"]
 
 UNITS = {"mm": 0.001, "cm": 0.01, "m": 1.0, "in": 0.0254, "ft": 0.3048}  # metres; the inch and foot of 1959
 
@@ -30,6 +30,7 @@ ORDER = (  # the columns of a block that a function returns, as far as they are 
 )  # fmt: skip
 KNOWN = frozenset(ORDER)
 HEADER = re.compile(r"\s*(?P<name>[^\[\]]*?)\s*(?:\[\s*(?P<unit>[^\[\]]*?)\s*\])?\s*")
+LONGEST = 40  # letters of a cell or header that a message repeats
 UNIT_BEHIND = re.compile(r"(?:mm|cm|m|in|ft|°|deg)$")
 
 
@@ -43,38 +44,64 @@ class Column:
     factor: float = 1.0
 
 
+def quoted(cell: object) -> str:
+    """A cell as a message shows it: on one line, cut where it is long.
+
+    >>> quoted("200"), quoted(True), quoted(3.0), quoted(None)
+    ('"200"', 'TRUE', '3', 'a blank cell')
+    """
+    if cell is None or (isinstance(cell, str) and not cell.strip()):
+        return "a blank cell"
+    if isinstance(cell, str):
+        return f'"{one_line(cell)}"'
+    if isinstance(cell, bool):
+        return str(cell).upper()
+    return f"{cell:g}" if isinstance(cell, float) else one_line(str(cell))
+
+
+def one_line(text: str) -> str:
+    """A text without its line breaks, cut after some words where it is long."""
+    line = " ".join(text.split())
+    return line if len(line) <= LONGEST else line[: LONGEST - 1] + "…"
+
+
 def read_header(header: Sequence[object], used: Sequence[bool]) -> tuple[tuple[Column, ...], str]:
     """The columns that count, and the block's length unit ("" where none is named).
 
     used : for each column, whether a number stands below its header
-    Raises InputError (row 1) for a missing `shape`, a doubled or misspelt header, an unknown unit, and length columns
-    of which some name a unit and some do not.
+    Raises InputError (row 1) for a missing `shape`, a doubled or misspelt header, numbers below none, an unknown unit,
+    and length columns of which some name a unit and some do not.
     """
     columns: list[Column] = []
     unit, unitless = "", ""
     for index, cell in enumerate(header):
-        if cell is None:
+        if cell is None or (isinstance(cell, str) and not cell.strip()):
+            if used[index]:
+                raise InputError(
+                    f"column {index + 1} holds numbers but has no header",
+                    remedy="Give it a header, or leave it out of the range",
+                    row=1,
+                )
             continue
         if not isinstance(cell, str):
             raise InputError(
-                f"the header of column {index + 1} is {cell!r}, not text",
+                f"the header of column {index + 1} is {quoted(cell)}, not text",
                 remedy="Let the first row of the range be the headers: shape, b, h, x, y",
                 row=1,
             )
-        if not cell.strip():
-            continue
-        match = HEADER.fullmatch(cell)
+        header_text = one_line(cell)
+        match = HEADER.fullmatch(header_text)
         name = " ".join(match["name"].lower().split()) if match else ""
         if match is None or name not in KNOWN:
-            refuse_slip(cell.strip(), used[index])
+            refuse_slip(header_text, used[index])
             continue
         if any(column.name == name for column in columns):
-            raise InputError(f'there are two columns "{name}"', remedy="Keep one of them", row=1, column=cell.strip())
-        factor, named = unit_factor(name, match["unit"], cell.strip(), unit)
+            raise InputError(f'there are two columns "{name}"', remedy="Keep one of them", row=1, column=header_text)
+        factor, named = unit_factor(name, match["unit"], header_text, unit)
         unit = unit or named
         if name in LENGTHS and not named and used[index]:
-            unitless = unitless or cell.strip()
-        columns.append(Column(index, name, cell.strip(), factor))
+            unitless = unitless or header_text
+        columns.append(Column(index, name, header_text, factor))
     if not any(column.name == "shape" for column in columns):
         raise InputError(
             'there is no column "shape"',
@@ -100,9 +127,10 @@ def refuse_slip(header: str, used: bool) -> None:
         long = [name for name in ORDER if len(name) > 3]
         meant = next(iter(get_close_matches(bare, long, 1, 0.8)), None)
     if meant is not None and (used or meant in WORDS):
+        bracket = f' or, with its unit, "{meant} [mm]"' if meant in LENGTHS else ""
         raise InputError(
             f'the header "{header}" is not known but looks like "{meant}"',
-            remedy=f'Write "{meant}" with its unit in square brackets, or give the column another name',
+            remedy=f'Write "{meant}"{bracket}, or give the column another name',
             row=1,
             column=header,
         )
@@ -110,11 +138,9 @@ def refuse_slip(header: str, used: bool) -> None:
 
 def unit_factor(name: str, unit: str | None, header: str, first: str) -> tuple[float, str]:
     """What a column's numbers are multiplied by, and the length unit it names."""
-    if unit is None or name in WORDS or (name in PLAIN and unit in ("-", "", "%")):
-        if unit == "%" and name in PLAIN:
-            return 0.01, ""
-        return 1.0, ""
-    if name == "strength":
+    if name == "slope" and unit == "%":
+        return 0.01, ""
+    if not unit or (name in PLAIN and unit == "-") or name in WORDS or name == "strength":
         return 1.0, ""
     if name in ANGLES:
         if unit.lower() in ("°", "deg", "degrees"):

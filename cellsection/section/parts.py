@@ -12,13 +12,14 @@ from math import isfinite
 
 from cellsection.errors import InputError
 from cellsection.geometry import DATUMS, SHAPES, Region, placed
-from cellsection.section.headers import Column, read_header
+from cellsection.section.headers import Column, quoted, read_header
 from cellsection.section.part import Part
 
-__all__ = ["Block", "PartRow", "read_block", "read_rows", "shape_word"]
+__all__ = ["Block", "PartRow", "number_fault", "read_block", "read_rows", "shape_word"]
 
 SHAPE_WORDS = {word.casefold(): word for word in (*SHAPES, "polygon", "node")}
 YES, NO = ("yes", "true"), ("no", "false")
+LARGEST = 1e50  # beyond it, products of lengths leave the range of floating point numbers
 
 
 @dataclass(frozen=True, slots=True)
@@ -94,14 +95,24 @@ def read_rows(rows: Sequence[Sequence[object]]) -> tuple[tuple[PartRow, ...], st
     """The rows of a block, each with its nodes if it is a polygon, and the length unit."""
     if len(rows) < 2 or not rows[0]:
         raise InputError(
-            "a parts block needs a header row and at least one part", remedy="Let the range begin at the headers"
+            "a parts block needs a header row and at least one part",
+            remedy="Let the range begin at the headers",
+            row=1,
         )
-    used = [any(is_number(row[k]) for row in rows[1:] if k < len(row)) for k in range(len(rows[0]))]
+    width = len(rows[0])
+    for number, row in enumerate(rows[1:], start=2):
+        if any(not is_blank(cell) for cell in row[width:]):
+            raise InputError("the row is longer than the header row", remedy="Shorten it, or add a header", row=number)
+    used = [any(is_number(row[k]) for row in rows[1:] if k < len(row)) for k in range(width)]
     columns, unit = read_header(rows[0], used)
     headers = {column.name: column.header for column in columns}
     found: list[PartRow] = []
     for number, row in enumerate(rows[1:], start=2):
-        cells = {column.name: (column, row[column.index]) for column in columns if not is_blank(row[column.index])}
+        cells = {
+            column.name: (column, row[column.index])
+            for column in columns
+            if column.index < len(row) and not is_blank(row[column.index])
+        }
         if not cells:
             continue
         reader = RowReader(number, cells, headers)
@@ -113,7 +124,7 @@ def read_rows(rows: Sequence[Sequence[object]]) -> tuple[tuple[PartRow, ...], st
         else:
             found.append(reader.part_row(word))
     if not found:
-        raise InputError("the block has headers but no part", remedy="Enter a part in the row below the headers")
+        raise InputError("the block has headers but no part", remedy="Enter a part below the headers", row=2)
     for part_row in found:
         if part_row.shape == "polygon" and len(part_row.nodes) < 3:
             raise InputError(
@@ -135,14 +146,31 @@ def is_number(cell: object) -> bool:
     return isinstance(cell, (int, float)) and not isinstance(cell, bool)
 
 
+def number_fault(cell: object) -> str:
+    """Why a cell is no number to compute with, "" where it is one.
+
+    >>> number_fault("12,5"), number_fault(12.5)
+    ('"12,5" is text', '')
+    """
+    if isinstance(cell, str):
+        return f"{quoted(cell)} is text" if cell.strip() else "a blank cell stands where a number should"
+    if isinstance(cell, bool):
+        return f"{quoted(cell)} is a logical, not a number"
+    if cell is None or not isinstance(cell, (int, float)):
+        return f"{quoted(cell)} is not a number" if cell is not None else "a blank cell stands where a number should"
+    if isinstance(cell, float) and not isfinite(cell):
+        return f"{cell} is not a finite number"
+    return "the number is too large to compute with" if abs(cell) > LARGEST else ""
+
+
 def shape_word(text: str) -> str:
     """A shape by its trade word in any case. Raises InputError that lists the nearest words."""
     word = SHAPE_WORDS.get(" ".join(text.casefold().split()))
     if word is None:
-        near = get_close_matches(text.casefold(), SHAPE_WORDS, 3, 0.5)
-        hint = f"did you mean {' or '.join(SHAPE_WORDS[each] for each in near)}?" if near else ""
-        choice = f"Choose from {', '.join(each for each in SHAPE_WORDS.values() if each != 'node')}"
-        raise InputError(f'"{text}" is not a shape{"; " + hint if hint else ""}', remedy=choice, column="shape")
+        near = get_close_matches(text.casefold(), SHAPE_WORDS, 3, 0.6)
+        choice = [SHAPE_WORDS[each] for each in near] or [each for each in SHAPE_WORDS.values() if each != "node"]
+        remedy = f"{'Use the word that is meant:' if near else 'Choose from'} {', '.join(choice)}"
+        raise InputError(f"{quoted(text)} is not a shape", remedy=remedy, column="shape")
     return word
 
 
@@ -164,7 +192,7 @@ class RowReader:
             raise self.fault("shape", "the row has entries but no shape", "Name its shape, or clear the row")
         cell = self.cells["shape"][1]
         if not isinstance(cell, str):
-            raise self.fault("shape", f"{cell!r} is not a shape", "Enter a shape by its word, such as rectangle")
+            raise self.fault("shape", f"{quoted(cell)} is not a shape", "Enter a shape by its word, such as rectangle")
         try:
             return shape_word(cell)
         except InputError as problem:
@@ -174,24 +202,24 @@ class RowReader:
         """A number in its column, converted to the block's unit; `default` where the cell is blank."""
         if name not in self.cells:
             if default is None:
-                raise self.fault(name, f"{name} is missing", f"Enter {name}")
+                raise self.fault(name, f"{name} is missing", self.entry(name))
             return default
         column, cell = self.cells[name]
-        if isinstance(cell, bool):
-            raise self.fault(name, f"{cell} is a logical, not a number", "Enter a number")
-        if isinstance(cell, str):
-            raise self.fault(name, f'"{cell}" is text', "Retype as a number")
-        if not isinstance(cell, (int, float)):
-            raise self.fault(name, f"{type(cell).__name__} {cell} is not a plain number", "Enter a number")
-        if not isfinite(cell):
-            raise self.fault(name, f"{cell} is not a finite number", "Enter a number")
+        fault = number_fault(cell)
+        if fault:
+            raise self.fault(name, fault, "Retype as a number" if isinstance(cell, str) else "Enter a number")
+        assert isinstance(cell, (int, float))
         return float(cell) * column.factor
+
+    def entry(self, name: str) -> str:
+        """What is to be done about a missing value: where its column is missing too, that comes first."""
+        return f"Enter {name}" if name in self.headers else f"Add a column {name}"
 
     def word(self, name: str) -> str:
         """A text in its column, "" where it is blank."""
         cell = self.cells[name][1] if name in self.cells else ""
         if not isinstance(cell, str):
-            raise self.fault(name, f"{cell!r} is not text", f"Enter {name} in words")
+            raise self.fault(name, f"{quoted(cell)} is not text", f"Enter {name} in words")
         return " ".join(cell.lower().split())
 
     def yes(self, name: str) -> bool:
@@ -202,7 +230,7 @@ class RowReader:
             return True
         if text in NO or text == 0:
             return False
-        raise self.fault(name, f"{cell!r} is neither yes nor no", "Enter yes, or leave the cell blank")
+        raise self.fault(name, f"{quoted(cell)} is neither yes nor no", "Enter yes, or leave the cell blank")
 
     def node(self) -> tuple[float, float]:
         """A corner of a polygon."""
@@ -214,8 +242,7 @@ class RowReader:
     def part_row(self, word: str) -> PartRow:
         """The row of a part."""
         label = self.cells["part"][1] if "part" in self.cells else ""
-        if isinstance(label, float) and label == int(label):
-            label = int(label)
+        name = label.strip() if isinstance(label, str) else quoted(label)
         sign, n = self.number("sign", 1.0), self.number("n", 1.0)
         if sign not in (1.0, -1.0):
             raise self.fault("sign", f"sign {sign:g} is neither 1 nor -1", "Enter 1 for solid, -1 for a cut-out")
@@ -223,12 +250,12 @@ class RowReader:
             raise self.fault("n", f"modular ratio {n:g} is not positive", "Enter E of the part over E of reference")
         stage = self.number("stage") if "stage" in self.cells else None
         if stage is not None and (stage < 1 or stage != int(stage)):
-            raise self.fault("stage", f"stage {stage:g} is not 1, 2, 3 ...", "Enter the stage as a whole number")
+            raise self.fault("stage", f"stage {stage:g} is not a whole number from 1", "Enter 1, 2, 3")
         strength = self.number("strength") if "strength" in self.cells else None
         if strength is not None and strength <= 0:
             raise self.fault("strength", f"strength {strength:g} is not positive", "Enter the yield strength")
         return PartRow(
-            self.row, word, str(label), self.dims(word), *self.place(word), turn=self.number("turn", 0.0),
+            self.row, word, name, self.dims(word), *self.place(word), turn=self.number("turn", 0.0),
             sign=int(sign), n=n, datum=self.datum(word), mirrored=self.mirror(word), strength=strength, stage=stage,
             no_tension=self.yes("no tension"), columns=self.headers,
         )  # fmt: skip
@@ -241,7 +268,7 @@ class RowReader:
             required, optional = SHAPES[word].required, SHAPES[word].optional
         for name in required:
             if name not in self.cells:
-                raise self.fault(name, f"the {word} needs {name}", f"Enter {name}; it takes {' '.join(required)}")
+                raise self.fault(name, f"the {word} needs {name}", f"{self.entry(name)}; it takes {' '.join(required)}")
         others = [name for shape in SHAPES.values() for name in (*shape.required, *shape.optional)]
         for name in self.cells:
             if name in others and name not in (*required, *optional, "x", "y"):
@@ -257,7 +284,7 @@ class RowReader:
         """The datum word, "" for the centroid by default."""
         datum = self.word("datum")
         if datum and datum not in DATUMS:
-            raise self.fault("datum", f'"{datum}" is not a datum', f"Choose from {', '.join(DATUMS)}")
+            raise self.fault("datum", f"{quoted(datum)} is not a datum", f"Choose from {', '.join(DATUMS)}")
         if datum and word in ("polygon", "plate"):
             raise self.fault("datum", f"a {word} is placed by its points", "Clear datum in this row")
         if word == "plate" and self.number("turn", 0.0):
