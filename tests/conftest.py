@@ -6,6 +6,11 @@ import os
 import shutil
 
 import pytest
+from hypothesis import HealthCheck, settings
+
+# No test measures time: a slow or busy machine must not fail a property.
+settings.register_profile("calm", deadline=None, suppress_health_check=[HealthCheck.too_slow])
+settings.load_profile("calm")
 
 PLACES = (
     None,  # the search path

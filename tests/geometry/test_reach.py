@@ -82,7 +82,7 @@ def test_no_material_left_is_refused() -> None:
         reach([PLATE], [PLATE], 90)
 
 
-@settings(max_examples=40, deadline=None)
+@settings(max_examples=40)
 @given(
     st.lists(regions(), min_size=1, max_size=3),
     st.lists(st.tuples(shape_regions(), st.floats(0.0, 1.0), st.floats(0.0, 360.0)), min_size=1, max_size=3),

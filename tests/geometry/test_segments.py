@@ -113,7 +113,7 @@ def quadrature(arc: Arc, x0: float, y0: float) -> Moments:
         return Moments(form(0, 0), form(0, 1), form(1, 0), form(0, 2), form(2, 0), form(1, 1))
 
 
-@settings(max_examples=25, deadline=None)  # the quadrature is slow
+@settings(max_examples=25)  # the quadrature is slow
 @given(coordinate, coordinate, coordinate, coordinate, st.floats(-1.0, 1.0).filter(lambda t: abs(t) > 1e-6))
 def test_the_integrals_of_an_arc_agree_with_quadrature(x1: float, y1: float, x2: float, y2: float, T: float) -> None:
     arc = Arc.circular(x1, y1, x2, y2, T)

@@ -15,7 +15,7 @@ from tests.geometry.random_shapes import dimensions, shape_regions
 
 
 @pytest.mark.parametrize("word", SHAPES)
-@settings(max_examples=20, deadline=None)
+@settings(max_examples=20)
 @given(data=st.data())
 def test_every_shape_agrees_with_a_fine_polygon_drawn_without_the_library(word: str, data: st.DataObject) -> None:
     dims = data.draw(dimensions(word))

@@ -17,7 +17,7 @@ from tests.section.built import girder, part, sections, turned
 SIDES = ("top", "bottom", "left", "right")
 
 
-@settings(max_examples=60, deadline=None)
+@settings(max_examples=60)
 @given(sections, st.floats(-360.0, 360.0))
 def test_the_fibres_are_those_of_a_fine_drawing_at_any_angle(parts: list[Part], turn: float) -> None:
     boxes = [each.region.bounds() for each in parts]
