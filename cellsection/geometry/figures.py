@@ -5,7 +5,7 @@ from __future__ import annotations
 from math import cos, radians, sin, sqrt, tan
 
 from cellsection.errors import InputError
-from cellsection.geometry.limits import below, positive
+from cellsection.geometry.limits import below
 from cellsection.geometry.outline import arc_chain, chain, ellipse_chain
 from cellsection.geometry.region import Region
 from cellsection.geometry.segments import Arc, Line
@@ -133,7 +133,6 @@ def plate(x: float, y: float, x2: float, y2: float, t: float) -> Region:
     >>> plate(x=0, y=0, x2=30, y2=40, t=2).moments().A
     100.0
     """
-    positive("t", t)
     return Region.strip(x, y, x2, y2, t)
 
 

@@ -34,7 +34,8 @@ def positive(column: str, value: float) -> None:
     """Refuse a size that is zero, negative, no number, or beyond all lengths."""
     place(column, value)
     if not value > 0.0:
-        raise InputError(f"{column} = {value:g} is not positive", remedy="Enter a length greater than 0", column=column)
+        kind = "an angle" if column == "angle" else "a length"
+        raise InputError(f"{column} = {value:g} is not positive", remedy=f"Enter {kind} greater than 0", column=column)
     if value < SMALLEST:
         raise InputError(f"{column} = {value:g} is too small", remedy="Enter it in a smaller unit", column=column)
 

@@ -8,7 +8,7 @@ from math import hypot
 from typing import TYPE_CHECKING
 
 from cellsection.errors import InputError
-from cellsection.geometry.limits import SMALLEST, place
+from cellsection.geometry.limits import SMALLEST, place, positive
 from cellsection.geometry.moments import Centroidal, Moments, cosine_sine, summed
 from cellsection.geometry.outline import Loop, area, backwards, box, chain, closed, drawn, drawn_closely
 from cellsection.geometry.simple import refuse_crossing
@@ -89,7 +89,11 @@ class Region:
         enclosed = area(local)
         reach = max(hypot(side.x1, side.y1) for side in local)
         if reach < SMALLEST or abs(enclosed) <= FLAT * reach * reach:
-            raise InputError("the corners lie on one line", remedy="Enter corners that enclose an area", column="x")
+            raise InputError(
+                "the outline encloses no area: its corners lie on one line, or it crosses itself",
+                remedy="List corners that enclose an area, in their order along the outline",
+                column="x",
+            )
         refuse_crossing(local, abs(enclosed), [number for number, _x, _y in kept])
         return cls((local if enclosed > 0.0 else backwards(local),), x, y)
 
@@ -100,6 +104,9 @@ class Region:
         >>> Region.strip(0, 0, 30, 40, t=2).centroidal()[:3]
         (100.0, 15.0, 20.0)
         """
+        for column, value in (("x", x), ("y", y), ("x2", x2), ("y2", y2)):
+            place(column, value)
+        positive("t", t)
         ax, ay = (x2 - x) / 2.0, (y2 - y) / 2.0
         half = hypot(ax, ay)
         if not half > 0.0:

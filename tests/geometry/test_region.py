@@ -190,6 +190,11 @@ def test_an_open_outline_and_one_of_the_wrong_sense_are_refused() -> None:
     assert Region.from_loops(square).moments().A == 16.0
 
 
+def test_a_plate_of_no_thickness_is_refused() -> None:
+    with pytest.raises(InputError, match="t = -10 is not positive"):
+        Region.strip(0, 0, 100, 0, t=-10)
+
+
 def test_a_plate_of_no_length_is_refused() -> None:
     with pytest.raises(InputError, match="ends where it starts"):
         Region.strip(1, 2, 1, 2, t=10)
