@@ -190,7 +190,7 @@ BAD_SHAPES = {
     "a wall fills its tube": part(
         2, "t", "t = 50 is not below 50", "Use a circle, or enter a thinner wall", shape="tube", d=100, t=50
     ),
-    "a sector has no angle": part(2, "angle", "angle = 0 is not positive", "Enter", shape="sector", r=100, angle=0),
+    "a sector has no angle": part(2, "angle", "angle = 0 is not positive", "an angle", shape="sector", r=9, angle=0),
     "a sector turns more than once": part(
         2, "angle", "angle = 400 is not below 360", "Use a circle", shape="sector", r=100, angle=400
     ),
@@ -221,7 +221,7 @@ BAD_POLYGONS = {
         (0, 0), (40, 0), (10, 30), (30, 30),
     ),
     "sides of a polygon cross so that its area is nought": corners(
-        2, "x", "", "corners", (0, 0), (10, 10), (10, 0), (0, 10)
+        2, "x", "it crosses itself", "in their order", (0, 0), (10, 10), (10, 0), (0, 10)
     ),
     "a polygon only has repeated corners": corners(
         2, "x", "the outline has 2 different corners", "Enter three corners", (0, 0), (10, 0), (10, 0), (0, 0)
