@@ -149,6 +149,13 @@ def test_names_stand_for_cells_constants_and_formulas(tmp_path: Path) -> None:
     assert "loop" in found.cells["B4"].reason
 
 
+def test_a_name_of_one_cell_is_that_cell_inside_an_array_formula(tmp_path: Path) -> None:
+    cells = {**COLUMN, "B1": 2.0, "C1": "{=INDEX(A1:A3,which,0)}C1:D1", "E1": "{=A1:A3*which}E1:E3"}
+    found = results(tmp_path, cells, {"which": "S!$B$1"})
+    assert [found["C1"], found["D1"]] == [2.0, 2.0]
+    assert [found["E1"], found["E3"]] == [2.0, 6.0]
+
+
 def test_let_and_lambda_bind_their_own_names(tmp_path: Path) -> None:
     found = results(
         tmp_path,

@@ -20,6 +20,7 @@ NAMESPACES = (
     ' xmlns:calcext="urn:org:documentfoundation:names:experimental:calc:xmlns:calcext:1.0"'
 )
 BLANK = "<table:table-cell/>"
+STRING = 'office:value-type="string"'
 
 
 def number(value: float, extra: str = "") -> str:
@@ -74,8 +75,8 @@ def test_typed_values_are_read(tmp_path: Path) -> None:
         '<table:table-cell office:value-type="date" office:date-value="2024-03-01"/>',
         '<table:table-cell office:value-type="time" office:time-value="PT12H00M00S"/>',
         '<table:table-cell office:value-type="boolean" office:boolean-value="true"/>',
-        '<table:table-cell office:value-type="string"><text:p>a<text:s text:c="2"/>b</text:p><text:p>c</text:p></table:table-cell>',
-        '<table:table-cell office:value-type="string" calcext:value-type="error"><text:p>#DIV/0!</text:p></table:table-cell>',
+        f'<table:table-cell {STRING}><text:p>a<text:s text:c="2"/>b</text:p><text:p>c</text:p></table:table-cell>',
+        f'<table:table-cell {STRING} calcext:value-type="error"><text:p>#DIV/0!</text:p></table:table-cell>',
     )
     values = read_book(book(tmp_path, cells), Limits()).sheets[0].values
     assert [values[1, k] for k in range(1, 7)] == [0.25, 45352.0, 0.5, True, "a  b\nc", ErrorValue("#DIV/0!")]

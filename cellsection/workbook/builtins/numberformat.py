@@ -144,8 +144,10 @@ def digit_section(pieces: list[re.Match[str]], number: float) -> str:
         return ("-" if number < 0 else "") + "".join(literal(m) for m in pieces)
     percent = skeleton.count("%")
     body = skeleton.replace("%", "")
+    last = max(body.rfind(c) for c in "0#?")
+    scaling = body[last:].count(",")  # commas behind the last digit divide by a thousand each
+    body = body[: last + 1] + body[last + 1 :].replace(",", "")
     whole, _, decimals = body.partition(".")
-    scaling = len(whole) - len(whole.rstrip(","))
     grouped = "," in whole.rstrip(",")
     whole, decimals = whole.replace(",", ""), decimals.replace(",", "")
     scaled = number * 100.0**percent / 1000.0**scaling
