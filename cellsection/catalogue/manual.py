@@ -1,7 +1,7 @@
 """The reference pages, written from the catalogue: `python -m cellsection.catalogue.manual` in the checkout.
 
-docs/functions.md is written whole. In docs/notation.md only what stands between the marks is, from the shapes, units and
-datum words that the parts block knows; the rest of that page is written by hand.
+docs/functions.md is written whole. In docs/notation.md only what stands between the marks is, from the shapes, units
+and datum words that the parts block knows; the rest of that page is written by hand.
 """
 
 from __future__ import annotations
