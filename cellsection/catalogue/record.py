@@ -104,6 +104,10 @@ class CellFunction:
             return "no source is given"
         if not self.example.formula.startswith("=") or self.name not in self.example.formula:
             return "the example does not call the function"
+        if not self.example.why:
+            return "the example has no hand calculation"
+        if not (self.returns.layout and self.returns.help):
+            return "what it returns is not said"
         return ""
 
     @property

@@ -120,7 +120,7 @@ RESULTS = (
         Example(
             "=INDEX(CS_LEDGER(A1:E3),4,11)",
             {"A1": BEAM},
-            1800 * 12**2 + 1200 * 18**2,
+            648000.0,
             f"{TEE_WHY}; sum of A·dy² = 1800·12² + 1200·18² = 648 000 mm⁴",
         ),
     ),
