@@ -8,7 +8,7 @@ looks like a slip for a known one: a misspelt dimension must not be lost.
 from __future__ import annotations
 
 import re
-from collections.abc import Sequence
+from collections.abc import Collection, Sequence
 from dataclasses import dataclass
 from difflib import get_close_matches
 
@@ -32,6 +32,15 @@ KNOWN = frozenset(ORDER)
 HEADER = re.compile(r"\s*(?P<name>[^\[\]]*?)\s*(?:\[\s*(?P<unit>[^\[\]]*?)\s*\])?\s*")
 LONGEST = 40  # letters of a cell or header that a message repeats
 UNIT_BEHIND = re.compile(r"(?:mm|cm|m|in|ft|°|deg)$")
+NUMBERED = re.compile(r"([a-z]+)[0-9]+")
+# Other names of columns that may be left out, so that the part would be taken without them and nobody would notice.
+# (A needed dimension under another name is missed in its row.) They only count where the column itself is missing.
+OTHER_NAMES = {
+    "radius": "r", "rootradius": "r", "filletradius": "r", "cornerradius": "r", "toeradius": "r2", "lip": "c",
+    "xc": "x", "xoffset": "x", "offsetx": "x", "yc": "y", "yoffset": "y", "offsety": "y", "rotation": "turn",
+    "rotate": "turn", "turned": "turn", "cutout": "sign", "hole": "sign", "void": "sign", "modularratio": "n",
+    "mirror": "mirrored", "reference": "datum", "origin": "datum", "fy": "strength",
+}  # fmt: skip
 
 
 @dataclass(frozen=True, slots=True)
@@ -73,6 +82,7 @@ def read_header(header: Sequence[object], used: Sequence[bool]) -> tuple[tuple[C
     and length columns of which some name a unit and some do not.
     """
     columns: list[Column] = []
+    unknown: list[tuple[str, bool]] = []
     unit, unitless = "", ""
     for index, cell in enumerate(header):
         if cell is None or (isinstance(cell, str) and not cell.strip()):
@@ -93,8 +103,15 @@ def read_header(header: Sequence[object], used: Sequence[bool]) -> tuple[tuple[C
         match = HEADER.fullmatch(header_text)
         name = " ".join(match["name"].lower().split()) if match else ""
         if match is None or name not in KNOWN:
-            refuse_slip(header_text, used[index])
+            unknown.append((header_text, used[index]))
             continue
+        if match["name"] == "A" and used[index]:
+            raise InputError(
+                "A may be an area, or the apex offset a",
+                remedy='Write "a" for the apex offset; name a column of areas in another way, such as "area"',
+                row=1,
+                column=header_text,
+            )
         if any(column.name == name for column in columns):
             raise InputError(f'there are two columns "{name}"', remedy="Keep one of them", row=1, column=header_text)
         factor, named = unit_factor(name, match["unit"], header_text, unit)
@@ -102,6 +119,8 @@ def read_header(header: Sequence[object], used: Sequence[bool]) -> tuple[tuple[C
         if name in LENGTHS and not named and used[index]:
             unitless = unitless or header_text
         columns.append(Column(index, name, header_text, factor))
+    for header_text, holds_numbers in unknown:
+        refuse_slip(header_text, holds_numbers, {column.name for column in columns})
     if not any(column.name == "shape" for column in columns):
         raise InputError(
             'there is no column "shape"',
@@ -118,11 +137,16 @@ def read_header(header: Sequence[object], used: Sequence[bool]) -> tuple[tuple[C
     return tuple(columns), unit
 
 
-def refuse_slip(header: str, used: bool) -> None:
-    """An unknown header with numbers below it that reads like a known one."""
-    bare = re.sub(r"[^a-z0-9°]", "", header.lower())
+def refuse_slip(header: str, used: bool, present: Collection[str]) -> None:
+    """An unknown header with numbers below it that reads like a known one, or like another name of a missing one."""
+    bare = re.sub(r"[^a-z0-9°]", "", re.sub(r"\[.*", "", header.lower()) or header.lower())
     candidates = [bare, UNIT_BEHIND.sub("", bare)]
     meant = next((name for name in ORDER for each in candidates if each == name.replace(" ", "")), None)
+    if meant is None:
+        numbered = (NUMBERED.fullmatch(each) for each in candidates)
+        others = [*(OTHER_NAMES.get(each) for each in candidates), *(each[1] for each in numbered if each)]
+        # A0 and A1 are areas.
+        meant = next((each for each in others if each in KNOWN and each != "a" and each not in present), None)
     if meant is None:
         long = [name for name in ORDER if len(name) > 3]
         meant = next(iter(get_close_matches(bare, long, 1, 0.8)), None)

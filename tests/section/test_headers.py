@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import pytest
 
+from cellsection.errors import InputError
 from cellsection.section.headers import DIMENSIONS, KNOWN, ORDER, UNITS, read_header
 from cellsection.section.parts import read_block, read_rows
 
@@ -57,7 +58,7 @@ def test_a_slope_may_be_in_per_cent() -> None:
 
 
 @pytest.mark.parametrize(
-    "header", ["remarks", "Mark", "drawing", "A0", "mass [kg/m]", "(see sheet 2)", "No.", "x0", "E"]
+    "header", ["remarks", "Mark", "drawing", "A0", "mass [kg/m]", "(see sheet 2)", "No.", "E", "area", "Ay", "b1", "h0"]
 )
 def test_an_unknown_header_does_not_count(header: str) -> None:
     assert areas(["shape", "b", "h", header], ["rectangle", 200, 20, 12345]) == [4000.0]
@@ -66,6 +67,38 @@ def test_an_unknown_header_does_not_count(header: str) -> None:
 @pytest.mark.parametrize("header", ["b", "b [mm]"])
 def test_a_misspelt_dimension_without_numbers_below_it_does_not_count(header: str) -> None:
     assert areas(["shape", header, header.replace("b", "h"), "b (mm)"], ["rectangle", 200, 20, "note"]) == [4000.0]
+
+
+@pytest.mark.parametrize(
+    ("header", "meant"),
+    [
+        ("r1", "r"),  # the European tables' letter of the root radius
+        ("R1 [mm]", "r"),
+        ("radius", "r"),
+        ("toe radius", "r2"),
+        ("x0", "x"),
+        ("y1", "y"),
+        ("yc mm", "y"),
+        ("rotation", "turn"),
+        ("hole", "sign"),
+        ("modular ratio", "n"),
+    ],
+)
+def test_another_name_of_a_column_that_would_be_left_out_unnoticed_is_refused(header: str, meant: str) -> None:
+    with pytest.raises(InputError, match=f'looks like "{meant}"') as caught:
+        read_block([["shape", "b", "h", header], ["rectangle", 200, 20, 10]])
+    assert (caught.value.row, caught.value.column) == (1, header)
+
+
+def test_another_name_beside_the_column_itself_does_not_count() -> None:
+    assert areas(["shape", "d", "y", "y0", "yc"], ["circle", 2, 5, 7, 9]) == [pytest.approx(3.141592653589793)]
+
+
+@pytest.mark.parametrize("shape", ["triangle", "rectangle"])
+def test_a_column_of_areas_is_not_taken_for_the_apex_offset(shape: str) -> None:
+    with pytest.raises(InputError, match="A may be an area, or the apex offset a") as caught:
+        read_block([["shape", "b", "h", "A"], [shape, 60, 30, 900]])
+    assert (caught.value.row, caught.value.column) == (1, "A")
 
 
 def test_blank_headers_and_columns_do_not_count() -> None:
