@@ -149,8 +149,10 @@ def as_cells(result: Any) -> Cell | Table:
 
 
 def as_cell(value: Any) -> Cell:
-    """One cell of a result."""
-    if value is None or isinstance(value, (bool, str)):
+    """One cell of a result. A blank is an empty text, since a blank out of a function shows as 0 in a cell."""
+    if value is None:
+        return ""
+    if isinstance(value, (bool, str)):
         return value
     number = float(value)
     if not isfinite(number):

@@ -188,10 +188,18 @@ def _result(name: str, given: Sequence[Any], columns: Sequence[str] = ()) -> Any
     from cellsection.catalogue import CATALOGUE
 
     function = CATALOGUE[name]
-    kinds = [function.arguments[min(k, len(function.arguments) - 1)].kind for k in range(len(given))]
-    raw = [cells(value, headed=kind.startswith("parts block")) for value, kind in zip(given, kinds, strict=True)]
+    raw = []
+    for k, value in enumerate(given):
+        argument = function.arguments[min(k, len(function.arguments) - 1)]  # the last one may repeat
+        try:
+            raw.append(cells(value, headed=argument.kind.startswith("parts block")))
+        except InputError as problem:
+            raise InputError(problem.fault, remedy=problem.remedy, argument=argument.name, row=problem.row) from None
     result = function.call(*raw)
-    return in_kind(result, common_kind(given), columns) if isinstance(result, tuple) else result
+    if not isinstance(result, tuple):
+        return result
+    blanks = [[None if cell == "" else cell for cell in row] for row in result]
+    return in_kind(blanks, common_kind(given), columns)
 
 
 def _chosen(name: str, parts: Table, which: Symbols | str | None) -> Any:

@@ -164,7 +164,7 @@ def test_units_follow_the_headers() -> None:
 def test_shapes_of_parts_may_come_as_a_row_or_a_column(column: Any) -> None:
     column = column if isinstance(column[0], tuple) else tuple((each,) for each in column)
     made = call("CS_PARTS", column, ((30.0, None), (40.0, 4.0)), ((0.0,), (9.0,)))
-    assert made == (("shape", "d", "t", "x", "y"), ("circle", 30.0, None, 0.0, 0.0), ("tube", 40.0, 4.0, 0.0, 9.0))
+    assert made == (("shape", "d", "t", "x", "y"), ("circle", 30.0, "", 0.0, 0.0), ("tube", 40.0, 4.0, 0.0, 9.0))
 
 
 PARTS_FAULTS = {
