@@ -21,11 +21,11 @@ Bounds: TypeAlias = tuple[int, int, int, int]  # top, left, bottom, right, ends 
 class Limits:
     """How much a book may ask for before it is refused, so that a hostile file costs seconds and not the machine."""
 
-    unzipped_bytes: int = 1_000_000_000
-    ratio: int = 2_000
+    unzipped_bytes: int = 1_000_000_000  # of all parts together
+    ratio: int = 400  # unpacked to packed size of a part over 10 MB; real sheets reach 50
     parts: int = 20_000
-    cells: int = 20_000_000
-    array_cells: int = 5_000_000
+    cells: int = 4_000_000  # values and formulas; one takes about 250 bytes of memory
+    array_cells: int = 2_000_000  # of one array, and of all array formulas of a sheet
     formula_length: int = 100_000
     nesting: int = 500
     seconds: float = 300.0
@@ -59,6 +59,7 @@ class Sheet:
     bottom: int = 0
     right: int = 0
     part: str = ""
+    hidden: bool = False
     hidden_rows: frozenset[int] = frozenset()
 
 

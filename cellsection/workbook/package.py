@@ -1,8 +1,8 @@
-"""The zip package of a saved workbook: checked before anything in it is unpacked, its parts kept as bytes.
+"""The zip package of a saved workbook: checked before anything in it is unpacked, its parts read on demand.
 
 book.xlsx
 ├── [Content_Types].xml, _rels/.rels        what the parts are, where the workbook part is
-└── xl/workbook.xml, xl/worksheets/*.xml …  read on demand
+└── xl/workbook.xml, xl/worksheets/*.xml …  read in pieces, none of them written anywhere
 """
 
 from __future__ import annotations
@@ -10,114 +10,174 @@ from __future__ import annotations
 import posixpath
 import zipfile
 import zlib
+from collections.abc import Iterator
 from pathlib import Path
-from typing import IO
-
-from lxml import etree
+from typing import NamedTuple
+from urllib.parse import unquote
 
 from cellsection.errors import WorkbookError
 from cellsection.workbook.book import Limits
+from cellsection.workbook.markup import Element, tree
 
-__all__ = ["Package", "parsed"]
+__all__ = ["Package", "Relationship", "canonical"]
 
 OLE2 = b"\xd0\xcf\x11\xe0\xa1\xb1\x1a\xe1"
+PIECE = 1 << 17
+METHODS = (zipfile.ZIP_STORED, zipfile.ZIP_DEFLATED)  # the only two that the standards allow
+WORTH_A_RATIO = 10_000_000  # bytes; a smaller part may be as dense as it likes
+DAMAGE = (zipfile.BadZipFile, zlib.error, EOFError, OSError, NotImplementedError, RuntimeError, ValueError)
+AGAIN = "Save the workbook again"
+
+
+class Relationship(NamedTuple):
+    """What a part says about another: the kind, its name in the package or its address, whether it is outside."""
+
+    kind: str
+    target: str
+    external: bool
 
 
 class Package:
-    """The parts of a workbook file by name. Raises WorkbookError for what cannot be, or should not be, unpacked."""
+    """The parts of a workbook file by name. Raises WorkbookError for what cannot be, or should not be, unpacked.
+
+    Part names are compared as the standard asks, without regard to case; a backslash in one counts as a slash.
+    """
 
     def __init__(self, path: str | Path, limits: Limits) -> None:
-        self.path = Path(path)
+        self.path, self.limits = Path(path), limits
         self.name = self.path.name
+        if self.path.exists() and not self.path.is_file():
+            raise WorkbookError(f"{self.name} is no file", remedy="Name a saved workbook")
         try:
-            file: IO[bytes] = self.path.open("rb")
+            self._file = self.path.open("rb")
         except OSError as problem:
             raise WorkbookError(
                 f"{self.name} cannot be opened ({problem.strerror or problem})", remedy="Check the path and its rights"
-            ) from problem
-        with file:
-            head = file.read(8)
+            ) from None
+        try:
+            self._open()
+        except BaseException:
+            self._file.close()
+            raise
+
+    def _open(self) -> None:
+        head = self._file.read(8)
         if head == OLE2:
             raise WorkbookError(
-                f"{self.name} is in the old binary format or encrypted",
-                remedy="Save it as .xlsx without a password",
+                f"{self.name} is in the old binary format or encrypted", remedy="Save it as .xlsx without a password"
             )
         try:
-            self._zip = zipfile.ZipFile(self.path)
-        except (zipfile.BadZipFile, OSError, ValueError, NotImplementedError) as problem:
+            self._zip = zipfile.ZipFile(self._file)
+        except DAMAGE as problem:
             raise WorkbookError(
                 f"{self.name} is not a readable workbook file ({problem})", remedy="Save it again as .xlsx or .ods"
-            ) from problem
-        self._check(limits)
-
-    def _check(self, limits: Limits) -> None:
+            ) from None
+        self._parts: dict[str, zipfile.ZipInfo] = {}
         infos = self._zip.infolist()
-        if len(infos) > limits.parts:
-            raise self.refused(f"it has {len(infos)} parts, more than {limits.parts}")
-        total = 0
-        seen: set[str] = set()
+        if len(infos) > self.limits.parts:
+            raise self.refused(f"it has {len(infos):,} parts, more than {self.limits.parts:,}")
         for info in infos:
-            name = info.filename
-            if info.flag_bits & 1:
-                raise WorkbookError(f"{self.name} is encrypted", remedy="Save it without a password")
-            if name in seen:
-                raise self.refused(f"its part {name} is there twice")
-            seen.add(name)
-            total += info.file_size
-            if info.file_size > 10_000_000 and info.file_size > limits.ratio * max(info.compress_size, 1):
-                raise self.refused(f"its part {name} unpacks to more than {limits.ratio} times its size")
-        if total > limits.unzipped_bytes:
-            raise self.refused(f"it unpacks to {total:,} bytes, more than {limits.unzipped_bytes:,}")
-        self.names = seen
+            self._check(info)
+        total = sum(info.file_size for info in infos)
+        if total > self.limits.unzipped_bytes:
+            raise self.refused(f"it unpacks to {total:,} bytes, more than {self.limits.unzipped_bytes:,}")
+
+    def _check(self, info: zipfile.ZipInfo) -> None:
+        """Enter a part, or refuse the file for it."""
+        key = canonical(info.filename)
+        if info.flag_bits & 1:
+            raise WorkbookError(f"{self.name} is encrypted", remedy="Save it without a password")
+        if key in self._parts:
+            raise WorkbookError(f"{self.name} is refused: its part {info.filename} is there twice", remedy=AGAIN)
+        if info.compress_type not in METHODS:
+            raise WorkbookError(
+                f"{self.name} is refused: its part {info.filename} is packed by a method that no workbook uses",
+                remedy=AGAIN,
+            )
+        self._parts[key] = info
 
     def refused(self, why: str) -> WorkbookError:
-        """A refusal of the whole file."""
+        """A refusal of the whole file, as it asks for more than a limit allows."""
         return WorkbookError(
             f"{self.name} is refused: {why}", remedy="Save it again, or raise the limit if you trust it"
         )
 
     def __contains__(self, name: str) -> bool:
-        return name in self.names
+        return canonical(name) in self._parts
+
+    @property
+    def names(self) -> list[str]:
+        """The names of all parts as the file spells them, in its order."""
+        return [info.filename for info in self._parts.values()]
+
+    def where(self, name: str) -> str:
+        """How a message names a part."""
+        return f"{self.name}: its part {name}"
+
+    def pieces(self, name: str) -> Iterator[bytes]:
+        """The bytes of a part as they are unpacked. Raises WorkbookError where it is missing, damaged or too dense."""
+        info = self._parts.get(canonical(name))
+        if info is None:
+            raise WorkbookError(f"{self.name} lacks its part {name}", remedy=AGAIN)
+        if info.file_size > WORTH_A_RATIO and info.file_size > self.limits.ratio * max(info.compress_size, 1):
+            raise self.refused(f"its part {name} unpacks to more than {self.limits.ratio} times its size")
+        read = 0
+        try:
+            with self._zip.open(info) as part:  # never gives more than the size stated, whatever is packed in it
+                while piece := part.read(PIECE):
+                    read += len(piece)
+                    yield piece
+        except DAMAGE as problem:
+            raise WorkbookError(f"{self.where(name)} is damaged ({problem})", remedy=AGAIN) from None
+        if read != info.file_size:
+            raise WorkbookError(f"{self.where(name)} is damaged (it is shorter than stated)", remedy=AGAIN)
 
     def part(self, name: str) -> bytes:
-        """The bytes of a part. Raises WorkbookError where it is missing or damaged."""
-        try:
-            data = self._zip.read(name)
-            if b"<!DOCTYPE" in data[:2048].replace(b"\0", b""):  # utf-16 too, whose every other byte is 0
-                raise self.refused(f"its part {name} declares a document type, which no workbook needs")
-            return data
-        except KeyError:
-            raise WorkbookError(f"{self.name} lacks its part {name}", remedy="Save the workbook again") from None
-        except (zipfile.BadZipFile, zlib.error, EOFError, OSError, NotImplementedError, RuntimeError) as problem:
-            raise WorkbookError(
-                f"{self.name}: its part {name} is damaged ({problem})", remedy="Save the workbook again"
-            ) from problem
+        """The bytes of a part."""
+        return b"".join(self.pieces(name))
 
-    def relationships(self, part: str) -> dict[str, tuple[str, str, bool]]:
-        """Relationships of a part: id -> (kind, target part or address, external)."""
+    def tree(self, name: str) -> Element:
+        """A small part as a tree of elements."""
+        return tree(self.pieces(name), self.where(name))
+
+    def relationships(self, part: str) -> dict[str, Relationship]:
+        """Relationships of a part ("" for the package itself) by their id."""
         folder, base = posixpath.split(part)
         name = posixpath.join(folder, "_rels", base + ".rels")
-        if name not in self:
-            return {}
-        found = {}
-        for element in parsed(self.part(name), self.name, name):
-            target, external = element.get("Target", ""), element.get("TargetMode") == "External"
-            if not external:
-                target = posixpath.normpath(posixpath.join("/", folder, target)).lstrip("/")
-            found[element.get("Id", "")] = (element.get("Type", "").rsplit("/", 1)[-1], target, external)
+        found: dict[str, Relationship] = {}
+        if name in self:
+            for element in self.tree(name).along("Relationship"):
+                target, external = element.get("Target"), element.get("TargetMode") == "External"
+                if not external:  # a path that climbs out of the package names no part, and is never opened as a file
+                    target = posixpath.normpath(posixpath.join("/", folder, target)).lstrip("/")
+                    target = target if target in self else unquote(target)
+                found[element.get("Id")] = Relationship(element.get("Type").rsplit("/", 1)[-1], target, external)
         return found
+
+    def copy_into(self, target: zipfile.ZipFile, changed: dict[str, bytes]) -> None:
+        """Copy all parts into another package in their order, with the contents of some replaced."""
+        for key, info in self._parts.items():
+            fresh = zipfile.ZipInfo(info.filename, info.date_time)
+            fresh.compress_type, fresh.external_attr, fresh.comment = (
+                info.compress_type, info.external_attr, info.comment,
+            )  # fmt: skip
+            fresh.create_system, fresh.file_size = info.create_system, len(changed.get(key, b"")) or info.file_size
+            with target.open(fresh, "w") as part:
+                for piece in [changed[key]] if key in changed else self.pieces(info.filename):
+                    part.write(piece)
 
     def close(self) -> None:
         """Let go of the file."""
         self._zip.close()
+        self._file.close()
+
+    def __enter__(self) -> Package:
+        return self
+
+    def __exit__(self, *_: object) -> None:
+        self.close()
 
 
-def parsed(data: bytes, book: str, part: str) -> etree._Element:
-    """The root element of a small XML part; no entities, no network."""
-    parser = etree.XMLParser(resolve_entities=False, no_network=True, load_dtd=False, huge_tree=False)
-    try:
-        return etree.fromstring(data, parser)
-    except (etree.XMLSyntaxError, ValueError) as problem:
-        raise WorkbookError(
-            f"{book}: its part {part} is not well-formed XML ({problem})", remedy="Save the workbook again"
-        ) from problem
+def canonical(name: str) -> str:
+    """A part's name as the standard compares it."""
+    return name.replace("\\", "/").lstrip("/").casefold()

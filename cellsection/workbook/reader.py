@@ -12,14 +12,11 @@ __all__ = ["read_book"]
 
 def read_book(path: str | Path, limits: Limits) -> Book:
     """Read a saved workbook, .xlsx, .xlsm or .ods, told apart by content. Raises WorkbookError."""
-    package = Package(path, limits)
-    try:
+    with Package(path, limits) as package:
         if "content.xml" in package:
             from cellsection.workbook.ods import read_ods
 
-            return read_ods(package, limits)
+            return read_ods(package)
         from cellsection.workbook.xlsx import read_xlsx
 
-        return read_xlsx(package, limits)
-    finally:
-        package.close()
+        return read_xlsx(package)
