@@ -19,7 +19,7 @@ AGREE = 1e-9
 
 
 def refuse_crossing(sides: Sequence[Line], enclosed: float, numbers: Sequence[int]) -> None:
-    """Raise InputError where the outline crosses itself.
+    """Raise InputError where the outline crosses itself, or runs to a corner and straight back.
 
     sides : of a closed polygon
     enclosed : the area by its boundary integral, positive
@@ -28,6 +28,14 @@ def refuse_crossing(sides: Sequence[Line], enclosed: float, numbers: Sequence[in
     Sides that meet are no fault by themselves (a cut that leads to a hole is run along twice). The outline is sound
     where its boundary integral equals the area it covers by the even-odd rule, which shapely gives.
     """
+    for i, side in enumerate(sides):
+        # A spike has no area, yet an extreme fibre would be looked for at its tip.
+        if _folded(sides[i - 1], side):
+            raise InputError(
+                f"the outline runs to corner {numbers[i]} and straight back",
+                remedy="Leave that corner out, or correct its place",
+                column="x",
+            )
     if len(sides) <= FEW_SIDES and next(_meeting(sides), None) is None:
         return
     import shapely
@@ -45,7 +53,7 @@ def refuse_crossing(sides: Sequence[Line], enclosed: float, numbers: Sequence[in
 
 
 def _meeting(sides: Sequence[Line]) -> Iterator[tuple[int, int]]:
-    """Pairs of sides that cross, touch, or (neighbours) fold back over each other."""
+    """Pairs of sides, other than neighbours, that cross or touch."""
     count = len(sides)
     for i, side in enumerate(sides):
         left, right, low, high = _box(side)
@@ -58,11 +66,8 @@ def _meeting(sides: Sequence[Line]) -> Iterator[tuple[int, int]]:
                 or min(other.y1, other.y2) > high
             ):
                 continue
-            if j == i + 1 or (i == 0 and j == count - 1):
-                before, after = (side, other) if j == i + 1 else (other, side)
-                if _folded(before, after):
-                    yield i, j
-            elif not _apart(side, other):
+            neighbours = j == i + 1 or (i == 0 and j == count - 1)
+            if not neighbours and not _apart(side, other):
                 yield i, j
 
 
@@ -94,5 +99,6 @@ def _cross(one: Line, other: Line) -> bool:
 
 
 def _folded(before: Line, after: Line) -> bool:
+    """Whether the outline turns back where the two meet."""
     ax, ay, bx, by = before.x2 - before.x1, before.y2 - before.y1, after.x2 - after.x1, after.y2 - after.y1
     return ax * bx + ay * by < 0.0 and _side_of(before, after.x2, after.y2) == 0.0

@@ -171,6 +171,16 @@ def test_corners_that_bound_no_area_once_are_refused(points: list[tuple[float, f
         Region.from_points(points)
 
 
+@pytest.mark.parametrize("first", range(7))
+@pytest.mark.parametrize("tip", [100.0, 5.0])
+def test_an_outline_that_runs_to_a_corner_and_straight_back_is_refused(first: int, tip: float) -> None:
+    # Outwards it would feign an extreme fibre, inwards it would be a slit without width.
+    points = [(0.0, 0.0), (10.0, 0.0), (10.0, 10.0), (5.0, 10.0), (5.0, tip), (5.0, 10.0), (0.0, 10.0)]
+    corner = (4 - first) % 7 + 1
+    with pytest.raises(InputError, match=f"the outline runs to corner {corner} and straight back"):
+        Region.from_points(points[first:] + points[:first])
+
+
 def test_two_triangles_that_touch_at_a_corner_are_one_region() -> None:
     assert Region.from_points([(0, 0), (2, 0), (1, 1), (2, 2), (0, 2), (1, 1)]).moments().A == 2.0
 
