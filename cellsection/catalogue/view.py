@@ -11,6 +11,7 @@ from cellsection.catalogue.record import CellFunction, Example, Returns
 from cellsection.errors import InputError
 from cellsection.section import faults as faults_of
 from cellsection.section.headers import quoted
+from cellsection.section.parts import number_fault
 
 __all__ = ["NO_FAULTS", "VIEW", "edition"]
 
@@ -35,10 +36,17 @@ def outline(parts: ReadBlock, part: float | str, points: float | None) -> object
         )
     found = parts.parts
     if isinstance(part, str):
-        index = next((k for k, each in enumerate(found) if each.label.casefold() == part.casefold()), None)
-        if index is None:
+        places = [k for k, each in enumerate(found) if each.label.casefold() == part.casefold()]
+        if not places:
             labels = ", ".join(each.label for each in found if each.label) or "none has a label"
             raise InputError(f"no part is labelled {quoted(part)}", remedy=f"Choose from: {labels}", argument="part")
+        if len(places) > 1:
+            raise InputError(
+                f"{len(places)} parts are labelled {quoted(part)}",
+                remedy=f"Give the number of the one that is meant: {', '.join(str(k + 1) for k in places)}",
+                argument="part",
+            )
+        index = places[0]
     else:
         if part != int(part) or not 1 <= part <= len(found):
             raise InputError(
@@ -59,10 +67,9 @@ def agrees(value: Cell, reference: Cell, tolerance: float | None) -> bool:
     if isinstance(value, str) and isinstance(reference, str):
         return value.strip().casefold() == reference.strip().casefold()
     for name, each in (("value", value), ("reference", reference)):
-        if isinstance(each, bool) or not isinstance(each, (int, float)):
-            raise InputError(
-                f"{quoted(each)} is not a number", remedy="Compare two numbers, or two texts", argument=name
-            )
+        fault = number_fault(each)
+        if fault:
+            raise InputError(fault, remedy="Compare two numbers, or two texts", argument=name)
     assert isinstance(value, (int, float))
     assert isinstance(reference, (int, float))
     allowed = 1e-9 if tolerance is None else tolerance
@@ -113,7 +120,7 @@ VIEW = (
         outline,
         (
             block("parts"),
-            position("part", "the part, by its label or by its number in the block"),
+            position("part", "the part, by its label, or by a number: 1 is the first in the block"),
             number("points", "number of rows to return", "", str(POINTS)),
         ),
         Returns("points x 2", "x, y along the outer outline, closed; the last point repeats to fill the rows"),
