@@ -8,6 +8,7 @@ from __future__ import annotations
 
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass
+from functools import lru_cache
 from typing import TYPE_CHECKING, Any, NamedTuple, TypeAlias
 
 from cellsection.errors import InputError
@@ -23,6 +24,7 @@ __all__ = [
 
 Cell: TypeAlias = float | str | bool | None
 Raw: TypeAlias = Cell | Sequence[Sequence[Cell]]
+PLAIN = frozenset((float, int, str, bool, type(None)))
 
 
 class ReadBlock(NamedTuple):
@@ -81,6 +83,14 @@ def single(raw: Raw) -> Any:
     return raw
 
 
+def one_value(raw: Raw) -> Any:
+    """The value of a single cell, where a range will not do."""
+    value = single(raw)
+    if isinstance(value, (tuple, list)):
+        raise InputError("a range stands where one value should", remedy="Point at one cell")
+    return value
+
+
 def rows_of(raw: Raw) -> tuple[tuple[Cell, ...], ...]:
     """A table, also where it is a single cell."""
     if isinstance(raw, (tuple, list)):
@@ -98,8 +108,21 @@ def plain_number(cell: Any, row: int | None = None, column: str = "") -> float:
 
 
 def read_parts(raw: Raw) -> ReadBlock:
-    """A parts block. Impossible dimensions are refused here too, before a block is moved or joined."""
-    rows, unit = read_rows(rows_of(raw))
+    """A parts block. Impossible dimensions are refused here too, before a block is moved or joined.
+
+    A book asks much of few blocks, so those met last are kept as they were read.
+    """
+    rows = rows_of(raw)
+    kinds = tuple(tuple(type(cell) for cell in row) for row in rows)
+    if PLAIN.issuperset(kind for row in kinds for kind in row):
+        return kept(rows, kinds)
+    return kept.__wrapped__(rows, kinds)
+
+
+@lru_cache(maxsize=64)
+def kept(table: tuple[tuple[Cell, ...], ...], kinds: tuple[tuple[type, ...], ...]) -> ReadBlock:  # noqa: ARG001
+    """A block read. `kinds` keeps apart what Python holds for equal, TRUE and 1."""
+    rows, unit = read_rows(table)
     return ReadBlock(rows, tuple(row.part() for row in rows), unit)
 
 
@@ -117,10 +140,7 @@ def number(name: str, text: str, dimension: str = "", default: str = "", *, opti
     """A number."""
 
     def read(raw: Raw) -> float:
-        value = single(raw)
-        if isinstance(value, (tuple, list)):
-            raise InputError("a range stands where one number should", remedy="Point at one cell")
-        return plain_number(value)
+        return plain_number(one_value(raw))
 
     return Argument(name, "number", read, text, dimension, optional or bool(default), default)
 
@@ -129,7 +149,7 @@ def choice(name: str, text: str, options: Sequence[str]) -> Argument:
     """One of a few words."""
 
     def read(raw: Raw) -> str:
-        value = single(raw)
+        value = one_value(raw)
         if not isinstance(value, str) or value.strip().lower() not in options:
             raise InputError(
                 f"{quoted(value)} is not one of {', '.join(options)}", remedy=f"Choose from {', '.join(options)}"
@@ -191,7 +211,7 @@ def position(name: str, text: str) -> Argument:
     """A part, by its label or its number."""
 
     def read(raw: Raw) -> float | str:
-        value = single(raw)
+        value = one_value(raw)
         return value.strip() if isinstance(value, str) else plain_number(value)
 
     return Argument(name, "label or number", read, text)
@@ -201,9 +221,6 @@ def anything(name: str, text: str) -> Argument:
     """A value of any kind."""
 
     def read(raw: Raw) -> Cell:
-        value = single(raw)
-        if isinstance(value, (tuple, list)):
-            raise InputError("a range stands where one value should", remedy="Point at one cell")
-        return value  # type: ignore[no-any-return]
+        return one_value(raw)  # type: ignore[no-any-return]
 
     return Argument(name, "value", read, text)

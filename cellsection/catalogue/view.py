@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import hashlib
+from collections.abc import Sequence
 from functools import lru_cache
 
 from cellsection import __version__
@@ -10,7 +11,8 @@ from cellsection.catalogue.arguments import Cell, ReadBlock, anything, block, nu
 from cellsection.catalogue.record import CellFunction, Example, Returns
 from cellsection.errors import InputError
 from cellsection.section import faults as faults_of
-from cellsection.section.headers import quoted
+from cellsection.section.headers import one_line, quoted
+from cellsection.section.part import Part
 from cellsection.section.parts import number_fault
 
 __all__ = ["NO_FAULTS", "VIEW", "edition"]
@@ -34,28 +36,41 @@ def outline(parts: ReadBlock, part: float | str, points: float | None) -> object
         raise InputError(
             f"{count:g} points cannot be drawn", remedy="Ask for a whole number from 4 to 100000", argument="points"
         )
-    found = parts.parts
-    if isinstance(part, str):
-        places = [k for k, each in enumerate(found) if each.label.casefold() == part.casefold()]
+    return tuple(one_part(parts.parts, part).region.outline(int(count)))
+
+
+def one_part(parts: Sequence[Part], wanted: float | str) -> Part:
+    """The part with that label, or at that place in the block; refused where it could be either of two."""
+    label = wanted if isinstance(wanted, str) else f"{wanted:g}"
+    places = [k for k, part in enumerate(parts, start=1) if part.label.casefold() == label.casefold()]
+    if isinstance(wanted, str):
         if not places:
-            labels = ", ".join(each.label for each in found if each.label) or "none has a label"
-            raise InputError(f"no part is labelled {quoted(part)}", remedy=f"Choose from: {labels}", argument="part")
+            labels = one_line(", ".join(part.label for part in parts if part.label), longest=150)
+            raise InputError(
+                f"no part is labelled {quoted(wanted)}",
+                remedy=f"Choose from {labels}" if labels else "Give its number in the block",
+                argument="part",
+            )
         if len(places) > 1:
             raise InputError(
-                f"{len(places)} parts are labelled {quoted(part)}",
-                remedy=f"Give the number of the one that is meant: {', '.join(str(k + 1) for k in places)}",
+                f"{len(places)} parts are labelled {quoted(wanted)}",
+                remedy=f"Give the number of the one that is meant: {one_line(', '.join(map(str, places)))}",
                 argument="part",
             )
-        index = places[0]
-    else:
-        if part != int(part) or not 1 <= part <= len(found):
-            raise InputError(
-                f"there is no part {part:g}",
-                remedy=f"Give a label, or a number from 1 to {len(found)}",
-                argument="part",
-            )
-        index = int(part) - 1
-    return tuple(found[index].region.outline(int(count)))
+        return parts[places[0] - 1]
+    if wanted != int(wanted) or not 1 <= wanted <= len(parts):
+        raise InputError(
+            f"there is no part {wanted:g}",
+            remedy=f"Give a label as text, or a number from 1 to {len(parts)}",
+            argument="part",
+        )
+    if places and places != [wanted]:
+        raise InputError(
+            f"{wanted:g} is the place of one part and the label of another",
+            remedy="Give the label as text, or label the parts in words",
+            argument="part",
+        )
+    return parts[int(wanted) - 1]
 
 
 def agrees(value: Cell, reference: Cell, tolerance: float | None) -> bool:

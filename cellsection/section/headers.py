@@ -15,7 +15,7 @@ from difflib import get_close_matches
 from cellsection.errors import InputError
 from cellsection.geometry import SHAPES
 
-__all__ = ["LENGTHS", "ORDER", "UNITS", "WORDS", "Column", "quoted", "read_header"]
+__all__ = ["LENGTHS", "ORDER", "UNITS", "WORDS", "Column", "one_line", "quoted", "read_header"]
 
 UNITS = {"mm": 0.001, "cm": 0.01, "m": 1.0, "in": 0.0254, "ft": 0.3048}  # metres; the inch and foot of 1959
 
@@ -68,10 +68,10 @@ def quoted(cell: object) -> str:
     return f"{cell:g}" if isinstance(cell, float) else one_line(str(cell))
 
 
-def one_line(text: str) -> str:
-    """A text without its line breaks, cut after some words where it is long."""
+def one_line(text: str, longest: int = LONGEST) -> str:
+    """A text without its line breaks, cut where it is long."""
     line = " ".join(text.split())
-    return line if len(line) <= LONGEST else line[: LONGEST - 1] + "…"
+    return line if len(line) <= longest else line[: longest - 1] + "…"
 
 
 def read_header(header: Sequence[object], used: Sequence[bool]) -> tuple[tuple[Column, ...], str]:

@@ -99,7 +99,7 @@ def test_a_fault_is_a_row_of_four_texts() -> None:
 
 
 def test_a_negative_gap_is_refused() -> None:
-    with pytest.raises(InputError, match="^gap: gap -1 is negative"):
+    with pytest.raises(InputError, match=r"^gap: gap -1 is negative"):
         call("CS_FAULTS", CROSS, -1)
 
 
