@@ -18,7 +18,7 @@ from cellsection.catalogue.record import CellFunction, Example, Returns
 from cellsection.errors import InputError
 from cellsection.geometry import SHAPES
 from cellsection.section.assembly import Rows, joined_rows, mirrored_rows, moved_rows, written
-from cellsection.section.parts import read_rows, shape_word
+from cellsection.section.parts import is_blank, read_rows, shape_word
 
 __all__ = ["ASSEMBLE"]
 
@@ -42,13 +42,13 @@ def spread(values: Sequence[Cell] | None, count: int, name: str) -> list[Cell]:
 def parts(
     shape: Sequence[Cell],
     size: Sequence[Sequence[float | None]],
-    at: Sequence[Sequence[float]],
+    at: Sequence[Sequence[float | None]],
     turn: Sequence[Cell] | None,
     sign: Sequence[Cell] | None,
     n: Sequence[Cell] | None,
     datum: Sequence[Cell] | None,
 ) -> Rows:
-    """A parts block from separate ranges of dimensions and offsets."""
+    """A parts block from separate ranges of dimensions and offsets; rows blank in all of them are skipped."""
     count = len(size)
     if len(at) != count or len(at[0]) not in (1, 2):
         raise InputError(
@@ -60,32 +60,53 @@ def parts(
     columns = {name: spread(values, count, name) for name, values in optional.items()}
     header: list[str] = ["shape"]
     lines: list[dict[str, Cell]] = []
-    for k, (cell, sizes, place) in enumerate(zip(spread(shape, count, "shape"), size, at, strict=True)):
+    numbers: list[int] = []  # the row of each line as the engineer counts it
+    for k, (cell, sizes) in enumerate(zip(spread(shape, count, "shape"), size, strict=True)):
+        if is_blank(cell if len(shape) > 1 else None) and all(value is None for value in (*sizes, *at[k])):
+            continue
         word = typed_shape(cell, k + 1)
-        names = (*SHAPES[word].required, *SHAPES[word].optional)
-        given = [(name, value) for name, value in zip(names, sizes, strict=False) if value is not None]
-        if any(value is not None for value in sizes[len(names) :]):
-            raise InputError(
-                f"{word} takes {len(names)} dimensions ({' '.join(names)}), more are given",
-                remedy="Clear what is too much",
-                argument="size",
-                row=k + 1,
-            )
-        x, y = (0.0, place[0]) if len(place) == 1 else place
-        lines.append({"shape": word, **dict(given), "x": x, "y": y, **{each: columns[each][k] for each in columns}})
+        dims, place = sized(word, sizes, k + 1), offsets(at[k], k + 1)
+        lines.append({"shape": word, **dims, **place, **{each: columns[each][k] for each in columns}})
         header += [name for name in lines[-1] if name not in header]
+        numbers.append(k + 1)
+    if not lines:
+        raise InputError("all rows are blank", remedy="Give the dimensions of a part", argument="size")
     rows: list[list[Cell]] = [list(header), *([line.get(name) for name in header] for line in lines)]
     try:
         read, _ = read_rows(rows)
         for row in read:
             row.part()  # impossible dimensions are told here, where the row is known
     except InputError as problem:
-        row_number = None if problem.row is None else problem.row - 1
+        row_number = None if problem.row is None else numbers[problem.row - 2]
         where = problem.column if problem.column in ("shape", "at", *columns) else "size"
         raise InputError(
             problem.fault, remedy=problem.remedy, argument=where, row=row_number, column=problem.column
         ) from None
     return written(read, "")
+
+
+def sized(word: str, sizes: Sequence[float | None], row: int) -> dict[str, Cell]:
+    """All dimensions of a shape by their letters, the blank ones too."""
+    names = (*SHAPES[word].required, *SHAPES[word].optional)
+    if any(value is not None for value in sizes[len(names) :]):
+        raise InputError(
+            f"{word} takes {len(names)} dimensions ({' '.join(names)}), more are given",
+            remedy="Clear what is too much",
+            argument="size",
+            row=row,
+        )
+    return dict(zip(names, (*sizes, *[None] * len(names)), strict=False))
+
+
+def offsets(place: Sequence[float | None], row: int) -> dict[str, Cell]:
+    """Where a part is."""
+    if None in place:
+        raise InputError(
+            "an offset is blank", remedy="Enter 0 or where the part is", argument="at", row=row,
+            column=str(place.index(None) + 1),
+        )  # fmt: skip
+    x, y = (0.0, *place) if len(place) == 1 else place
+    return {"x": x, "y": y}
 
 
 def typed_shape(cell: Cell, row: int) -> str:
@@ -156,7 +177,7 @@ ASSEMBLE = (
         (
             column("shape", "one shape for all parts, or a column with a shape for each"),
             table("size", "dimensions, a row a part, in the order of the shape's letters", "L", blanks=True),
-            table("at", "where the datum of each part is: a column of y, or two columns x and y", "L"),
+            table("at", "where the datum of each part is: a column of y, or two columns x and y", "L", blanks=True),
             column("turn", "degrees anticlockwise about the datum", "°", "0"),
             column("sign", "1 for solid, -1 for a cut-out", "", "1"),
             column("n", "modular ratio, E of the part over E of reference", "", "1"),

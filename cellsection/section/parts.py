@@ -15,7 +15,7 @@ from cellsection.geometry import DATUMS, SHAPES, Region, placed
 from cellsection.section.headers import Column, quoted, read_header
 from cellsection.section.part import Part
 
-__all__ = ["Block", "PartRow", "number_fault", "read_block", "read_rows", "shape_word"]
+__all__ = ["Block", "PartRow", "is_blank", "number_fault", "read_block", "read_rows", "shape_word"]
 
 SHAPE_WORDS = {word.casefold(): word for word in (*SHAPES, "polygon", "node")}
 YES, NO = ("yes", "true"), ("no", "false")
