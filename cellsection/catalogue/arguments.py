@@ -13,7 +13,8 @@ from typing import TYPE_CHECKING, Any, NamedTuple, TypeAlias
 
 from cellsection.errors import InputError
 from cellsection.section.headers import quoted
-from cellsection.section.parts import PartRow, number_fault, read_rows
+from cellsection.section.parts import read_rows
+from cellsection.section.rows import PartRow, number_fault
 
 if TYPE_CHECKING:
     from cellsection.section.part import Part

@@ -18,7 +18,8 @@ from cellsection.catalogue.record import CellFunction, Example, Returns
 from cellsection.errors import InputError
 from cellsection.geometry import SHAPES
 from cellsection.section.assembly import Rows, joined_rows, mirrored_rows, moved_rows, written
-from cellsection.section.parts import is_blank, read_rows, shape_word
+from cellsection.section.parts import read_rows
+from cellsection.section.rows import is_blank, shape_word
 
 __all__ = ["ASSEMBLE"]
 

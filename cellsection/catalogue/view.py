@@ -13,7 +13,7 @@ from cellsection.errors import InputError
 from cellsection.section import faults as faults_of
 from cellsection.section.headers import one_line, quoted
 from cellsection.section.part import Part
-from cellsection.section.parts import number_fault
+from cellsection.section.rows import number_fault
 
 __all__ = ["NO_FAULTS", "VIEW", "edition"]
 

@@ -9,7 +9,7 @@ from typing import TypeAlias
 from cellsection.errors import InputError
 from cellsection.geometry import cosine_sine
 from cellsection.section.headers import LENGTHS, ORDER, UNITS
-from cellsection.section.parts import PartRow
+from cellsection.section.rows import PartRow
 
 __all__ = ["Rows", "converted", "joined_rows", "mirrored_rows", "moved_rows", "written"]
 

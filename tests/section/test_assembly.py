@@ -11,7 +11,8 @@ from hypothesis import strategies as st
 from cellsection.errors import InputError
 from cellsection.geometry import DATUMS, SHAPES, cosine_sine
 from cellsection.section.assembly import joined_rows, mirrored_rows, moved_rows, written
-from cellsection.section.parts import PartRow, read_rows
+from cellsection.section.parts import read_rows
+from cellsection.section.rows import PartRow
 from tests.geometry.random_shapes import dimensions
 
 SYMBOLS = ("A", "x", "y", "Ix", "Iy", "Ixy")

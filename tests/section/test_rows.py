@@ -6,6 +6,7 @@ import pytest
 
 from cellsection.errors import InputError
 from cellsection.section.parts import read_block, read_rows
+from cellsection.section.rows import PartRow
 
 TRIANGLE = [["shape", "x", "y"], ["polygon", None, None], ["node", 0, 0], ["node", 120, 0], ["node", 0, 90]]
 
@@ -69,7 +70,5 @@ def test_a_plate_runs_between_its_points() -> None:
 
 
 def test_a_row_out_of_no_block_tells_the_dimension_alone() -> None:
-    from cellsection.section.parts import PartRow
-
     with pytest.raises(InputError, match=r"^column d: d = 0 is not positive\. Enter a length greater than 0\.$"):
         PartRow(None, "circle", dims={"d": 0.0}).part()
