@@ -53,7 +53,7 @@ class Column:
     factor: float = 1.0
 
 
-def quoted(cell: object) -> str:
+def quoted(cell: object, longest: int = LONGEST) -> str:
     """A cell as a message shows it: on one line, cut where it is long.
 
     >>> quoted("200"), quoted(True), quoted(3.0), quoted(None)
@@ -62,7 +62,7 @@ def quoted(cell: object) -> str:
     if cell is None or (isinstance(cell, str) and not cell.strip()):
         return "a blank cell"
     if isinstance(cell, str):
-        return f'"{one_line(cell)}"'
+        return f'"{one_line(cell, longest)}"'
     if isinstance(cell, bool):
         return str(cell).upper()
     return f"{cell:g}" if isinstance(cell, float) else one_line(str(cell))

@@ -103,7 +103,7 @@ def shape_word(text: str) -> str:
         near = get_close_matches(text.casefold(), SHAPE_WORDS, 3, 0.6)
         choice = [SHAPE_WORDS[each] for each in near] or [each for each in SHAPE_WORDS.values() if each != "node"]
         remedy = f"{'Use the word that is meant:' if near else 'Choose from'} {', '.join(choice)}"
-        raise InputError(f"{quoted(text)} is not a shape", remedy=remedy, column="shape")
+        raise InputError(f"{quoted(text, 20)} is not a shape", remedy=remedy, column="shape")
     return word
 
 

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from datetime import date
 from math import inf, nan
 from typing import NamedTuple
 
@@ -68,7 +69,7 @@ BAD_NUMBERS = {
         2, "d", "too large to compute with", "Enter a number", shape="circle", d=10**400
     ),
     "a number is beneath all lengths": part(2, "d", "too small", "Enter", shape="circle", d=1e-320),
-    "a date is no dimension": part(2, "d", "is not a number", "Enter a number", shape="circle", d=object()),
+    "a date is no dimension": part(2, "d", "is not a number", "Enter a number", shape="circle", d=date(2026, 12, 1)),
 }
 BAD_CELLS = {
     "a dimension is blank": part(
@@ -89,6 +90,14 @@ BAD_CELLS = {
     ),
     "a shape is unheard of": part(
         2, "shape", '"quaver" is not a shape', "Choose from rectangle, triangle", shape="quaver", b=200
+    ),
+    "a shape is a whole sentence": part(
+        2,
+        "shape",
+        '"two plates welded t…" is not a shape',
+        "Choose from rectangle",
+        shape="two plates welded to a third one along their edges",
+        b=200,
     ),
     "a shape is a number": part(2, "shape", "3 is not a shape", "Enter a shape by its word", shape=3.0, b=200),
     "a row has no shape": block(
@@ -262,5 +271,6 @@ def test_no_function_gives_a_result_when(name: str, bad: Refusal) -> None:
     with pytest.raises(InputError) as caught:
         CATALOGUE[name].call(tuple(map(tuple, bad.block)))
     assert caught.value.argument.startswith("parts")
+    assert len(str(caught.value)) <= LONGEST
     if bad.block:  # without a single cell the argument itself is missing
         assert (caught.value.row, caught.value.column) == (bad.row, bad.column)
