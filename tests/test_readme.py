@@ -6,6 +6,7 @@
 from __future__ import annotations
 
 import contextlib
+import doctest
 import re
 import shlex
 import tempfile
@@ -58,6 +59,12 @@ def readme_told_anew() -> str:
 def test_the_tour_prints_what_the_readme_shows(tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -> None:
     monkeypatch.chdir(tmp_path)
     assert readme_told_anew() == README, "write it anew with: python -m tests.test_readme"
+
+
+def test_the_python_of_the_readme_gives_what_it_shows() -> None:
+    results = doctest.testfile(str(ROOT / "README.md"), module_relative=False, encoding="utf-8")
+    assert results.attempted > 0
+    assert results.failed == 0
 
 
 def test_the_job_comes_first_and_then_the_two_commands() -> None:
