@@ -1,7 +1,7 @@
 """The reference pages, written from the catalogue: `python -m cellsection.catalogue.manual` in the checkout.
 
-docs/functions.md is written whole. In docs/notation.md only what stands between the marks is, from the shapes, units
-and datum words that the parts block knows; the rest of that page is written by hand.
+docs/functions.md and docs/shapes.svg are written whole. In docs/notation.md only what stands between the marks is, from
+the shapes, units and datum words that the parts block knows; the rest of that page is written by hand.
 """
 
 from __future__ import annotations
@@ -13,6 +13,7 @@ from typing import TypeAlias
 
 from cellsection.catalogue.arguments import Argument
 from cellsection.catalogue.assemble import ASSEMBLE
+from cellsection.catalogue.drawings import shapes_drawing
 from cellsection.catalogue.record import Cell, CellFunction, Table
 from cellsection.catalogue.results import RESULTS
 from cellsection.catalogue.view import VIEW
@@ -182,9 +183,13 @@ def notation_page(text: str) -> str:
 
 
 def write_pages(docs: Path = DOCS) -> tuple[Path, ...]:
-    """Both pages, written into the folder that holds notation.md; the paths that changed."""
+    """The pages and the drawing, written into the folder that holds notation.md; the paths that changed."""
     notation = docs / "notation.md"
-    pages = {docs / "functions.md": functions_page(), notation: notation_page(notation.read_text(encoding="utf-8"))}
+    pages = {
+        docs / "functions.md": functions_page(),
+        docs / "shapes.svg": shapes_drawing(),
+        notation: notation_page(notation.read_text(encoding="utf-8")),
+    }
     changed = [path for path, page in pages.items() if not path.exists() or path.read_text(encoding="utf-8") != page]
     for path in changed:
         path.write_text(pages[path], encoding="utf-8", newline="\n")

@@ -4,10 +4,12 @@ from __future__ import annotations
 
 import re
 from pathlib import Path
+from xml.etree import ElementTree
 
 import pytest
 
 from cellsection.catalogue import CATALOGUE, CellFunction
+from cellsection.catalogue.drawings import FIGURES, shapes_drawing
 from cellsection.catalogue.manual import CHAPTERS, functions_page, in_words, notation_page, write_pages
 from cellsection.geometry import DATUMS, SHAPES
 from cellsection.section.headers import ORDER, UNITS
@@ -26,11 +28,22 @@ def table_below(line: str) -> list[list[str]]:
     return [[cell.strip() for cell in each.strip("|").split("|")] for each in after[start:end]]
 
 
-@pytest.mark.parametrize("name", ["functions.md", "notation.md"])
+@pytest.mark.parametrize("name", ["functions.md", "notation.md", "shapes.svg"])
 def test_the_page_is_up_to_date(name: str) -> None:
     page = (DOCS / name).read_text(encoding="utf-8")
-    written = functions_page() if name == "functions.md" else notation_page(page)
-    assert page == written, "run: python -m cellsection.catalogue.manual"
+    written = {"functions.md": functions_page, "notation.md": lambda: notation_page(page), "shapes.svg": shapes_drawing}
+    assert page == written[name](), "run: python -m cellsection.catalogue.manual"
+
+
+def test_every_shape_is_drawn_with_the_letters_of_its_dimensions() -> None:
+    assert list(FIGURES) == [*SHAPES, "polygon"]
+    for word, shape in SHAPES.items():
+        letters = {letter for mark in FIGURES[word].marks for letter in getattr(mark, "letter", "").split(", ")} - {""}
+        assert letters == {*shape.required, *shape.optional}, word
+
+
+def test_the_drawing_is_sound_xml() -> None:
+    assert ElementTree.fromstring(shapes_drawing()).tag.endswith("svg")
 
 
 def test_every_function_has_its_chapter() -> None:
@@ -97,7 +110,7 @@ def test_the_blocks_that_the_page_shows_can_be_read(line: str) -> None:
 
 def test_pages_are_only_written_where_they_change(tmp_path: Path) -> None:
     (tmp_path / "notation.md").write_text("<!-- units -->\n<!-- end -->\n", encoding="utf-8")
-    assert {path.name for path in write_pages(tmp_path)} == {"functions.md", "notation.md"}
+    assert {path.name for path in write_pages(tmp_path)} == {"functions.md", "notation.md", "shapes.svg"}
     assert write_pages(tmp_path) == ()
 
 
