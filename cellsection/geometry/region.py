@@ -130,6 +130,11 @@ class Region:
         left, low, right, high = box(segment for loop in self.local for segment in loop)
         x0, y0 = (left + right) / 2.0, (low + high) / 2.0
         A, Qx, Qy, Ix, Iy, Ixy = summed(segment.integrals(x0, y0) for loop in self.local for segment in loop)
+        if not A > 0.0:
+            raise InputError(
+                "the area is lost in rounding: one dimension is many orders smaller than another",
+                remedy="Check the dimensions and their units",
+            )
         dx, dy = Qy / A, Qx / A
         return Centroidal(A, x0 + dx, y0 + dy, Ix - A * dy * dy, Iy - A * dx * dx, Ixy - A * dx * dy)
 

@@ -199,6 +199,9 @@ BAD_SHAPES = {
     "a wall fills its tube": part(
         2, "t", "t = 50 is not below 50", "Use a circle, or enter a thinner wall", shape="tube", d=100, t=50
     ),
+    "a wall is lost beside its diameter": part(
+        2, "", "the area is lost in rounding", "Check the dimensions and their units", shape="tube", d=1e20, t=1
+    ),
     "a sector has no angle": part(2, "angle", "angle = 0 is not positive", "an angle", shape="sector", r=9, angle=0),
     "a sector turns more than once": part(
         2, "angle", "angle = 400 is not below 360", "Use a circle", shape="sector", r=100, angle=400
