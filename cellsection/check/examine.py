@@ -122,7 +122,12 @@ class _Examination:
             self.tally.unsaved += 1
             self.unsaved.append((cell.sheet, cell.address))
             return True  # nothing to contradict
-        if cell.status is Status.VOLATILE:
+        if _other_edition(cell):
+            # The numbers are verified by this edition all the same; a newer one must not spoil every book there is.
+            self.notes[f'saved with "{cell.saved}", checked with "{cell.value}"'].append((cell.sheet, cell.address))
+            holds = True
+            self.tally.hold += 1
+        elif cell.status is Status.VOLATILE:
             holds = _one_kind(cell.saved, cell.value)
             self.tally.volatile += holds
         else:
@@ -214,6 +219,12 @@ class _Examination:
     def cell_notes(self) -> list[Note]:
         """The notes of the cells, each text once."""
         return [Note(text, tuple(cells)) for text, cells in self.notes.items()]
+
+
+def _other_edition(cell: FormulaCell) -> bool:
+    """Whether the cell prints the edition of the functions, and was saved with another one."""
+    texts = isinstance(cell.saved, str) and isinstance(cell.value, str)
+    return cell.call.upper() == "CS_EDITION" and texts and cell.saved != cell.value
 
 
 def _one_kind(saved: Scalar, value: Scalar) -> bool:

@@ -218,3 +218,14 @@ def test_a_note_of_many_cells_is_told_once() -> None:
     report = examine(book(cell("A1", 1.0, 1.0, notes=(note,)), cell("A2", 1.0, 1.0, notes=(note,)), notes=("signed",)))
     assert [(each.text, len(each.cells)) for each in report.notes] == [("signed", 0), (note, 2)]
     assert report.verdict is Verdict.HOLDS
+
+
+def test_another_edition_of_the_functions_is_said_and_does_not_spoil_the_book() -> None:
+    printed = cell("P64", "cellsection 0.1.0 aaa", "cellsection 0.2.0 bbb", call="CS_EDITION", formula="=CS_EDITION()")
+    report = examine(book(printed, cell("A1", 1.0, 1.0)))
+    assert report.verdict.name == "HOLDS"
+    assert report.tally.hold == 2
+    (note,) = report.notes
+    assert note.text == 'saved with "cellsection 0.1.0 aaa", checked with "cellsection 0.2.0 bbb"'
+    typed_over = cell("P64", 5.0, "cellsection 0.2.0 bbb", call="CS_EDITION", formula="=CS_EDITION()")
+    assert examine(book(typed_over)).verdict.name != "HOLDS"
