@@ -91,13 +91,12 @@ def channel(h: float, b: float, tw: float, tf: float, r: float, r2: float, slope
     def face(x: float) -> float:
         return tf + slope * (b / 2 - x)
 
-    lower = Polygon([(0, -b - h), (b, -b - h), (b, face(b)), (tw, face(tw)), (tw, h / 2), (0, h / 2)])
-    # Inside the tip the outline is opened by r2, inside the root it is closed by r; the outside is cut off again.
-    opened = lower.buffer(-r2, quad_segs=QUARTER).buffer(r2, quad_segs=QUARTER) if r2 else lower
-    near_tip = b - r2  # no farther, or the opening would round the corner beside a thin web too
-    lower = joined(opened.intersection(box(near_tip, -b - h, b, h)), lower.intersection(box(0, -b - h, near_tip, h)))
-    tall = joined(lower, box(0, h / 2, tw, h + b))
-    closed = tall.buffer(r, quad_segs=QUARTER).buffer(-r, quad_segs=QUARTER) if r else tall
+    far = b + h
+    solid = Polygon([(-far, -far), (b, -far), (b, face(b)), (tw, face(tw)), (tw, h + far), (-far, h + far)])
+    # Web and flange are made thick behind their faces, so that opening by r2 rounds the inside of the tip and nothing
+    # else, and closing by r rounds the root; then the outside is cut off again.
+    opened = solid.buffer(-r2, quad_segs=QUARTER).buffer(r2, quad_segs=QUARTER) if r2 else solid
+    closed = opened.buffer(r, quad_segs=QUARTER).buffer(-r, quad_segs=QUARTER) if r else opened
     lower = closed.intersection(box(0, 0, b, h / 2))
     return joined(lower, shapely.affinity.scale(lower, 1, -1, origin=(0, h / 2)))
 
