@@ -94,10 +94,10 @@ def channel(h: float, b: float, tw: float, tf: float, r: float, r2: float, slope
     far = b + h
     solid = Polygon([(-far, -far), (b, -far), (b, face(b)), (tw, face(tw)), (tw, h + far), (-far, h + far)])
     # Web and flange are made thick behind their faces, so that opening by r2 rounds the inside of the tip and nothing
-    # else, and closing by r rounds the root; then the outside is cut off again.
+    # else. Closing by r rounds the root; it starts from the sharp outline too, for a buffer of a drawn arc is coarse.
     opened = solid.buffer(-r2, quad_segs=QUARTER).buffer(r2, quad_segs=QUARTER) if r2 else solid
-    closed = opened.buffer(r, quad_segs=QUARTER).buffer(-r, quad_segs=QUARTER) if r else opened
-    lower = closed.intersection(box(0, 0, b, h / 2))
+    closed = solid.buffer(r, quad_segs=QUARTER).buffer(-r, quad_segs=QUARTER) if r else solid
+    lower = closed.difference(solid.difference(opened)).intersection(box(0, 0, b, h / 2))
     return joined(lower, shapely.affinity.scale(lower, 1, -1, origin=(0, h / 2)))
 
 
