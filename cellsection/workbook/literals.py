@@ -35,7 +35,7 @@ def read_number(text: str) -> Scalar:
         number = float(text)
     except ValueError:
         return unreadable(text, "number")
-    return number if isfinite(number) and "_" not in text else unreadable(text, "number")
+    return number if isfinite(number) and text.isascii() and "_" not in text else unreadable(text, "number")
 
 
 def read_date(text: str, epoch: datetime = EPOCH, day_60: bool = False) -> Scalar:

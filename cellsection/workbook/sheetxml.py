@@ -13,10 +13,10 @@ from dataclasses import dataclass, field
 from itertools import product
 
 from cellsection.errors import WorkbookError
+from cellsection.workbook.addresses import address, read_ref
 from cellsection.workbook.book import Position, column_letters
 from cellsection.workbook.markup import feed, new_parser
 from cellsection.workbook.values import ErrorValue, Scalar
-from cellsection.workbook.worksheet import address, read_ref
 
 __all__ = ["sheet_with_values"]
 

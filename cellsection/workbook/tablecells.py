@@ -14,6 +14,7 @@ import re
 from datetime import datetime
 from typing import Literal
 
+from cellsection.workbook.addresses import LAST_COLUMN, LAST_ROW
 from cellsection.workbook.book import Bounds, Formula, Sheet
 from cellsection.workbook.literals import read_date, read_duration, read_number
 from cellsection.workbook.markup import LONGEST_TEXT, refused
@@ -26,7 +27,6 @@ TABLE = "urn:oasis:names:tc:opendocument:xmlns:table:1.0 "
 OFFICE = "urn:oasis:names:tc:opendocument:xmlns:office:1.0 "
 TEXT = "urn:oasis:names:tc:opendocument:xmlns:text:1.0 "
 CALCEXT = "urn:org:documentfoundation:names:experimental:calc:xmlns:calcext:1.0 "
-LAST_ROW, LAST_COLUMN = 1_048_576, 16_384
 ROW, CELL, COVERED = TABLE + "table-row", TABLE + "table-cell", TABLE + "covered-table-cell"
 PARAGRAPH, SPACES = TEXT + "p", TEXT + "s"
 WITHIN = frozenset(TEXT + name for name in ("span", "a", "ruby", "ruby-base", "sheet-name", "title", "date", "time"))

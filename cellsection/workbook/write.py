@@ -13,12 +13,12 @@ from collections import defaultdict
 from pathlib import Path
 
 from cellsection.errors import WorkbookError
+from cellsection.workbook.addresses import read_ref
 from cellsection.workbook.book import Limits, Position
 from cellsection.workbook.package import Package, canonical
 from cellsection.workbook.results import FormulaCell, Recalculation, Status
 from cellsection.workbook.sheetxml import sheet_with_values
 from cellsection.workbook.values import Scalar
-from cellsection.workbook.worksheet import read_ref
 from cellsection.workbook.xlsx import sheet_parts, workbook_part
 
 __all__ = ["write_values"]

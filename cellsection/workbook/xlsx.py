@@ -11,11 +11,13 @@ Parts are found through their relationships, whatever their names; namespaces ma
 from __future__ import annotations
 
 from cellsection.errors import WorkbookError
+from cellsection.workbook.addresses import read_ref
 from cellsection.workbook.book import Book, Formula, Sheet, Table
 from cellsection.workbook.markup import Element
 from cellsection.workbook.metadata import number, read_metadata
 from cellsection.workbook.package import Package, Relationship
-from cellsection.workbook.worksheet import read_ref, read_sst, read_v, read_worksheet, unescaped
+from cellsection.workbook.sharedstrings import read_sst, unescaped
+from cellsection.workbook.worksheet import read_v, read_worksheet
 
 __all__ = ["read_xlsx", "sheet_parts", "workbook_part"]
 
