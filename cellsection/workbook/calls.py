@@ -68,7 +68,7 @@ def builtin_call(compiler: Compiler, declared: Builtin, node: Call, spread: bool
         elif kind in SCALAR_KINDS:
             codes.append(compiler.value(argument, spread))
         else:
-            codes.append(compiler.operand(argument, spread or kind == "array"))
+            codes.append(compiler.operand(argument, spread or kind in ("array", "table")))
     function, wants_context = declared.call, declared.context
     scalar_at = [k for k, kind in enumerate(kinds) if kind in SCALAR_KINDS]
     passes = [kind == "any" for kind in kinds]

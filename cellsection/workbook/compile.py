@@ -79,6 +79,16 @@ class Compiled:
     fault: FormulaError | None = None
 
 
+def narrowed(machine: Machine, result: Any) -> Any:
+    """A value outside array formulas: an area gives one of its cells; an array of values stays what it is.
+
+    So {1,2,3}*2 and LARGE(A1:A9,{1,2}) are arrays anywhere, and only references are cut down to one cell.
+    """
+    if isinstance(result, tuple) and not (result and isinstance(result[0], CellArea)):
+        return result
+    return intersected(machine, result)
+
+
 class Compiler:
     """Compiles the formulas of one book; scopes hold the parameters of LET and LAMBDA in force."""
 
@@ -99,7 +109,7 @@ class Compiler:
             return lambda m: None
         if isinstance(node, ArrayConstant):
             rows = node.rows
-            return (lambda m: rows) if spread else (lambda m: rows[0][0])
+            return lambda m: rows
         if isinstance(node, Reference) and node.single and node.book is None and node.last_sheet is None:
             return self.cell(node)
         if isinstance(node, Unary):
@@ -118,7 +128,7 @@ class Compiler:
                 return m.cell(result.index, (result.top, result.left)) if one else result.whole()
 
             return read
-        return lambda m: intersected(m, code(m))
+        return lambda m: narrowed(m, code(m))
 
     def operand(self, node: Node, spread: bool) -> Code:
         """Code for an Area where a reference was written, else for a value."""
@@ -363,8 +373,6 @@ class Compiler:
         """Code for an operator between two values."""
         left, right = self.value(node.left, spread), self.value(node.right, spread)
         apply = BINARY[node.sign]
-        if not spread:
-            return lambda m: apply(left(m), right(m))
 
         def both(m: Machine) -> Any:
             a, b = left(m), right(m)
@@ -416,6 +424,8 @@ class Compiler:
 
             def last(m: Machine) -> Any:
                 a, b = left(m), right(m)
+                if a.__class__ is tuple or b.__class__ is tuple:
+                    return spread_over(apply, (a, b))
                 return snapped(apply(a, b), a)
 
             return Compiled(last)

@@ -7,7 +7,7 @@ from typing import TYPE_CHECKING, Any, TypeAlias
 
 from cellsection.errors import FormulaError
 from cellsection.workbook.coercion import CALC, NA, VALUE, equal, logical_of, number_of
-from cellsection.workbook.machine import CellArea, Machine
+from cellsection.workbook.machine import CellArea, Machine, Unsupported
 from cellsection.workbook.nodes import Call, Invoke, Missing, Name, Node
 from cellsection.workbook.operators import element, width_height
 from cellsection.workbook.operators import spread as spread_over
@@ -34,6 +34,13 @@ def arguments(node: Call, least: int, most: int | None) -> tuple[Node, ...]:
 def plain(value: Any) -> Any:
     """An area read as an array, anything else as it is."""
     return value.whole() if isinstance(value, CellArea) else value
+
+
+def alone(value: Any, name: str) -> Any:
+    """A value that must be single; an array there is reported, not guessed at."""
+    if value.__class__ is tuple:
+        raise Unsupported(f"{name} over an array")
+    return value
 
 
 def branch(compiler: Compiler, node: Node, spread: bool) -> Code:
@@ -107,7 +114,7 @@ def form_ifs(compiler: Compiler, node: Call, spread: bool) -> Code:
 
     def call(m: Machine) -> Any:
         for test, value in pairs:
-            truth = logical_of(test(m))
+            truth = logical_of(alone(test(m), node.name))
             if isinstance(truth, ErrorValue):
                 return truth
             if truth:
@@ -127,11 +134,11 @@ def form_switch(compiler: Compiler, node: Call, spread: bool) -> Code:
     default: Code = branch(compiler, nodes[-1], spread) if len(nodes) % 2 == 0 else lambda m: NA
 
     def call(m: Machine) -> Any:
-        value = subject(m)
+        value = alone(subject(m), node.name)
         if isinstance(value, ErrorValue):
             return value
         for case, result in pairs:
-            met = case(m)
+            met = alone(case(m), node.name)
             if isinstance(met, ErrorValue):
                 return met
             if equal(value, met):

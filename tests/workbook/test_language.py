@@ -185,3 +185,27 @@ def test_no_result_is_ever_infinite_or_not_a_number(tmp_path: Path) -> None:
         tmp_path, {"A1": "=1E308*10", "A2": "=10^400", "A3": "=0^0", "A4": "=EXP(1000)", "A5": "=-1^0.5", "A6": "=0^-1"}
     )
     assert [found[f"A{k}"] for k in range(1, 7)] == ["#NUM!", "#NUM!", "#NUM!", "#NUM!", "#NUM!", "#DIV/0!"]
+
+
+# Idioms of ordinary cells, without an array formula; each value is worked out by hand from the two columns.
+STEEL = {"A1": "S355", "A2": "S275", "A3": "S355", "A4": "S355", "B1": 12.0, "B2": 16.0, "B3": 20.0, "B4": 25.0}
+
+
+@pytest.mark.parametrize(
+    ("formula", "value"),
+    [
+        ("SUM({1,2,3}*2)", 12.0),
+        ("MAX({1,2,3}*{1;2})", 6.0),
+        ('SUM(SUMIF(A1:A4,{"S355","S275"},B1:B4))', 73.0),
+        ('SUM(COUNTIF(A1:A4,{"S355","S275"}))', 4.0),
+        ("SUM(LARGE(B1:B4,{1,2}))", 45.0),
+        ('VLOOKUP("S275",CHOOSE({1,2},A1:A4,B1:B4),2,0)', 16.0),
+        ("VLOOKUP(16,IF({1,0},B1:B4,A1:A4),2,0)", "S275"),
+        ('LOOKUP(2,1/(A1:A4="S275"),B1:B4)', 16.0),
+        ("MATCH(TRUE,INDEX(B1:B4>12,0),0)", 2.0),
+        ('MATCH(1,INDEX((A1:A4="S355")*(B1:B4>12),0),0)', 3.0),
+        ("{1,2}+1", 2.0),
+    ],
+)
+def test_arrays_written_out_are_arrays_in_ordinary_cells_too(tmp_path: Path, formula: str, value: object) -> None:
+    assert results(tmp_path, {**STEEL, "D7": "=" + formula})["D7"] == value

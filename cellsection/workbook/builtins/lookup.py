@@ -106,7 +106,7 @@ def hlookup(wanted: Scalar, table: Any, row: float, approximate: bool = True) ->
     return array[int(row) - 1][column] if int(row) <= len(array) else None
 
 
-@builtin("LOOKUP", "value range range?")
+@builtin("LOOKUP", "value table table?")
 def lookup(wanted: Scalar, area: Any, results: Any = None) -> Scalar:
     array = whole(area)
     rows, columns = len(array), len(array[0]) if array else 0
@@ -191,7 +191,7 @@ def xlookup(
     return tuple((row[found],) for row in values) if len(values) > 1 else values[0][found]
 
 
-@builtin("INDEX", "range number? number? number?")
+@builtin("INDEX", "table number? number? number?")
 def index(area: Any, row: float = 0.0, column: float | None = None, number: float = 1.0) -> Any:
     if isinstance(area, tuple) and area and hasattr(area[0], "cells"):
         if not 1 <= number <= len(area):

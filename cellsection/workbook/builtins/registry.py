@@ -10,6 +10,7 @@ least one):
     value                 a scalar of any kind but an error (which is passed on without a call); blank stays None
     any                   a scalar of any kind, error values included
     array                 an Array: a reference is read, a scalar becomes 1 x 1; errors stay inside
+    table                 as range, and an expression in its place is calculated as an array (LOOKUP, INDEX)
     range                 an Area where a reference was written, an Array, or a scalar typed in directly: for functions
                           that treat cells and typed values differently (SUM takes "2" typed in, not in a cell)
     reference             an Area (or a tuple of Areas for a union); anything else is #VALUE!
@@ -33,7 +34,7 @@ from cellsection.workbook.values import Area, ErrorValue
 __all__ = ["BUILTINS", "Builtin", "Context", "ErrorResult", "builtin"]
 
 F = TypeVar("F", bound=Callable[..., Any])
-KINDS = frozenset(("number", "text", "logical", "value", "any", "array", "range", "reference"))
+KINDS = frozenset(("number", "text", "logical", "value", "any", "array", "range", "table", "reference"))
 
 
 class Context(Protocol):
