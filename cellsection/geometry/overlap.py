@@ -19,7 +19,7 @@ if TYPE_CHECKING:
 
     from cellsection.geometry.region import Region
 
-__all__ = ["CHORD", "Flat", "connected", "flat", "layers", "surplus"]
+__all__ = ["CHORD", "Flat", "areal", "common", "connected", "flat", "layers", "surplus"]
 
 CHORD = 2e-5
 ROUNDING = 1e-9
@@ -62,12 +62,31 @@ def layers(shapes: Iterable[BaseGeometry]) -> list[BaseGeometry]:
         carried = shape
         for i, layer in enumerate(deep):
             # What this layer has already goes down to the next; the rest joins this one.
-            below = shapely.intersection(layer, carried)
-            deep[i] = shapely.union(layer, carried)
+            below = common(layer, carried)
+            deep[i] = areal(shapely.union(layer, carried))
             carried = below
         if carried.area > 0.0:
             deep.append(carried)
     return deep
+
+
+def areal(shape: BaseGeometry) -> BaseGeometry:
+    """The area of a shape alone: where outlines only touch, shapely gives points and lines along with it.
+
+    >>> from shapely import box
+    >>> areal(box(0, 0, 1, 1).intersection(box(1, 0, 2, 1))).area
+    0.0
+    """
+    import shapely
+
+    if shape.geom_type in ("Polygon", "MultiPolygon"):
+        return shape
+    return shapely.union_all([piece for piece in shapely.get_parts(shape) if piece.geom_type == "Polygon"])
+
+
+def common(a: BaseGeometry, b: BaseGeometry) -> BaseGeometry:
+    """The area that both shapes cover."""
+    return areal(a.intersection(b))
 
 
 def surplus(more: Sequence[BaseGeometry], fewer: Sequence[BaseGeometry], by: int = 1) -> BaseGeometry:
@@ -81,7 +100,7 @@ def surplus(more: Sequence[BaseGeometry], fewer: Sequence[BaseGeometry], by: int
 
     kept = []
     for i, layer in enumerate(more[by - 1 :]):
-        kept.append(shapely.difference(layer, fewer[i]) if i < len(fewer) else layer)
+        kept.append(areal(shapely.difference(layer, fewer[i])) if i < len(fewer) else layer)
     return shapely.union_all(kept)
 
 

@@ -8,7 +8,7 @@ from math import fsum
 from typing import TYPE_CHECKING, NamedTuple
 
 from cellsection.errors import InputError
-from cellsection.geometry.overlap import Flat, connected, flat, layers, surplus
+from cellsection.geometry.overlap import Flat, areal, common, connected, flat, layers, surplus
 from cellsection.section.composite import totals
 from cellsection.section.transformed import named
 
@@ -96,7 +96,7 @@ class _Seen:
             return
         twice = surplus(self.solid, self.cut, by=2)
         for one, other in combinations(self.solids, 2):
-            area = float(one.shape.intersection(other.shape).intersection(twice).area)
+            area = float(common(common(one.shape, other.shape), twice).area)
             if area > one.flat.doubt + other.flat.doubt:
                 yield Fault(
                     one.name,
@@ -124,9 +124,9 @@ class _Seen:
             yield from self._other_ratio(each)
         if len(self.cut) < 2:
             return
-        missing = surplus(self.cut, self.solid).intersection(solid)
+        missing = common(surplus(self.cut, self.solid), solid)
         for one, other in combinations(self.cuts, 2):
-            area = float(one.shape.intersection(other.shape).intersection(missing).area)
+            area = float(common(common(one.shape, other.shape), missing).area)
             if area > one.flat.doubt + other.flat.doubt:
                 yield Fault(
                     one.name,
@@ -142,11 +142,11 @@ class _Seen:
         same = [each for each in self.solids if abs(each.part.n - cut.part.n) <= SAME_RATIO * cut.part.n]
         if len(same) == len(self.solids):
             return
-        rest = cut.shape.difference(shapely.union_all([each.shape for each in same]))
+        rest = areal(cut.shape.difference(shapely.union_all([each.shape for each in same])))
         for each in self.solids:
             if each in same:
                 continue
-            area = float(rest.intersection(each.shape).area)
+            area = float(common(rest, each.shape).area)
             if area > cut.flat.doubt + each.flat.doubt + fsum(one.flat.doubt for one in same):
                 yield Fault(
                     cut.name,
@@ -167,7 +167,7 @@ class _Seen:
         touching = 2.0 * stray + TOUCHING * max(right - left, high - low)
         groups = connected(material, max(gap or 0.0, touching), sliver=2.0 * stray)
         for group in groups[1:]:
-            names = [each.name for each in self.solids if each.shape.intersection(group).area > each.flat.doubt]
+            names = [each.name for each in self.solids if common(each.shape, group).area > each.flat.doubt]
             distance = min(float(group.distance(other)) for other in groups if other is not group)
             yield Fault(
                 ", ".join(names),

@@ -5,8 +5,10 @@ from __future__ import annotations
 from dataclasses import replace
 
 import pytest
+from hypothesis import given
+from hypothesis import strategies as st
 
-from cellsection.geometry import Region
+from cellsection.geometry import SHAPES, Region, placed
 from cellsection.section import Part, faults
 from tests.section.built import girder, part, turned
 
@@ -181,3 +183,28 @@ def test_every_fault_is_one_line_with_a_remedy() -> None:
     for fault in met:
         assert all(text and "\n" not in text for text in fault)
         assert sum(map(len, fault)) < 255
+
+
+ON_A_GRID = st.tuples(*[st.integers(1, 5)] * 2, *[st.integers(-4, 4)] * 2, st.sampled_from((1, 1, -1)))
+
+
+@given(st.lists(ON_A_GRID, min_size=2, max_size=6))
+def test_parts_on_a_grid_that_touch_and_overlap_in_every_way_are_all_judged(rows: list[tuple[int, ...]]) -> None:
+    block = [
+        Part("", "rectangle", placed(SHAPES["rectangle"].build(b=10 * b, h=10 * h), 5 * x, 5 * y), sign)
+        for b, h, x, y, sign in rows
+    ]
+    for fault in faults(block):
+        assert all(fault)
+
+
+def test_a_flange_made_thicker_into_its_web_is_named() -> None:
+    web = placed(SHAPES["rectangle"].build(b=10, h=560), 0, 300)
+    flanges = [placed(SHAPES["rectangle"].build(b=220, h=h), 0, y) for h, y in ((20, 590), (40, 10))]
+    block = [
+        Part("top", "rectangle", flanges[0]),
+        Part("web", "rectangle", web),
+        Part("bottom", "rectangle", flanges[1]),
+    ]
+    (fault,) = faults(block)  # 10 wide, 10 deep: from 20 to 30
+    assert (fault.part, fault.fault) == ("web", "covers 100 together with bottom")
