@@ -35,6 +35,7 @@ if TYPE_CHECKING:
 
 __all__ = ["NO_FAULTS", "check_book", "examine"]
 
+FAULTS_TOLD = 3
 NO_FAULTS = "no faults"  # what CS_FAULTS says of a sound parts block
 FUNCTION_IN_FRONT = re.compile(r"CS_\w+[:,] *")
 SECTION_FUNCTION = re.compile(r"\bCS[_.]\w+ *\(", re.IGNORECASE)
@@ -153,7 +154,7 @@ class _Examination:
         self.tally.checks_met += _meets(cell)
         if not _meets(cell):
             saved = cell.saved if cell.has_saved else None
-            cause = _cause(cell.value) if isinstance(cell.value, ErrorValue) else ""
+            cause = _cause(cell.value) if isinstance(cell.value, ErrorValue) else _faults(cell)
             self.unmet.append(UnmetCheck(_spot(cell), _expected(cell), saved, cell.value, cause))
 
     # Findings
@@ -219,6 +220,16 @@ class _Examination:
     def cell_notes(self) -> list[Note]:
         """The notes of the cells, each text once."""
         return [Note(text, tuple(cells)) for text, cells in self.notes.items()]
+
+
+def _faults(cell: FormulaCell) -> str:
+    """What CS_FAULTS found, though its cell shows a part's name only: a sentence a fault, the first few."""
+    if cell.call.upper() != "CS_FAULTS" or cell.whole is None:
+        return ""
+    rows = [tuple("" if each is None else str(each) for each in row) for row in cell.whole]
+    told = [f"{row[0]} {row[1]}: {row[2]}. {row[3]}." for row in rows[:FAULTS_TOLD] if len(row) == 4]
+    more = f" And {len(rows) - FAULTS_TOLD} more." if len(rows) > FAULTS_TOLD else ""
+    return " ".join(told) + more
 
 
 def _other_edition(cell: FormulaCell) -> bool:

@@ -157,5 +157,8 @@ def host_call(compiler: Compiler, node: Call, function: Callable[..., Any]) -> C
             return given_back(function(*arguments))
         except InputError as problem:
             return ErrorValue("#VALUE!", f"{name}: {problem}", m.address(m.sheet, (m.row, m.column)))
+        except Exception as fault:
+            # A fault of the function spoils its own cell and what depends on it, not the whole book; it is reported.
+            raise Unsupported(f"{name} fails at this input ({type(fault).__name__}: {fault})") from fault
 
     return call

@@ -140,6 +140,7 @@ class Machine:
         self.taint: Taint | None = None
         self.notes: set[str] = set()
         self.code: dict[object, Code] = {}
+        self.whole: dict[Place, Array] = {}  # what a formula gave, where that is more than its own cell shows
         self.filled: dict[tuple[int, Position], Bounds] = {}  # first cell of an array formula -> the area it fills
         self.areas: dict[tuple[int, Bounds], tuple[Array, Taint | None]] = {}
         self.cached_cells = 0

@@ -138,6 +138,13 @@ class Driver:
         if taint is not None and taint.status is not Status.VOLATILE:
             machine.settle_saved(index, position, taint)
             return
+        if (
+            isinstance(value, tuple)
+            and value
+            and not isinstance(value[0], CellArea)
+            and (len(value) > 1 or len(value[0]) > 1)
+        ):
+            machine.whole[place] = value
         if formula.kind == "array":
             self.fill(place, formula, value, taint)
             return
@@ -248,4 +255,5 @@ def formula_cells(driver: Driver, index: int, sheet: Sheet) -> Iterator[FormulaC
             reason=reason,
             has_saved=position in sheet.values,
             text=partial(shown_text, formula, owner),
+            whole=driver.machine.whole.get((index, position)),
         )

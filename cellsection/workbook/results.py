@@ -9,7 +9,7 @@ from typing import TYPE_CHECKING
 if TYPE_CHECKING:
     from collections.abc import Callable
 
-    from cellsection.workbook.values import Scalar
+    from cellsection.workbook.values import Array, Scalar
 
 __all__ = ["FormulaCell", "Recalculation", "Status"]
 
@@ -45,6 +45,9 @@ class FormulaCell:
     notes: tuple[str, ...] = ()
     has_saved: bool = True
     text: Callable[[], str] = field(default=lambda: "", repr=False)
+    whole: Array | None = field(
+        default=None, repr=False
+    )  # all that the formula gave, where it gave more than one value
 
     @property
     def formula(self) -> str:

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import astuple
+from dataclasses import astuple, replace
 
 import pytest
 
@@ -229,3 +229,11 @@ def test_another_edition_of_the_functions_is_said_and_does_not_spoil_the_book() 
     assert note.text == 'saved with "cellsection 0.1.0 aaa", checked with "cellsection 0.2.0 bbb"'
     typed_over = cell("P64", 5.0, "cellsection 0.2.0 bbb", call="CS_EDITION", formula="=CS_EDITION()")
     assert examine(book(typed_over)).verdict.name != "HOLDS"
+
+
+def test_a_failed_fault_check_says_what_is_wrong_though_its_cell_shows_a_name_only() -> None:
+    row = ("flange", "covers 200 mm² together with web", "that area counts twice", "Move or trim one of them")
+    failed = replace(cell("B51", "flange", "flange", call="CS_FAULTS", formula="=CS_FAULTS(parts)"), whole=(row,) * 5)
+    (finding,) = examine(book(failed)).findings
+    told = "flange covers 200 mm² together with web: that area counts twice. Move or trim one of them."
+    assert finding.cause == " ".join([told] * 3) + " And 2 more."

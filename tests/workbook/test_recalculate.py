@@ -144,6 +144,23 @@ def test_a_host_function_gets_plain_values_and_its_refusal_travels_with_its_caus
     assert len(met) == 2  # an error among the arguments is passed on without a call
 
 
+def test_a_host_function_that_fails_is_a_finding_and_the_rest_of_the_book_is_calculated(tmp_path: Path) -> None:
+    def broken(*arguments: object) -> object:
+        raise ZeroDivisionError("division by zero")
+
+    found = results(tmp_path, {"A1": "=CS_X(1)", "A2": "=1+1"}, resolve=lambda name: broken)
+    assert found.cells["A1"].status is Status.UNSUPPORTED
+    assert "CS_X fails at this input (ZeroDivisionError: division by zero)" in found.cells["A1"].reason
+    assert found["A2"] == 2.0
+
+
+def test_all_that_a_formula_gave_is_kept_where_its_cell_shows_one_value(tmp_path: Path) -> None:
+    found = results(tmp_path, {"A1": "={1,2;3,4}", "B1": "=7"})
+    assert found["A1"] == 1.0
+    assert found.cells["A1"].whole == ((1.0, 2.0), (3.0, 4.0))
+    assert found.cells["B1"].whole is None
+
+
 def test_a_blank_result_reads_as_zero(tmp_path: Path) -> None:
     assert results(tmp_path, {"A1": "=B9"})["A1"] == 0.0
 
