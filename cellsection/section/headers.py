@@ -40,7 +40,14 @@ OTHER_NAMES = {
     "xc": "x", "xoffset": "x", "offsetx": "x", "yc": "y", "yoffset": "y", "offsety": "y", "rotation": "turn",
     "rotate": "turn", "turned": "turn", "cutout": "sign", "hole": "sign", "void": "sign", "modularratio": "n",
     "mirror": "mirrored", "reference": "datum", "origin": "datum", "fy": "strength",
+    "modularration": "n", "nratio": "n", "e": "n", "emodulus": "n", "youngsmodulus": "n", "m": "n",
+    "rot": "turn", "theta": "turn", "alpha": "turn", "θ": "turn", "α": "turn", "φ": "turn",
+    "xbar": "x", "xpos": "x", "xposition": "x", "x̄": "x",
+    "ybar": "y", "ypos": "y", "yposition": "y", "ȳ": "y", "elevation": "y", "level": "y",
+    "+/-": "sign", "±": "sign", "adddeduct": "sign",
 }  # fmt: skip
+# Headers of a number of pieces, which a block does not read: each piece is a row of its own.
+PIECES = frozenset(("qty", "quantity", "count", "pieces", "pcs", "noof"))
 
 
 @dataclass(frozen=True, slots=True)
@@ -140,7 +147,14 @@ def read_header(header: Sequence[object], used: Sequence[bool]) -> tuple[tuple[C
 def refuse_slip(header: str, used: bool, present: Collection[str]) -> None:
     """An unknown header with numbers below it that reads like a known one, or like another name of a missing one."""
     bare = re.sub(r"[^a-z0-9°]", "", re.sub(r"\[.*", "", header.lower()) or header.lower())
-    candidates = [bare, UNIT_BEHIND.sub("", bare)]
+    candidates = [bare, UNIT_BEHIND.sub("", bare), header.strip().lower()]
+    if used and bare in PIECES:
+        raise InputError(
+            f'"{header}" is not read, each part counts once',
+            remedy="Enter a row for each piece, or give a column of numbering another name",
+            row=1,
+            column=header,
+        )
     meant = next((name for name in ORDER for each in candidates if each == name.replace(" ", "")), None)
     if meant is None:
         numbered = (NUMBERED.fullmatch(each) for each in candidates)

@@ -58,7 +58,7 @@ def test_a_slope_may_be_in_per_cent() -> None:
 
 
 @pytest.mark.parametrize(
-    "header", ["remarks", "Mark", "drawing", "A0", "mass [kg/m]", "(see sheet 2)", "No.", "E", "area", "Ay", "b1", "h0"]
+    "header", ["remarks", "Mark", "drawing", "A0", "mass [kg/m]", "(see sheet 2)", "No.", "area", "Ay", "b1", "h0"]
 )
 def test_an_unknown_header_does_not_count(header: str) -> None:
     assert areas(["shape", "b", "h", header], ["rectangle", 200, 20, 12345]) == [4000.0]
@@ -79,6 +79,15 @@ def test_a_misspelt_dimension_without_numbers_below_it_does_not_count(header: st
         ("x0", "x"),
         ("y1", "y"),
         ("yc mm", "y"),
+        ("modular ratio n", "n"),
+        ("E", "n"),
+        ("theta", "turn"),
+        ("α", "turn"),
+        ("y bar", "y"),
+        ("ȳ", "y"),
+        ("elevation", "y"),
+        ("+/-", "sign"),
+        ("add/deduct", "sign"),
         ("rotation", "turn"),
         ("hole", "sign"),
         ("modular ratio", "n"),
@@ -114,3 +123,10 @@ def test_every_dimension_of_every_shape_is_a_known_header() -> None:
 def test_every_header_that_a_returned_block_has_is_read_again(name: str) -> None:
     columns, _unit = read_header(["shape", name] if name != "shape" else ["shape"], [False, True])
     assert columns[-1].name == name
+
+
+@pytest.mark.parametrize("header", ["qty", "Quantity", "no. of", "count"])
+def test_a_number_of_pieces_is_refused_since_each_row_counts_once(header: str) -> None:
+    with pytest.raises(InputError, match="each part counts once"):
+        read_rows([("shape", "b", "h", header), ("rectangle", 200, 10, 3)])
+    read_rows([("shape", "b", "h", header), ("rectangle", 200, 10, "three, see drawing")])

@@ -148,7 +148,7 @@ def test_a_host_function_that_fails_is_a_finding_and_the_rest_of_the_book_is_cal
     def broken(*arguments: object) -> object:
         raise ZeroDivisionError("division by zero")
 
-    found = results(tmp_path, {"A1": "=CS_X(1)", "A2": "=1+1"}, resolve=lambda name: broken)
+    found = results(tmp_path, {"A1": "=CS_X(1)", "A2": "=1+1"}, resolve=lambda _name: broken)
     assert found.cells["A1"].status is Status.UNSUPPORTED
     assert "CS_X fails at this input (ZeroDivisionError: division by zero)" in found.cells["A1"].reason
     assert found["A2"] == 2.0
