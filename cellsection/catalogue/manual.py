@@ -38,7 +38,8 @@ OPENING = """\
 
 Each function takes ranges, numbers and texts as any other function of a spreadsheet does. Most take a *parts block*
 first: a range whose first row holds headers, then a row a part. [The notation](notation.md) explains the block, its
-shapes and the axes, and sets the symbols beside those of EN and US codes.
+shapes and the axes, and sets the symbols beside those of EN and US codes. Results are for review by a licensed engineer
+before use; local codes govern.
 
 - **L** stands for the unit of length: the first that the headers name (`b [mm]`), else any one unit used throughout.
 - An argument in square brackets may be left out, or its cell left blank. A single cell does where a range of one row is

@@ -30,7 +30,8 @@ HEAD = """\
 {rows} published values are kept in `tests/published/sources/`, a file a source, as printed. **{computed} are computed
 now through the cell functions: {reproduced} reproduce within half a unit of the last printed digit, {exceptions} are
 listed below with the reason.** The other {awaiting} wait for a chapter of the mechanics that is not written yet. Every
-value with its difference: [verification-rows.csv](verification-rows.csv).
+value with its difference: [verification-rows.csv](verification-rows.csv). Results are for review by a licensed engineer
+before use; local codes govern.
 
 ## How a value is compared
 
