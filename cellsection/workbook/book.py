@@ -35,7 +35,8 @@ class Limits:
 class Formula:
     """A formula as written in its cell, without its leading sign. Compared by identity: children share their master's.
 
-    kind : an ordinary cell, an array formula over `area`, or a data table (which is not supported)
+    kind : an ordinary cell, an array formula over `area`, a data table (which is not supported), or missing: its shared
+        formula is not in the file, or it is written in a language that is not supported, and then `text` has its prefix
     dynamic : written by an application with dynamic arrays, so that it spills instead of intersecting
     language : the spelling of references and separators
     """

@@ -211,6 +211,13 @@ class Driver:
         limit = self.machine.limits.formula_length
         if formula.kind == "data table":
             return Compiled(fault=FormulaError("data tables are not supported", construct="data table"))
+        if formula.kind == "missing" and formula.text:
+            language = formula.text.partition(":=")[0]
+            return Compiled(
+                fault=FormulaError(
+                    f"it is written in the language {language}", construct=f"formula language {language}"
+                )
+            )
         if formula.kind == "missing":
             return Compiled(
                 fault=FormulaError("its shared formula is missing", construct="shared formula without master")

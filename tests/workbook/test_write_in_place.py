@@ -1,0 +1,187 @@
+"""Values set where they stand: every byte of a sheet between the changed cells stays as it was."""
+
+from __future__ import annotations
+
+import stat
+import zipfile
+from pathlib import Path
+
+import pytest
+
+from cellsection.errors import WorkbookError
+from cellsection.workbook.book import Limits, Position
+from cellsection.workbook.package import Package
+from cellsection.workbook.reader import read_book
+from cellsection.workbook.recalculate import recalculate
+from cellsection.workbook.results import FormulaCell, Recalculation, Status
+from cellsection.workbook.sheetxml import sheet_with_values
+from cellsection.workbook.values import ErrorValue, Scalar
+from cellsection.workbook.write import write_values
+from tests.workbook.small import MAIN, parts_of, saved, zipped
+
+SHEET = "xl/worksheets/sheet1.xml"
+
+
+def sheet(rows: str, prefix: str = "") -> str:
+    name = f"xmlns:{prefix[:-1]}" if prefix else "xmlns"
+    return f'<{prefix}worksheet {name}="{MAIN}"><{prefix}sheetData>{rows}</{prefix}sheetData></{prefix}worksheet>'
+
+
+def written(xml: str, values: dict[Position, Scalar]) -> str:
+    return sheet_with_values(xml.encode(), values, "book.xlsx").decode()
+
+
+F = "<f>A1</f>"
+
+
+@pytest.mark.parametrize(
+    ("before", "value", "after"),
+    [
+        (f'<c r="B7" s="3">{F}<v/></c>', 6.0, f'<c r="B7" s="3">{F}<v>6</v></c>'),
+        (f'<c r="B7" s="3">{F}<v></v></c>', 0.1, f'<c r="B7" s="3">{F}<v>0.1</v></c>'),
+        (f'<c r="B7">{F}</c>', "web", f'<c r="B7" t="str">{F}<v>web</v></c>'),
+        (f'<c r="B7" t="str" s="1">{F}<v>web</v></c>', 2.0, f'<c r="B7" s="1">{F}<v>2</v></c>'),
+        (f"<c t='n' r='B7'>{F}<v>1</v></c>", True, f"<c r='B7' t=\"b\">{F}<v>1</v></c>"),
+        (f'<c r="B7" t="b">{F}<v>1</v></c>', ErrorValue("#N/A"), f'<c r="B7" t="e">{F}<v>#N/A</v></c>'),
+        (f'<c r="B7" t="e" vm="1">{F}<v>#VALUE!</v></c>', 1e300, f'<c r="B7">{F}<v>1e+300</v></c>'),
+        (f'<c r="B7">{F}<v>1</v></c>', ErrorValue("#SPILL!"), f'<c r="B7" t="e">{F}<v>#VALUE!</v></c>'),
+        (f'<c r="B7">{F}<v>1</v></c>', " a<b&c", f'<c r="B7" t="str">{F}<v xml:space="preserve"> a&lt;b&amp;c</v></c>'),
+        (f'<c r="B7">{F}<v>1</v></c>', "\r_x0041_", f'<c r="B7" t="str">{F}<v>_x000D__x005F_x0041_</v></c>'),
+        (f'<c r="B7">{F}<v>1</v></c>', None, f'<c r="B7">{F}</c>'),
+        (f'<c r="B7">{F}<v>1</v><extLst/></c>', 2.0, f'<c r="B7">{F}<v>2</v><extLst/></c>'),
+        ('<c r="B7" t="inlineStr"><f/><is><t>a</t></is></c>', "b", '<c r="B7" t="str"><f/><v>b</v></c>'),
+    ],
+)
+def test_only_the_value_and_its_kind_change_in_a_cell(before: str, value: Scalar, after: str) -> None:
+    around = '<row r="7" ht="12.8"><c r="A7" s="1"><v>1</v></c><!-- a note -->{}<c r="C7"/></row>\n<row r="9"/>'
+    assert written(sheet(around.format(before)), {(7, 2): value}) == sheet(around.format(after))
+
+
+AREA = '<f t="array" ref="B2:C4">A1</f>'
+
+
+@pytest.mark.parametrize(
+    ("rows", "after"),
+    [
+        (f'<row r="2"><c r="B2">{AREA}</c></row>',
+         f'<row r="2"><c r="B2">{AREA}<v>1</v></c><c r="C2"><v>2</v></c></row><row r="3"><c r="B3"><v>3</v></c></row>'),
+        (f'<row r="2"><c r="B2">{AREA}</c><c r="D2"/></row><row r="3" ht="9"/><row r="5"/>',
+         f'<row r="2"><c r="B2">{AREA}<v>1</v></c><c r="C2"><v>2</v></c><c r="D2"/></row>'
+         '<row r="3" ht="9"><c r="B3"><v>3</v></c></row><row r="5"/>'),
+        (f'<row r="2"><c r="B2">{AREA}</c><c r="C2" s="4"/></row><row r="3"><c r="A3"/><c r="C3"/></row>',
+         f'<row r="2"><c r="B2">{AREA}<v>1</v></c><c r="C2" s="4"><v>2</v></c></row>'
+         '<row r="3"><c r="A3"/><c r="B3"><v>3</v></c><c r="C3"/></row>'),
+    ],
+)  # fmt: skip
+def test_cells_of_an_array_formula_that_the_file_lacks_are_put_in_their_place(rows: str, after: str) -> None:
+    assert written(sheet(rows), {(2, 2): 1.0, (2, 3): 2.0, (3, 2): 3.0}) == sheet(after)
+
+
+def test_cells_and_rows_without_addresses_are_counted(tmp_path: Path) -> None:
+    rows = f"<row><c><v>1</v></c><c>{F}</c></row><row><c>{F}<v>5</v></c></row>"
+    assert written(sheet(rows), {(1, 2): 1.0, (2, 1): 2.0}) == sheet(
+        f"<row><c><v>1</v></c><c>{F}<v>1</v></c></row><row><c>{F}<v>2</v></c></row>"
+    )
+
+
+def test_the_prefix_of_the_file_is_kept() -> None:
+    rows = '<x:row r="1"><x:c r="A1"><x:f t="array" ref="A1:A2">B1</x:f></x:c></x:row>'
+    assert written(sheet(rows, "x:"), {(1, 1): 1.0, (2, 1): 2.0}) == sheet(
+        '<x:row r="1"><x:c r="A1"><x:f t="array" ref="A1:A2">B1</x:f><x:v>1</x:v></x:c></x:row>'
+        '<x:row r="2"><x:c r="A2"><x:v>2</x:v></x:c></x:row>',
+        "x:",
+    )
+
+
+def test_a_wide_part_becomes_a_narrow_one() -> None:
+    wide = '<?xml version="1.0" encoding="UTF-16"?>' + sheet(f'<row r="1"><c r="A1">{F}</c></row>')
+    new = sheet_with_values(wide.encode("utf-16"), {(1, 1): "é"}, "book.xlsx")
+    assert new.decode("utf-8") == sheet(f'<row r="1"><c r="A1" t="str">{F}<v>é</v></c></row>')
+
+
+def test_a_value_without_room_in_the_file_is_refused() -> None:
+    rows = '<row r="1"><c r="A1" cm="1"><f t="array" ref="A1:A2">B1</f></c></row>'
+    with pytest.raises(WorkbookError, match="outgrown"):
+        written(sheet(rows), {(3, 1): 1.0})
+
+
+def new_values(path: Path, values: dict[str, Scalar], sheet_name: str = "S") -> Recalculation:
+    cells = [FormulaCell(sheet_name, a, 0.0, v, Status.RECALCULATED) for a, v in values.items()]
+    return Recalculation(str(path), (sheet_name,), cells)
+
+
+def test_the_packing_of_every_part_is_kept(tmp_path: Path) -> None:
+    path = tmp_path / "book.xlsx"
+    with zipfile.ZipFile(path, "w") as package:
+        for k, (name, content) in enumerate(parts_of({"S": {"A1": "=1"}}, {}).items()):
+            method = zipfile.ZIP_STORED if k % 2 else zipfile.ZIP_DEFLATED
+            package.writestr(zipfile.ZipInfo(name, (2026, 3, 1, 12, 0, 0)), content, method)
+    out = tmp_path / "out.xlsx"
+    write_values(path, new_values(path, {"A1": 5.0}), out)
+    with zipfile.ZipFile(path) as old, zipfile.ZipFile(out) as new:
+        told = [[(i.filename, i.compress_type, i.date_time) for i in z.infolist()] for z in (old, new)]
+    assert told[0] == told[1]
+    assert read_book(out, Limits()).sheets[0].values == {(1, 1): 5.0}
+
+
+def test_a_sheet_whose_values_all_hold_is_left_alone(tmp_path: Path) -> None:
+    path, out = saved(tmp_path, {"S": {"A1": "<f>1+1</f><v>2.0</v>"}}), tmp_path / "out.xlsx"
+    write_values(path, recalculate(path), out)
+    with Package(path, Limits()) as old, Package(out, Limits()) as new:
+        assert old.part(SHEET) == new.part(SHEET)  # 2.0 too, though it would be written as 2
+
+
+def test_cells_that_could_not_be_recalculated_keep_their_values(tmp_path: Path) -> None:
+    cells = {"A1": "<f>NOSUCHFUNCTION(1)</f><v>7</v>", "B1": "<f>A1+1</f><v>8</v>", "C1": "<f>1+1</f><v>9</v>"}
+    path, out = saved(tmp_path, {"S": cells}), tmp_path / "out.xlsx"
+    write_values(path, recalculate(path), out)
+    assert read_book(out, Limits()).sheets[0].values == {(1, 1): 7.0, (1, 2): 8.0, (1, 3): 2.0}
+
+
+def test_a_copy_that_another_format_is_expected_of_is_refused(tmp_path: Path) -> None:
+    path = saved(tmp_path, {"S": {"A1": "=1"}})
+    with pytest.raises(WorkbookError, match="another format"):
+        write_values(path, new_values(path, {"A1": 5.0}), tmp_path / "out.xlsm")
+
+
+def test_values_of_another_book_are_refused(tmp_path: Path) -> None:
+    path = saved(tmp_path, {"S": {"A1": "=1"}})
+    with pytest.raises(WorkbookError, match="no sheet T"):
+        write_values(path, new_values(path, {"A1": 5.0}, "T"), tmp_path / "out.xlsx")
+    assert not (tmp_path / "out.xlsx").exists()
+
+
+def test_a_link_to_the_book_is_the_book(tmp_path: Path) -> None:
+    path = saved(tmp_path, {"S": {"A1": "=1"}})
+    (tmp_path / "link.xlsx").hardlink_to(path)
+    with pytest.raises(WorkbookError, match="replace itself"):
+        write_values(path, new_values(path, {"A1": 5.0}), tmp_path / "link.xlsx")
+
+
+def test_the_copy_has_the_rights_of_any_new_file(tmp_path: Path) -> None:
+    path, out, new = saved(tmp_path, {"S": {"A1": "=1"}}), tmp_path / "out.xlsx", tmp_path / "new"
+    new.touch()
+    write_values(path, new_values(path, {"A1": 5.0}), out)
+    assert stat.S_IMODE(out.stat().st_mode) == stat.S_IMODE(new.stat().st_mode)
+
+
+def test_a_file_that_is_there_stays_whole_where_the_copy_fails(tmp_path: Path) -> None:
+    path, out = saved(tmp_path, {"S": {"A1": "=1"}}), tmp_path / "out.xlsx"
+    out.write_bytes(b"what was there")
+    with zipfile.ZipFile(path, "a") as package:
+        package.writestr("docProps/late.xml", b"<late/>" * 100)
+    data = bytearray(path.read_bytes())
+    at = data.index(b"docProps/late.xml") + len(b"docProps/late.xml")
+    data[at : at + 4] = b"\xff\xff\xff\xff"
+    path.write_bytes(data)
+    with pytest.raises(WorkbookError, match="late"):
+        write_values(path, new_values(path, {"A1": 5.0}), out)
+    assert out.read_bytes() == b"what was there"
+    assert sorted(each.name for each in tmp_path.iterdir()) == ["book.xlsx", "out.xlsx"]
+
+
+def test_a_signature_that_no_longer_holds_is_told(tmp_path: Path) -> None:
+    signed = {**parts_of({"S": {"A1": "=1"}}, {}), "_xmlsignatures/sig1.xml": "<Signature/>"}
+    path = zipped(tmp_path / "book.xlsx", signed)
+    assert "signature" in write_values(path, new_values(path, {"A1": 5.0}), tmp_path / "out.xlsx")[0]
+    assert write_values(path, new_values(path, {}), tmp_path / "same.xlsx") == ()
