@@ -91,6 +91,29 @@ def test_alike_formulas_have_one_relative_key_and_texts_are_left_alone() -> None
     assert relative_key("[.B3]*2", 2, 1, "openformula") == relative_key("[.B4]*2", 3, 1, "openformula")
 
 
+@pytest.mark.parametrize(
+    ("one", "other", "language"),
+    [
+        ("SUM(T[Q1])", "SUM(T[Q2])", "excel"),  # columns of a table that read like cells
+        ("T[[#This Row],[Q1]]", "T[[#This Row],[Q2]]", "excel"),
+        ("XYZ1*2", "XYZ2*2", "excel"),  # beyond the last column XFD these are names
+        ("'Q1'!A$1", "'Q2'!A$1", "excel"),
+        ('IF(A$1="B1",1)', 'IF(A$1="B2",1)', "excel"),
+        ("[@area]*2", "[@area]*2", "excel"),  # the table that the formula stands in
+        ("SUM([.A:.A])", "SUM([.A:.A])", "openformula"),  # relative, and so another column elsewhere
+        ("SUM([.2:.2])", "SUM([.2:.2])", "openformula"),
+    ],
+)
+def test_formulas_that_differ_never_share_a_compiled_form(one: str, other: str, language: str) -> None:
+    assert relative_key(one, 1, 1, language) != relative_key(other, 2, 2, language)
+
+
+def test_quarters_of_a_table_and_names_beyond_the_last_column_are_kept_apart(tmp_path: Path) -> None:
+    cells = {"A1": 1.0, "B1": 2.0, "C1": "=XYZ1*10", "C2": "=XYZ2*10"}
+    found = results(tmp_path, cells, {"XYZ1": "S!$A$1", "XYZ2": "S!$B$1"})
+    assert (found["C1"], found["C2"]) == (10.0, 20.0)
+
+
 def test_a_shared_formula_is_shown_as_it_reads_in_its_own_cell() -> None:
     assert moved_text("A1*$B$2+LOG10(C3)", 2, 1, "excel") == "B3*$B$2+LOG10(D5)"
     assert moved_text("SUM(A:A)+'A1'!B2", 1, 1, "excel") == "SUM(B:B)+'A1'!C3"
