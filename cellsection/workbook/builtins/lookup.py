@@ -181,6 +181,8 @@ def xlookup(
     plain_mode(context, match_mode)
     keys, values = whole(area), whole(results)
     upright = len(keys[0]) == 1
+    if not upright and len(keys) > 1:
+        return VALUE
     if (len(values) if upright else len(values[0])) != (len(keys) if upright else len(keys[0])):
         return VALUE
     found = searched(wanted, list(cells_of(keys)), match_mode, search_mode)
