@@ -60,10 +60,36 @@ def faults(parts: Sequence[Part], gap: float | None = None, unit: str = "") -> t
         totals(parts)
     except InputError as error:
         found.append(Fault("all parts", error.fault, "there are no totals", error.remedy))
-    if parts:
+    if parts and not _plates_side_by_side(parts, gap or 0.0):
         seen = _Seen(parts, unit)
         found += [*seen.overlaps(), *seen.cut_outs(), *seen.loose(gap)]
     return tuple(found)
+
+
+def _plates_side_by_side(parts: Sequence[Part], gap: float) -> bool:
+    """Whether all parts are solid upright rectangles that hang together without overlapping: nothing is to be drawn.
+
+    Most girders of plates are, and a workbook of one then never loads the drawing library. A rectangle is told by its
+    area, which is that of its bounding box. Whatever is not plainly sound is looked at in full.
+    """
+    boxes = [part.region.bounds() for part in parts]
+    size = max(*(b[2] - b[0] for b in boxes), *(b[3] - b[1] for b in boxes))
+    for part, (left, low, right, high) in zip(parts, boxes, strict=True):
+        area = (right - left) * (high - low)
+        if part.sign < 0 or abs(part.region.moments().A - area) > 1e-12 * area:
+            return False
+    reached, waiting = [boxes[0]], boxes[1:]
+    for here in reached:  # grows while it is walked: whatever touches a box that is reached is reached
+        for other in list(waiting):
+            across = max(here[0], other[0]) - min(here[2], other[2])  # negative where they lie over each other
+            along = max(here[1], other[1]) - min(here[3], other[3])
+            if max(across, along) <= max(gap, TOUCHING * size):
+                reached.append(other)
+                waiting.remove(other)
+    return not waiting and all(
+        max(max(a[0], b[0]) - min(a[2], b[2]), max(a[1], b[1]) - min(a[3], b[3])) >= -1e-12 * size
+        for a, b in combinations(boxes, 2)
+    )
 
 
 @dataclass(frozen=True, slots=True)

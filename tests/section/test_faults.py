@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+import subprocess
+import sys
 from dataclasses import replace
 
 import pytest
@@ -208,3 +210,16 @@ def test_a_flange_made_thicker_into_its_web_is_named() -> None:
     ]
     (fault,) = faults(block)  # 10 wide, 10 deep: from 20 to 30
     assert (fault.part, fault.fault) == ("web", "covers 100 together with bottom")
+
+
+def test_plates_side_by_side_are_judged_without_the_drawing_library() -> None:
+    command = (
+        "import sys; from cellsection.catalogue import CATALOGUE;"
+        "rows = (('shape', 'b', 'h', 'y'), ('rectangle', 10., 400., 0.), ('rectangle', 200., 20., 210.));"
+        "assert CATALOGUE['CS_FAULTS'].call(rows) == 'no faults';"
+        "assert 'shapely' not in sys.modules;"
+        "loose = (*rows, ('rectangle', 200., 20., 300.));"
+        "assert 'not connected' in CATALOGUE['CS_FAULTS'].call(loose)[0][1];"
+        "assert 'shapely' in sys.modules"
+    )
+    subprocess.run([sys.executable, "-c", command], check=True)
