@@ -147,6 +147,8 @@ def host_call(compiler: Compiler, node: Call, function: Callable[..., Any]) -> C
                     value = value[0][0]
             if isinstance(value, ErrorValue):
                 return value
+            if isinstance(value, tuple) and value and isinstance(value[0], CellArea):
+                return VALUE  # areas joined by a union are no one range
             if isinstance(value, tuple):
                 for row in value:
                     for each in row:

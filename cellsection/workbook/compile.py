@@ -320,7 +320,10 @@ class Compiler:
             "#totals": (bottom, bottom),
         }
         if "#this row" in items:
-            return lambda m: CellArea(m, index, m.row, first, m.row, last)
+            inside = range(body[0], body[1] + 1)
+            return lambda m: CellArea(m, index, m.row, first, m.row, last) if m.row in inside else VALUE
+        if "#totals" in items and not table.totals:
+            return lambda m: REF
         chosen = [spans[item] for item in items if item in spans] or [body]
         start, end = min(s[0] for s in chosen), max(s[1] for s in chosen)
         return lambda m: CellArea(m, index, start, first, end, last)

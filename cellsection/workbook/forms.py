@@ -110,7 +110,9 @@ def form_ifs(compiler: Compiler, node: Call, spread: bool) -> Code:
     nodes = arguments(node, 2, None)
     if len(nodes) % 2:
         raise FormulaError("IFS takes pairs of test and value", construct="IFS without a value")
-    pairs = [(compiler.value(nodes[k], False), branch(compiler, nodes[k + 1], spread)) for k in range(0, len(nodes), 2)]
+    pairs = [
+        (compiler.value(nodes[k], spread), branch(compiler, nodes[k + 1], spread)) for k in range(0, len(nodes), 2)
+    ]
 
     def call(m: Machine) -> Any:
         for test, value in pairs:
@@ -127,9 +129,9 @@ def form_ifs(compiler: Compiler, node: Call, spread: bool) -> Code:
 def form_switch(compiler: Compiler, node: Call, spread: bool) -> Code:
     """SWITCH(value, case, result, ..., [default])"""
     nodes = arguments(node, 3, None)
-    subject = compiler.value(nodes[0], False)
+    subject = compiler.value(nodes[0], spread)
     pairs = [
-        (compiler.value(nodes[k], False), branch(compiler, nodes[k + 1], spread)) for k in range(1, len(nodes) - 1, 2)
+        (compiler.value(nodes[k], spread), branch(compiler, nodes[k + 1], spread)) for k in range(1, len(nodes) - 1, 2)
     ]
     default: Code = branch(compiler, nodes[-1], spread) if len(nodes) % 2 == 0 else lambda m: NA
 
@@ -163,11 +165,13 @@ def form_choose(compiler: Compiler, node: Call, spread: bool) -> Code:
         at = index(m)
         if at.__class__ is not tuple:
             return chosen(m, at)
-        if len(at) == 1:  # CHOOSE({1,2}, a, b) puts areas side by side
-            columns = [plain(chosen(m, each)) for each in at[0]]
-            rows = max(width_height(column)[0] for column in columns)
-            return tuple(tuple(element(column, r, 0) for column in columns) for r in range(rows))
-        return spread_over(lambda each: element(plain(chosen(m, each)), 0, 0), (at,))
+        if len(at) > 1:
+            raise Unsupported("CHOOSE over an upright array")
+        columns = [plain(chosen(m, each)) for each in at[0]]  # CHOOSE({1,2}, a, b) puts areas side by side
+        if any(width_height(column)[1] > 1 for column in columns):
+            raise Unsupported("CHOOSE over areas of several columns")
+        rows = max(width_height(column)[0] for column in columns)
+        return tuple(tuple(element(column, r, 0) for column in columns) for r in range(rows))
 
     return call
 

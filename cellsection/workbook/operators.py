@@ -6,12 +6,13 @@ from collections.abc import Callable, Sequence
 from math import isfinite
 from typing import TypeAlias
 
-from cellsection.workbook.coercion import DIV0, NA, NUM, compared, number_of, text_of
+from cellsection.workbook.coercion import DIV0, NA, NUM, VALUE, compared, number_of, text_of
 from cellsection.workbook.values import Array, ErrorValue, Scalar
 
 __all__ = ["BINARY", "element", "negative", "per_cent", "snapped", "spread", "width_height"]
 
 Result: TypeAlias = Scalar | Array
+LONGEST_TEXT = 32_767  # characters that a cell can hold
 
 
 def numbers(a: Scalar, b: Scalar) -> tuple[float, float] | ErrorValue:
@@ -84,7 +85,7 @@ def joined(a: Scalar, b: Scalar) -> Scalar:
     y = text_of(b)
     if isinstance(y, ErrorValue):
         return y
-    return x + y
+    return x + y if len(x) + len(y) <= LONGEST_TEXT else VALUE
 
 
 def comparison(holds: Callable[[int], bool]) -> Callable[[Scalar, Scalar], Scalar]:

@@ -11,7 +11,7 @@ from typing import Any
 from cellsection.errors import FormulaError
 from cellsection.workbook.book import Book, Formula, Limits, Sheet, column_letters
 from cellsection.workbook.calls import given_back
-from cellsection.workbook.coercion import NA, VALUE
+from cellsection.workbook.coercion import NA, SPILL, VALUE
 from cellsection.workbook.compile import Compiled, Compiler, intersected
 from cellsection.workbook.machine import CellArea, Machine, Pending, Place, Special, Taint, Unsupported
 from cellsection.workbook.relative import relative_key, shown_text
@@ -131,6 +131,11 @@ class Driver:
         except Unsupported as finding:
             machine.settle_saved(index, position, Taint(Status.UNSUPPORTED, finding.construct))
             return
+        except (TypeError, ValueError, AttributeError, LookupError, ArithmeticError) as fault:
+            # A fault of the evaluator spoils this cell and what depends on it, not the book; it is reported.
+            construct = f"this formula ({type(fault).__name__}: {fault})"
+            machine.settle_saved(index, position, Taint(Status.UNSUPPORTED, construct))
+            return
         except RecursionError:
             machine.settle_saved(index, position, Taint(Status.UNSUPPORTED, "formula nested too deeply"))
             return
@@ -177,6 +182,9 @@ class Driver:
         if formula.dynamic:
             area = (row, column, row + rows - 1, column + columns - 1)
         store, owners = machine.stores[index], machine.owners[index]
+        places = ((r, c) for r in range(area[0], area[2] + 1) for c in range(area[1], area[3] + 1))
+        if formula.dynamic and any(p in store and owners.get(p, p) != (row, column) for p in places):
+            array, rows, columns, area = ((SPILL,),), 1, 1, (row, column, row, column)
         for r in range(area[0], area[2] + 1):
             for c in range(area[1], area[3] + 1):
                 i, j = (0 if rows == 1 else r - row), (0 if columns == 1 else c - column)

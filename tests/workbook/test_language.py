@@ -7,9 +7,12 @@ from pathlib import Path
 import pytest
 
 from cellsection.errors import FormulaError
+from cellsection.workbook.book import Book, Formula, Sheet
 from cellsection.workbook.grammar import parsed
 from cellsection.workbook.nodes import Binary, Call, Join, Missing, Name, Reference, Structured, Unary
+from cellsection.workbook.recalculate import recalculated
 from cellsection.workbook.relative import moved_text, relative_key
+from cellsection.workbook.results import Status
 from tests.workbook.small import results
 
 COLUMN = {"A1": 1.0, "A2": 2.0, "A3": 3.0}
@@ -232,3 +235,33 @@ STEEL = {"A1": "S355", "A2": "S275", "A3": "S355", "A4": "S355", "B1": 12.0, "B2
 )
 def test_arrays_written_out_are_arrays_in_ordinary_cells_too(tmp_path: Path, formula: str, value: object) -> None:
     assert results(tmp_path, {**STEEL, "D7": "=" + formula})["D7"] == value
+
+
+@pytest.mark.parametrize(
+    "formula", ["SUM(SWITCH(A1:A3,1,B1:B3,0))", "SUM(IFS(A1:A3>0,B1:B3))", "SUM(CHOOSE(A1:A3,B1:B3,1,2))"]
+)
+def test_a_choice_over_an_array_is_reported_and_not_guessed(tmp_path: Path, formula: str) -> None:
+    cells = {**COLUMN, "B1": 5.0, "B2": 6.0, "B3": 7.0, "C1": "{=" + formula + "}C1:C1"}
+    assert results(tmp_path, cells).cells["C1"].status is Status.UNSUPPORTED
+
+
+def test_a_union_is_no_range_for_a_host_function(tmp_path: Path) -> None:
+    found = results(tmp_path, {"A1": 1.0, "B1": "=CS_X((A1,A2))", "B2": "=1+1"}, resolve=lambda _name: lambda *_: 1.0)
+    assert (found["B1"], found["B2"]) == ("#VALUE!", 2.0)
+
+
+def test_a_function_where_a_value_should_be_spoils_its_own_cell_only(tmp_path: Path) -> None:
+    found = results(tmp_path, {"A1": "=1+_xlfn.LAMBDA(_xlpm.x,_xlpm.x)", "A2": "=1+1"})
+    assert found.cells["A1"].status is Status.UNSUPPORTED
+    assert found["A2"] == 2.0
+
+
+def test_a_text_longer_than_a_cell_holds_is_an_error(tmp_path: Path) -> None:
+    assert results(tmp_path, {"A1": '=REPT("a",32767)&"b"'})["A1"] == "#VALUE!"
+
+
+def test_a_result_that_would_cover_an_occupied_cell_does_not_spill() -> None:
+    sheet = Sheet("S", {(2, 1): 9.0})
+    sheet.formulas[1, 1] = Formula("SEQUENCE(3)", 1, 1, kind="array", area=(1, 1, 1, 1), dynamic=True)
+    (cell,) = recalculated(Book("book", "xlsx", [sheet])).cells
+    assert str(cell.value) == "#SPILL!"
