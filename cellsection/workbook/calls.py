@@ -4,63 +4,77 @@ from __future__ import annotations
 
 from collections.abc import Callable
 from math import isfinite
-from typing import TYPE_CHECKING, Any
+from typing import TYPE_CHECKING, Any, TypeAlias
 
 from cellsection.errors import FormulaError, InputError
+from cellsection.workbook.addresses import LAST_COLUMN, LAST_ROW
+from cellsection.workbook.areas import CellArea, as_array, is_union, narrowed
 from cellsection.workbook.builtins.registry import Builtin, ErrorResult
 from cellsection.workbook.coercion import NUM, VALUE, logical_of, number_of, text_of
-from cellsection.workbook.machine import CellArea, Machine, Taint, Unsupported
+from cellsection.workbook.machine import Code, Machine, Taint, Unsupported
 from cellsection.workbook.nodes import Call, Missing
 from cellsection.workbook.operators import spread as spread_over
 from cellsection.workbook.results import Status
-from cellsection.workbook.values import ErrorValue
+from cellsection.workbook.values import Array, ErrorValue
 
 if TYPE_CHECKING:
-    from cellsection.workbook.compile import Code, Compiler
+    from cellsection.workbook.compile import Compiler
 
-__all__ = ["builtin_call", "host_call"]
+__all__ = ["builtin_call", "given_back", "host_call"]
+
+Taker: TypeAlias = Callable[[Any], Any]  # turns what was found into what the function wants, or into an error value
 
 EMPTY = {"number": 0.0, "text": "", "logical": False}
 SCALAR_KINDS = frozenset(("number", "text", "logical", "value", "any"))
-
-
-def taken(kind: str, value: Any) -> Any:
-    """A single value as a declared argument takes it; an error value comes back as itself."""
-    if kind == "number":
-        return value if value.__class__ is float else number_of(value)
-    if kind == "text":
-        return text_of(value)
-    if kind == "logical":
-        return logical_of(value)
-    return value
+TAKERS: dict[str, Taker] = {"number": number_of, "text": text_of, "logical": logical_of}
 
 
 def given_back(result: Any) -> Any:
-    """What a builtin returns as the evaluator keeps it: numbers are finite floats."""
-    if result.__class__ is float:
-        return result if isfinite(result) else NUM
-    if result.__class__ is int:
+    """What a function returns as the evaluator keeps it: numbers are finite floats."""
+    kind = result.__class__
+    if kind is float:
+        return result if result - result == 0.0 else NUM
+    if kind is int:
         return float(result)
+    if kind is tuple and not is_union(result):
+        proper = (str, bool, None.__class__, ErrorValue)
+        for row in result:
+            if any(x - x != 0.0 if x.__class__ is float else x.__class__ not in proper for x in row):
+                return tuple(tuple(map(given_back, each)) for each in result)
     return result
 
 
-def constantly(value: Any) -> Code:
-    """Code that gives one value."""
-    return lambda m: value
+def reference_of(value: Any) -> Any:
+    """What a function that takes a reference is passed: an area or several, an error value where there is none."""
+    if value.__class__ is CellArea or value.__class__ is ErrorValue or is_union(value):
+        return value
+    return VALUE
 
 
-def builtin_call(compiler: Compiler, declared: Builtin, node: Call, spread: bool) -> Code:
-    """Code for a call of a builtin. A wrong number of arguments raises FormulaError."""
-    from cellsection.workbook.compile import as_array
+def array_of(value: Any) -> Any:
+    """What a function that takes an array is passed."""
+    return value if value.__class__ is tuple and not is_union(value) else as_array(value)
 
-    given = len(node.arguments)
-    if given < declared.least or (declared.most is not None and given > declared.most):
-        most = "any number of" if declared.most is None else f"at most {declared.most}"
+
+def same(value: Any) -> Any:
+    """A value as it is."""
+    return value
+
+
+def check_count(name: str, given: int, least: int, most: int | None) -> None:
+    """A wrong number of arguments raises FormulaError."""
+    if given < least or (most is not None and given > most):
+        upper = "any number of" if most is None else f"at most {most}"
         raise FormulaError(
-            f"{declared.name} takes at least {declared.least} and {most} arguments, not {given}",
-            construct=f"{declared.name} with {given} arguments",
+            f"{name} takes at least {least} and {upper} arguments, not {given}",
+            construct=f"{name} with {given} arguments",
         )
-    kinds = [declared.kind(k) for k in range(given)]
+
+
+def builtin_call(compiler: Compiler, declared: Builtin, node: Call, spread: bool, as_value: bool) -> Code:
+    """Code for a call of a builtin. A wrong number of arguments raises FormulaError."""
+    check_count(declared.name, len(node.arguments), declared.least, declared.most)
+    kinds = [declared.kind(k) for k in range(len(node.arguments))]
     codes: list[Code] = []
     for kind, argument in zip(kinds, node.arguments, strict=True):
         if isinstance(argument, Missing):
@@ -69,22 +83,39 @@ def builtin_call(compiler: Compiler, declared: Builtin, node: Call, spread: bool
             codes.append(compiler.value(argument, spread))
         else:
             codes.append(compiler.operand(argument, spread or kind in ("array", "table")))
-    function, wants_context = declared.call, declared.context
-    scalar_at = [k for k, kind in enumerate(kinds) if kind in SCALAR_KINDS]
-    passes = [kind == "any" for kind in kinds]
-    name = declared.name
+    work = protected(compiler.machine, declared, kinds)
+    call = lifted(work, codes, kinds)
+    if not as_value:
+        return call
+    return compiler.read(call, True) if spread else reading(call)
 
-    def once(m: Machine, values: list[Any]) -> Any:
-        """The call proper: single values coerced, errors passed on."""
-        arguments: list[Any] = [m] if wants_context else []
-        for kind, value, passing in zip(kinds, values, passes, strict=True):
-            if kind in SCALAR_KINDS:
-                value = taken(kind, value)
-                if not passing and value.__class__ is ErrorValue:
-                    return value
-            arguments.append(value)
+
+def protected(machine: Machine, declared: Builtin, kinds: list[str]) -> Callable[[list[Any]], Any]:
+    """The call proper, for single values: arguments taken as declared, errors passed on, a proper result given back."""
+    function, name = declared.call, declared.name
+    # place of an argument, what turns it into what is declared, whether a number is that already, whether errors stop
+    steps: list[tuple[int, Taker, bool, bool]] = []
+    for place, kind in enumerate(kinds):
+        if kind in SCALAR_KINDS:
+            if kind != "any":
+                steps.append((place, TAKERS.get(kind, same), kind in ("number", "value"), True))
+        elif kind in ("array", "reference"):
+            steps.append((place, array_of, False, False) if kind == "array" else (place, reference_of, False, True))
+    before: tuple[Any, ...] = (machine,) if declared.context else ()
+    volatile = Taint(Status.VOLATILE, f"{name} changes from one calculation to the next") if declared.volatile else None
+
+    def work(values: list[Any]) -> Any:
+        for place, take, number_is, stops in steps:
+            value = values[place]
+            if number_is and value.__class__ is float:
+                continue
+            value = values[place] = take(value)
+            if stops and value.__class__ is ErrorValue:
+                return value
+        if volatile is not None:
+            machine.stain(volatile)
         try:
-            return given_back(function(*arguments))
+            result = function(*before, *values)
         except ErrorResult as stop:
             return stop.error
         except OverflowError:
@@ -92,75 +123,107 @@ def builtin_call(compiler: Compiler, declared: Builtin, node: Call, spread: bool
         except (ArithmeticError, ValueError, TypeError, LookupError, AttributeError) as problem:
             # A fault of the builtin, not of the book: reported as what it is, never as a value.
             raise Unsupported(f"function {name} with these arguments ({problem})") from problem
+        return result if result.__class__ is bool or result.__class__ is str else given_back(result)
 
-    def call(m: Machine) -> Any:
-        values: list[Any] = []
-        lifted = False
-        for kind, code in zip(kinds, codes, strict=True):
-            value = code(m)
-            if kind in SCALAR_KINDS:
-                lifted = lifted or value.__class__ is tuple
-            elif kind == "array":
-                value = (
-                    value
-                    if value.__class__ is tuple and not (value and value[0].__class__ is CellArea)
-                    else as_array(value)
-                )
-            elif kind == "reference" and not isinstance(value, CellArea):
-                if isinstance(value, ErrorValue):
-                    return value
-                if not (isinstance(value, tuple) and value and isinstance(value[0], CellArea)):
-                    return VALUE
-            values.append(value)
-        if declared.volatile:
-            m.stain(Taint(Status.VOLATILE, f"{name} changes from one calculation to the next"))
-        if not lifted:
-            return once(m, values)
+    return work
+
+
+def constantly(value: Any) -> Code:
+    """Code that gives one value."""
+    return lambda k: value
+
+
+def reading(call: Code) -> Code:
+    """A call whose result is wanted as one value."""
+
+    def run(k: int) -> Any:
+        result = call(k)
+        return narrowed(k, result) if result.__class__ is CellArea or result.__class__ is tuple else result
+
+    return run
+
+
+def lifted(work: Callable[[list[Any]], Any], codes: list[Code], kinds: list[str]) -> Code:
+    """The call as a whole; made for each element where an argument that takes a single value meets an array."""
+    scalar_at = [place for place, kind in enumerate(kinds) if kind in SCALAR_KINDS]
+    if not scalar_at:
+        return lambda k: work([code(k) for code in codes])
+
+    def run(k: int) -> Any:
+        values = [code(k) for code in codes]
+        for place in scalar_at:
+            if values[place].__class__ is tuple:
+                break
+        else:
+            return work(values)
 
         def element(*parts: Any) -> Any:
-            now = list(values)
-            for k, part in zip(scalar_at, parts, strict=True):
-                now[k] = part
-            result = once(m, now)
-            if isinstance(result, CellArea):
-                result = result.value(1, 1)
-            return result[0][0] if isinstance(result, tuple) else result
+            now = values.copy()
+            for place, part in zip(scalar_at, parts, strict=True):
+                now[place] = part
+            result = work(now)
+            if result.__class__ is CellArea:
+                return result.value(1, 1)
+            return result[0][0] if result.__class__ is tuple and result else result
 
-        return spread_over(element, [values[k] for k in scalar_at])
+        return spread_over(element, [values[place] for place in scalar_at])
 
-    return call
+    return run
+
+
+# ---- the host's functions
 
 
 def host_call(compiler: Compiler, node: Call, function: Callable[..., Any]) -> Code:
-    """Code for a call of a function the host hands in; its InputError becomes an error value that says why."""
-    codes = [compiler.operand(argument, True) for argument in node.arguments]
-    name = node.name
+    """Code for a call of a function the host hands in; its InputError becomes an error value that says why.
 
-    def call(m: Machine) -> Any:
+    The function is passed numbers, texts, logicals, None for a blank, and tuples of row tuples of these; an error value
+    among them goes first, without a call.
+    """
+    codes = [compiler.operand(argument, True) for argument in node.arguments]
+    machine, name = compiler.machine, node.name
+
+    def run(k: int) -> Any:
         arguments: list[Any] = []
         for code in codes:
-            value = code(m)
-            if isinstance(value, CellArea):
-                whole = value.bottom - value.top >= 1_048_575 or value.right - value.left >= 16_383
-                value = value.values() if whole else value.whole()
-                if len(value) == 1 and len(value[0]) == 1:
-                    value = value[0][0]
-            if isinstance(value, ErrorValue):
-                return value
-            if isinstance(value, tuple) and value and isinstance(value[0], CellArea):
-                return VALUE  # areas joined by a union are no one range
-            if isinstance(value, tuple):
-                for row in value:
-                    for each in row:
-                        if each.__class__ is ErrorValue:
-                            return each
+            value = handed_over(code(k))
+            error = first_error(value) if value.__class__ is tuple else value
+            if error.__class__ is ErrorValue:
+                return error
             arguments.append(value)
         try:
-            return given_back(function(*arguments))
+            return received(function(*arguments))
         except InputError as problem:
-            return ErrorValue("#VALUE!", f"{name}: {problem}", m.address(m.sheet, (m.row, m.column)))
+            return ErrorValue("#VALUE!", f"{name}: {problem}", machine.address(machine.sheet, k))
         except Exception as fault:
             # A fault of the function spoils its own cell and what depends on it, not the whole book; it is reported.
             raise Unsupported(f"{name} fails at this input ({type(fault).__name__}: {fault})") from fault
 
-    return call
+    return run
+
+
+def handed_over(value: Any) -> Any:
+    """An argument as the host's function is passed it: full shape, whole columns and rows clipped to what is used."""
+    if value.__class__ is CellArea:
+        if value.single:
+            return value.value(1, 1)
+        rows, columns = value.shape
+        return (value.values() or ((None,),)) if rows == LAST_ROW or columns == LAST_COLUMN else value.whole()
+    return VALUE if is_union(value) or callable(value) else value
+
+
+def first_error(rows: Array) -> ErrorValue | None:
+    """The first error value in an array, row by row."""
+    if not any(ErrorValue in set(map(type, row)) for row in rows):
+        return None
+    return next(cell for row in rows for cell in row if isinstance(cell, ErrorValue))
+
+
+def received(result: Any) -> Any:
+    """What the host's function gave: a single value or rows of them, numbers as finite floats."""
+    if isinstance(result, (tuple, list)):
+        return tuple(tuple(received(cell) for cell in row) for row in result)
+    if isinstance(result, (bool, str)) or result is None:
+        return result
+    number = float(result)
+    return number if isfinite(number) else NUM

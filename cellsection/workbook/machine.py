@@ -8,24 +8,26 @@ can form a circle, and chains of any length need no recursion.
 from __future__ import annotations
 
 import time
-from collections.abc import Callable, Iterable, Iterator
+from collections.abc import Callable
 from dataclasses import dataclass
 from datetime import datetime
-from typing import TYPE_CHECKING, Any, TypeAlias
+from typing import Any, TypeAlias
 
-from cellsection.errors import FormulaError
-from cellsection.workbook.book import Book, Bounds, Formula, Limits, Position, column_letters
+from cellsection.workbook.addresses import LAST_COLUMN, LAST_ROW, address
+from cellsection.workbook.areas import CellArea
+from cellsection.workbook.book import Book, Bounds, Formula, Limits, Position
 from cellsection.workbook.coercion import REF
+from cellsection.workbook.keys import ACROSS, DOWN, SHIFT, cell_key, keys_of, position
 from cellsection.workbook.relative import shown_text
 from cellsection.workbook.results import Status
 from cellsection.workbook.values import Array, ErrorValue, Scalar
 
-if TYPE_CHECKING:
-    from cellsection.workbook.compile import Code
+__all__ = ["PENDING", "Code", "Machine", "Pending", "Place", "Resolve", "Special", "Taint", "TimeUp", "Unsupported"]
 
-__all__ = ["CellArea", "Machine", "Pending", "Special", "Taint", "Unsupported"]
-
-Place: TypeAlias = tuple[int, Position]  # index of the sheet, row and column
+Place: TypeAlias = tuple[int, int]  # index of the sheet, key of the cell
+Code: TypeAlias = Callable[[int], Any]  # a compiled formula or part of one: from the key of its cell to its value
+Resolve: TypeAlias = Callable[[str], "Callable[..., object] | None"]
+KEPT_FROM, KEPT_CELLS = 64, 4_000_000  # areas of at least this size are kept once read, this many cells in all
 
 
 class Pending(Exception):  # noqa: N818 - a formula on hold, not a fault
@@ -42,6 +44,10 @@ class Unsupported(Exception):  # noqa: N818 - a finding, not a fault of the prog
     def __init__(self, construct: str) -> None:
         super().__init__(construct)
         self.construct = construct
+
+
+class TimeUp(Exception):  # noqa: N818 - a finding, not a fault of the program
+    """The time allowed for a book is used up."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -63,155 +69,92 @@ class Special:
 
 PENDING = Special()
 WEIGHT = {Status.VOLATILE: 1, Status.NOT_VERIFIED: 2, Status.CYCLE: 3, Status.UNSUPPORTED: 4}
-Store: TypeAlias = dict[Position, "Scalar | Special"]
-
-
-class CellArea:
-    """A rectangle of cells; see values.Area for the promise."""
-
-    __slots__ = ("bottom", "index", "left", "machine", "right", "top")
-
-    def __init__(self, machine: Machine, index: int, top: int, left: int, bottom: int, right: int) -> None:
-        self.machine, self.index = machine, index
-        self.top, self.left, self.bottom, self.right = top, left, bottom, right
-
-    @property
-    def sheet(self) -> str:
-        """Name of the sheet."""
-        return self.machine.names[self.index]
-
-    @property
-    def shape(self) -> tuple[int, int]:
-        """Rows and columns as written."""
-        return (self.bottom - self.top + 1, self.right - self.left + 1)
-
-    def value(self, row: int, column: int) -> Scalar:
-        """The value at row, column of the area, counted from 1."""
-        return self.machine.cell(self.index, (self.top + row - 1, self.left + column - 1))
-
-    def values(self) -> Array:
-        """The values, clipped to the used area of the sheet."""
-        return self.machine.area_values(self.index, self.top, self.left, self.bottom, self.right)
-
-    def whole(self) -> Array:
-        """The values in the full shape, blanks where the sheet ends."""
-        rows, columns = self.shape
-        values = self.values()
-        if len(values) == rows and (not values or len(values[0]) == columns):
-            return values
-        self.machine.check_size(rows * columns)
-        width = len(values[0]) if values else 0
-        padded = [row + (None,) * (columns - width) for row in values]
-        return (*padded, *(((None,) * columns,) * (rows - len(padded))))
-
-    def cells(self) -> Iterator[Scalar]:
-        """The values row by row."""
-        for row in self.values():
-            yield from row
-
-    def resized(self, rows: int, columns: int) -> CellArea:
-        """The area of another size from the same first cell."""
-        return CellArea(self.machine, self.index, self.top, self.left, self.top + rows - 1, self.left + columns - 1)
-
-    def part(self, row: int, column: int) -> CellArea:
-        """One row, one column or one cell of the area, counted from 1; 0 means all of them."""
-        top, bottom = (self.top + row - 1,) * 2 if row else (self.top, self.bottom)
-        left, right = (self.left + column - 1,) * 2 if column else (self.left, self.right)
-        return CellArea(self.machine, self.index, top, left, bottom, right)
+Store: TypeAlias = dict[int, Any]
 
 
 class Machine:
-    """All cells of a book under recalculation."""
+    """All cells of a book under recalculation. It is the Context that builtins are passed, see builtins/registry.
 
-    def __init__(
-        self, book: Book, resolve: Callable[[str], Callable[..., object] | None] | None, limits: Limits
-    ) -> None:
+    spills : areas that dynamic formulas are known to fill beyond what the file says, by the place of the formula
+    """
+
+    def __init__(self, book: Book, resolve: Resolve | None, limits: Limits, spills: dict[Place, Bounds]) -> None:
         self.book, self.resolve, self.limits = book, resolve, limits
         self.names = [sheet.name for sheet in book.sheets]
         self.sheet_index = {sheet.name.casefold(): k for k, sheet in enumerate(book.sheets)}
         self.stores: list[Store] = []
-        self.owners: list[dict[Position, Position]] = []  # cells of an array formula's area -> its first cell
-        self.extent: list[tuple[int, int]] = []
-        for sheet in book.sheets:
+        self.formulas: list[dict[int, Formula]] = []
+        self.owners: list[dict[int, int]] = []  # cells of an array formula's area -> its first cell
+        self.extent: list[Position] = []
+        for index, sheet in enumerate(book.sheets):
             self.add_sheet(sheet.values, sheet.formulas)
-        self.own: Store = {}
-        self.sheet, self.row, self.column = 0, 1, 1
-        self.formula: Formula | None = None
+            for key, formula in self.formulas[index].items():
+                if area := spills.get((index, key), formula.area if formula.kind == "array" else None):
+                    self.own_area(index, key, area)
+        self.sheet, self.key = 0, cell_key(1, 1)
         self.taint: Taint | None = None
-        self.notes: set[str] = set()
-        self.code: dict[object, Code] = {}
         self.whole: dict[Place, Array] = {}  # what a formula gave, where that is more than its own cell shows
-        self.filled: dict[tuple[int, Position], Bounds] = {}  # first cell of an array formula -> the area it fills
-        self.areas: dict[tuple[int, Bounds], tuple[Array, Taint | None]] = {}
-        self.cached_cells = 0
+        self.filled: dict[Place, Bounds] = {}  # first cell of an array formula -> the area it fills
+        self.areas: dict[tuple[int, int, int, int, int], tuple[Array, Taint | None]] = {}
+        self.kept_cells = 0
+        self.references: dict[tuple[int, str], Code | None] = {}  # texts that INDIRECT has read
         self.deadline = time.monotonic() + limits.seconds
         self.started = datetime.now()
 
-    def add_sheet(self, values: dict[Position, Scalar], formulas: dict[Position, Formula]) -> None:
-        """A sheet's cells: constants stand, formula cells and the areas of array formulas wait."""
-        store: Store = dict(values)
-        owners: dict[Position, Position] = {}
-        bottom = max((position[0] for position in values), default=0)
-        right = max((position[1] for position in values), default=0)
-        for position, formula in formulas.items():
-            store[position] = PENDING
-            bottom, right = max(bottom, position[0]), max(right, position[1])
-            if formula.kind == "array" and formula.area:
-                top, left, last, end = formula.area
-                if (last - top + 1) * (end - left + 1) > self.limits.array_cells:
-                    continue
-                bottom, right = max(bottom, last), max(right, end)
-                for row in range(top, last + 1):
-                    for column in range(left, end + 1):
-                        if (row, column) not in formulas:
-                            owners[row, column] = position
-                            store[row, column] = PENDING
+    def add_sheet(self, values: dict[Position, Scalar], formulas: dict[Position, Formula]) -> int:
+        """A sheet's cells: constants stand, formula cells wait. Gives its index."""
+        store: Store = {(row << SHIFT) + column: value for (row, column), value in values.items()}
+        waiting = {(row << SHIFT) + column: formula for (row, column), formula in formulas.items()}
+        store.update(dict.fromkeys(waiting, PENDING))
         self.stores.append(store)
-        self.owners.append(owners)
-        self.extent.append((bottom, right))
+        self.formulas.append(waiting)
+        self.owners.append({})
+        self.extent.append((max(store) >> SHIFT, max(map(ACROSS.__and__, store))) if store else (0, 0))
+        return len(self.stores) - 1
 
-    # ---- states of a cell
+    def own_area(self, index: int, first: int, area: Bounds) -> None:
+        """The cells an array formula fills wait for it; cells with a formula of their own do not."""
+        top, left, bottom, right = area
+        if (bottom - top + 1) * (right - left + 1) > self.limits.array_cells:
+            return
+        formulas, owners = self.formulas[index], self.owners[index]
+        cells = [key for key in keys_of(area) if key not in formulas]
+        owners.update(dict.fromkeys(cells, first))
+        self.stores[index].update(dict.fromkeys(cells, PENDING))
+        last, end = self.extent[index]
+        self.extent[index] = (max(last, bottom), max(end, right))
 
-    @staticmethod
-    def is_pending(value: object) -> bool:
-        """Whether a cell still waits to be computed."""
-        return value is PENDING
-
-    def settle_saved(self, index: int, position: Position, taint: Taint) -> None:
+    def settle_saved(self, index: int, key: int, taint: Taint) -> None:
         """A cell that cannot be recalculated, and the area its array formula fills, keep their saved values."""
-        store, saved = self.stores[index], self.book.sheets[index].values
-        store[position] = Special(saved.get(position), taint)
-        area = self.book.sheets[index].formulas[position].area
-        if area is not None:
-            owners, (top, left, bottom, right) = self.owners[index], area
-            for filled in ((r, c) for r in range(top, bottom + 1) for c in range(left, right + 1)):
-                if owners.get(filled) == position:
-                    store[filled] = Special(saved.get(filled), taint)
+        saved, owners = self.book.sheets[index].values, self.owners[index]
+        area = self.formulas[index][key].area
+        for each in (key, *(other for other in (keys_of(area) if area else ()) if owners.get(other) == key)):
+            self.stores[index][each] = Special(saved.get((each >> SHIFT, each & ACROSS)), taint)
 
     # ---- reading
 
-    def cell(self, index: int, position: Position) -> Scalar:
+    def cell(self, index: int, key: int) -> Scalar:
         """The value of a cell; raises Pending where it is not computed yet."""
-        value = self.stores[index].get(position)
+        value = self.stores[index].get(key)
         if value.__class__ is Special:
-            return self.special(index, position, value)
-        return value  # type: ignore[return-value]
+            return self.special(index, key, value)
+        return value
 
-    def special(self, index: int, position: Position, value: Special) -> Scalar:
+    def special(self, index: int, key: int, value: Special) -> Scalar:
         """A cell that is pending (raises Pending) or tainted (the formula takes the taint over)."""
         if value is PENDING:
-            raise Pending([(index, position)])
-        self.touch(index, position, value.taint)
+            raise Pending([(index, key)])
+        self.touch(index, key, value.taint)
         return value.value
 
-    def touch(self, index: int, position: Position, taint: Taint | None) -> None:
+    def touch(self, index: int, key: int, taint: Taint | None) -> None:
         """The running formula depends on a tainted cell."""
         if taint is None:
             return
         if taint.status is Status.VOLATILE or taint.status is Status.NOT_VERIFIED:
             self.stain(taint)
         else:
-            self.stain(Taint(Status.NOT_VERIFIED, f"depends on {self.address(index, position)}: {taint.reason}"))
+            self.stain(Taint(Status.NOT_VERIFIED, f"depends on {self.address(index, key)}: {taint.reason}"))
 
     def stain(self, taint: Taint) -> None:
         """Note why the running formula's value is not a plain one; the weightier reason stays."""
@@ -224,66 +167,87 @@ class Machine:
         bottom, right = min(bottom, last), min(right, end)
         if bottom < top or right < left:
             return ()
-        key = (index, (top, left, bottom, right))
+        cells = (bottom - top + 1) * (right - left + 1)
+        if cells < KEPT_FROM:
+            return self.read_area(index, top, left, bottom, right)
+        key = (index, top, left, bottom, right)
         kept = self.areas.get(key)
-        if kept is not None:
-            if kept[1] is not None:
-                self.stain(kept[1])
-            return kept[0]
-        self.check_size((bottom - top + 1) * (right - left + 1))
-        rows, filled = self.read_rows(index, top, left, bottom, right)
+        if kept is None:
+            self.check_size(cells)
+            self.check_time()
+            outer, self.taint = self.taint, None
+            try:
+                array = self.read_area(index, top, left, bottom, right)
+            finally:
+                taint, self.taint = self.taint, outer
+            kept = (array, taint)
+            if self.kept_cells < KEPT_CELLS:
+                self.kept_cells += cells
+                self.areas[key] = kept
+        if kept[1] is not None:
+            self.stain(kept[1])
+        return kept[0]
+
+    def read_area(self, index: int, top: int, left: int, bottom: int, right: int) -> Array:
+        """A rectangle with its special cells resolved; a mostly blank one is read by what the store holds of it."""
+        store, width, height = self.stores[index], right - left + 1, bottom - top + 1
+        start, stop = (top << SHIFT) + left, (bottom << SHIFT) + left + 1
+        get = store.get
+        if width * height > 20 * len(store) + 1000:
+            lines = rows = sparse_rows(store, top, left, bottom, right)
+        elif height < width:
+            lines = rows = [tuple(map(get, range(first, first + width))) for first in range(start, stop, DOWN)]
+        else:
+            lines = [tuple(map(get, range(start + k, stop + k, DOWN))) for k in range(width)]
+            rows = list(zip(*lines, strict=True))
+        if any(Special in set(map(type, line)) for line in lines):
+            self.resolve_special(index, top, left, rows)
+        return tuple(rows)
+
+    def resolve_special(self, index: int, top: int, left: int, rows: list[tuple[Any, ...]]) -> None:
+        """Put values for the special cells of some rows; raises Pending with all that still wait."""
         pending: list[Place] = []
-        outer, self.taint = self.taint, None
-        for r in filled:
-            values = rows[r]
-            for c, value in enumerate(values):
-                if value.__class__ is Special:
-                    if value is PENDING:
-                        pending.append((index, (top + r, left + c)))
-                    else:
-                        values[c] = self.special(index, (top + r, left + c), value)
-        taint, self.taint = self.taint, outer
+        for r, row in enumerate(rows):
+            if Special not in set(map(type, row)):
+                continue
+            values = list(row)
+            for c, value in enumerate(row):
+                if value is PENDING:
+                    pending.append((index, cell_key(top + r, left + c)))
+                elif value.__class__ is Special:
+                    values[c] = self.special(index, cell_key(top + r, left + c), value)
+            rows[r] = tuple(values)
         if pending:
             raise Pending(pending)
-        array: Array = tuple(map(tuple, rows))
-        if self.cached_cells < 5_000_000:
-            self.cached_cells += len(rows) * (right - left + 1)
-            self.areas[key] = (array, taint)
-        if taint is not None:
-            self.stain(taint)
-        return array
 
-    def read_rows(
-        self, index: int, top: int, left: int, bottom: int, right: int
-    ) -> tuple[list[list[Any]], Iterable[int]]:
-        """What the store holds of a rectangle, and which rows hold anything; a mostly blank one is read sparsely."""
-        store, width, height = self.stores[index], right - left + 1, bottom - top + 1
-        if width * height < 20 * len(store) + 1000:
-            get = store.get
-            columns = range(left, right + 1)
-            return [[get((row, column)) for column in columns] for row in range(top, bottom + 1)], range(height)
-        rows: list[list[Any]] = [[None] * width] * height  # blank rows are one and the same until they hold something
-        touched: set[int] = set()
-        for (row, column), value in store.items():
-            if top <= row <= bottom and left <= column <= right:
-                r = row - top
-                if r not in touched:
-                    touched.add(r)
-                    rows[r] = [None] * width
-                rows[r][column - left] = value
-        return rows, sorted(touched)
+    # ---- caps
 
     def check_size(self, cells: int) -> None:
         """Refuse an array beyond the cap."""
         if cells > self.limits.array_cells:
             raise Unsupported(f"an array of {cells:,} cells (more than {self.limits.array_cells:,})")
 
+    def check_time(self) -> None:
+        """Refuse to go on beyond the time cap."""
+        if time.monotonic() > self.deadline:
+            raise TimeUp
+
     # ---- what builtins ask of their context (registry.Context)
+
+    @property
+    def row(self) -> int:
+        """Row of the running formula."""
+        return self.key >> SHIFT
+
+    @property
+    def column(self) -> int:
+        """Column of the running formula."""
+        return self.key & ACROSS
 
     def area(self, sheet: str, top: int, left: int, bottom: int, right: int) -> CellArea | ErrorValue:
         """An area by sheet name; #REF! where there is no such sheet or the area leaves it."""
         index = self.sheet_index.get(sheet.casefold())
-        if index is None or top < 1 or left < 1 or bottom > 1_048_576 or right > 16_384 or bottom < top or right < left:
+        if index is None or not (1 <= top <= bottom <= LAST_ROW and 1 <= left <= right <= LAST_COLUMN):
             return REF
         return CellArea(self, index, top, left, bottom, right)
 
@@ -304,34 +268,23 @@ class Machine:
 
     def reference(self, text: str, sheet: str) -> Any:
         """The area that a text names, read as a reference typed on the given sheet; #REF! where it names none."""
-        from cellsection.workbook.compile import Compiler
-        from cellsection.workbook.grammar import parsed
-        from cellsection.workbook.nodes import Join, Name, Reference, Structured
+        from cellsection.workbook.compile import reference_code
 
-        language = "openformula" if self.book.format == "ods" and text.startswith("[") else "excel"
-        try:
-            tree = parsed(text.strip().removeprefix("="), 1, 1, language)
-            if isinstance(tree, Reference) and tree.sheet is None and self.book.format == "ods":
-                tree = parsed(text.strip(), 1, 1, language)
-            if not isinstance(tree, (Reference, Join, Name, Structured)):
-                return REF
-            compiler = Compiler(self)
-            compiler.sheet = self.sheet_index[sheet.casefold()]
-            here = (self.row, self.column)
-            self.row, self.column = 1, 1
-            try:
-                found = compiler.operand(tree, True)(self)
-            finally:
-                self.row, self.column = here
-        except FormulaError:
-            return REF
-        area = found[0] if isinstance(found, tuple) and found else found
+        place = (self.sheet_index[sheet.casefold()], text)
+        if place not in self.references:
+            self.references[place] = reference_code(self, *place)
+        code = self.references[place]
+        found = REF if code is None else code(cell_key(1, 1))
+        area = found[0] if found.__class__ is tuple and found else found
         return found if isinstance(area, CellArea) else REF
+
+    def formula_at(self, sheet: str, row: int, column: int) -> Formula | None:
+        """The formula of a cell, None where there is none."""
+        return self.formulas[self.sheet_index[sheet.casefold()]].get(cell_key(row, column))
 
     def has_formula(self, sheet: str, row: int, column: int) -> bool:
         """Whether a cell holds a formula."""
-        index = self.sheet_index[sheet.casefold()]
-        return index < len(self.book.sheets) and (row, column) in self.book.sheets[index].formulas
+        return self.formula_at(sheet, row, column) is not None
 
     def hidden_row(self, sheet: str, row: int) -> bool:
         """Whether a row is hidden."""
@@ -340,14 +293,12 @@ class Machine:
 
     def formula_call(self, sheet: str, row: int, column: int) -> str:
         """Outermost function of a cell's formula, "" where there is none."""
-        index = self.sheet_index[sheet.casefold()]
-        formula = self.book.sheets[index].formulas.get((row, column)) if index < len(self.book.sheets) else None
+        formula = self.formula_at(sheet, row, column)
         return formula.text.partition("(")[0].strip().upper() if formula else ""
 
     def formula_text(self, sheet: str, row: int, column: int) -> str:
         """The formula of a cell as the engineer reads it, "" where there is none."""
-        index = self.sheet_index[sheet.casefold()]
-        formula = self.book.sheets[index].formulas.get((row, column)) if index < len(self.book.sheets) else None
+        formula = self.formula_at(sheet, row, column)
         return shown_text(formula, (row, column)) if formula else ""
 
     def unsupported(self, construct: str) -> None:
@@ -358,11 +309,20 @@ class Machine:
         """When the recalculation began."""
         return self.started
 
-    def address(self, index: int, position: Position) -> str:
+    def address(self, index: int, key: int) -> str:
         """Sheet!A1 as a report shows it."""
-        return f"{self.names[index]}!{column_letters(position[1])}{position[0]}"
+        return f"{self.names[index]}!{address(position(key))}"
 
-    def check_time(self) -> None:
-        """Refuse to go on beyond the time cap."""
-        if time.monotonic() > self.deadline:
-            raise FormulaError(f"the recalculation took more than {self.limits.seconds:g} s", construct="time cap")
+
+def sparse_rows(store: Store, top: int, left: int, bottom: int, right: int) -> list[tuple[Any, ...]]:
+    """A rectangle read by what the store holds; its blank rows are one and the same object."""
+    blank = (None,) * (right - left + 1)
+    rows: list[tuple[Any, ...]] = [blank] * (bottom - top + 1)
+    touched: dict[int, list[Any]] = {}
+    for key, value in store.items():
+        row, column = key >> SHIFT, key & ACROSS
+        if top <= row <= bottom and left <= column <= right:
+            touched.setdefault(row - top, list(blank))[column - left] = value
+    for r, values in touched.items():
+        rows[r] = tuple(values)
+    return rows

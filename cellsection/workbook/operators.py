@@ -9,76 +9,42 @@ from typing import TypeAlias
 from cellsection.workbook.coercion import DIV0, NA, NUM, VALUE, compared, number_of, text_of
 from cellsection.workbook.values import Array, ErrorValue, Scalar
 
-__all__ = ["BINARY", "element", "negative", "per_cent", "snapped", "spread", "width_height"]
+__all__ = ["BINARY", "LONGEST_TEXT", "element", "negative", "per_cent", "snapped", "spread", "width_height"]
 
 Result: TypeAlias = Scalar | Array
-LONGEST_TEXT = 32_767  # characters that a cell can hold
+LONGEST_TEXT = 32_767  # characters in a cell
 
 
-def numbers(a: Scalar, b: Scalar) -> tuple[float, float] | ErrorValue:
-    """Both operands as numbers, or the first error among them."""
-    x = number_of(a)
-    if isinstance(x, ErrorValue):
-        return x
-    y = number_of(b)
-    return y if isinstance(y, ErrorValue) else (x, y)
+def arithmetic(work: Callable[[float, float], Scalar]) -> Callable[[Scalar, Scalar], Scalar]:
+    """An operator on two numbers: what is given is turned into numbers, the left one's error goes first."""
+
+    def apply(a: Scalar, b: Scalar) -> Scalar:
+        x = number_of(a)
+        if isinstance(x, ErrorValue):
+            return x
+        y = number_of(b)
+        if isinstance(y, ErrorValue):
+            return y
+        result = work(x, y)
+        return NUM if isinstance(result, float) and not isfinite(result) else result
+
+    return apply
 
 
-def finite(x: float) -> Scalar:
-    """A result, or #NUM! where it overflowed."""
-    return x if isfinite(x) else NUM
-
-
-def plus(a: Scalar, b: Scalar) -> Scalar:
-    """A + b"""
-    if a.__class__ is float and b.__class__ is float:
-        return finite(a + b)
-    pair = numbers(a, b)
-    return pair if isinstance(pair, ErrorValue) else finite(pair[0] + pair[1])
-
-
-def minus(a: Scalar, b: Scalar) -> Scalar:
-    """A - b"""
-    if a.__class__ is float and b.__class__ is float:
-        return finite(a - b)
-    pair = numbers(a, b)
-    return pair if isinstance(pair, ErrorValue) else finite(pair[0] - pair[1])
-
-
-def times(a: Scalar, b: Scalar) -> Scalar:
-    """A * b"""
-    if a.__class__ is float and b.__class__ is float:
-        return finite(a * b)
-    pair = numbers(a, b)
-    return pair if isinstance(pair, ErrorValue) else finite(pair[0] * pair[1])
-
-
-def over(a: Scalar, b: Scalar) -> Scalar:
-    """A / b"""
-    pair = numbers(a, b)
-    if isinstance(pair, ErrorValue):
-        return pair
-    return finite(pair[0] / pair[1]) if pair[1] else DIV0
-
-
-def power(a: Scalar, b: Scalar) -> Scalar:
-    """A ^ b; 0^0 and fractional powers of negative numbers are #NUM!, 0 to a negative power is #DIV/0!."""
-    pair = numbers(a, b)
-    if isinstance(pair, ErrorValue):
-        return pair
-    x, y = pair
+def power(x: float, y: float) -> Scalar:
+    """X ^ y; 0^0 and fractional powers of negative numbers are #NUM!, 0 to a negative power is #DIV/0!."""
     if x == 0.0 and y <= 0.0:
         return NUM if y == 0.0 else DIV0
     if x < 0.0 and y != int(y):
         return NUM
     try:
-        return finite(x**y)
+        return float(x**y)
     except OverflowError:
         return NUM
 
 
 def joined(a: Scalar, b: Scalar) -> Scalar:
-    """A & b"""
+    """A & b; more than a cell can hold is #VALUE!."""
     x = text_of(a)
     if isinstance(x, ErrorValue):
         return x
@@ -102,11 +68,11 @@ def comparison(holds: Callable[[int], bool]) -> Callable[[Scalar, Scalar], Scala
 
 
 BINARY: dict[str, Callable[[Scalar, Scalar], Scalar]] = {
-    "+": plus,
-    "-": minus,
-    "*": times,
-    "/": over,
-    "^": power,
+    "+": arithmetic(lambda x, y: x + y),
+    "-": arithmetic(lambda x, y: x - y),
+    "*": arithmetic(lambda x, y: x * y),
+    "/": arithmetic(lambda x, y: x / y if y else DIV0),
+    "^": arithmetic(power),
     "&": joined,
     "=": comparison(lambda order: order == 0),
     "<>": comparison(lambda order: order != 0),
@@ -156,15 +122,34 @@ def element(value: Result, row: int, column: int) -> Scalar:
 
 
 def spread(call: Callable[..., Scalar], operands: Sequence[Result]) -> Array:
-    """A function of single values called for every element of the arrays among its operands."""
+    """A function of single values called for every element of the arrays among its operands.
+
+    >>> spread(lambda a, b: a + b, (((1.0, 2.0),), ((10.0,), (20.0,))))
+    ((11.0, 12.0), (21.0, 22.0))
+    """
     shapes = [width_height(operand) for operand in operands if isinstance(operand, tuple)]
     rows, columns = max(shape[0] for shape in shapes), max(shape[1] for shape in shapes)
-    if len(set(shapes)) == 1:
-        if len(operands) == 2 and all(isinstance(operand, tuple) for operand in operands):
-            first, second = operands
-            return tuple(tuple(map(call, a, b)) for a, b in zip(first, second, strict=True))  # type: ignore[arg-type]
-        if len(operands) == 1:
-            return tuple(tuple(map(call, row)) for row in operands[0])  # type: ignore[union-attr]
-    return tuple(
-        tuple(call(*(element(operand, r, c) for operand in operands)) for c in range(columns)) for r in range(rows)
-    )
+    lines = zip(*(stretched(operand, rows, columns) for operand in operands), strict=True)
+    result: list[tuple[Scalar, ...]] = []
+    before: tuple[Sequence[Scalar], ...] = ()
+    for line in lines:
+        # The blank rows behind the used area are one object many times over: what they give is worked out once.
+        alike = len(before) > 0 and all(map(lambda new, old: new is old, line, before))
+        result.append(result[-1] if alike else tuple(map(call, *line)))
+        before = line
+    return tuple(result)
+
+
+def stretched(operand: Result, rows: int, columns: int) -> list[Sequence[Scalar]]:
+    """The rows of an operand as it meets arrays of another size: one row or column repeats, the rest is #N/A."""
+    if not isinstance(operand, tuple):
+        return [(operand,) * columns] * rows
+    wide = len(operand[0]) if operand else 0
+    lines: list[Sequence[Scalar]] = list(operand)
+    if wide == 1 and columns > 1:
+        lines = [line * columns for line in operand]
+    elif wide < columns:
+        lines = [(*line, *((NA,) * (columns - wide))) for line in operand]
+    if len(lines) == 1:
+        return lines * rows
+    return lines + [(NA,) * columns] * (rows - len(lines))

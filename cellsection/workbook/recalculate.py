@@ -2,26 +2,40 @@
 
 from __future__ import annotations
 
+import gc
 import sys
-from collections.abc import Callable, Iterator
-from functools import partial
+from collections.abc import Iterator
+from contextlib import contextmanager
 from pathlib import Path
-from typing import Any
 
 from cellsection.errors import FormulaError
-from cellsection.workbook.book import Book, Formula, Limits, Sheet, column_letters
+from cellsection.workbook.areas import CellArea, intersected, is_union
+from cellsection.workbook.book import Book, Bounds, Formula, Limits
 from cellsection.workbook.calls import given_back
-from cellsection.workbook.coercion import NA, SPILL, VALUE
-from cellsection.workbook.compile import Compiled, Compiler, intersected
-from cellsection.workbook.machine import CellArea, Machine, Pending, Place, Special, Taint, Unsupported
-from cellsection.workbook.relative import relative_key, shown_text
-from cellsection.workbook.results import FormulaCell, Recalculation, Status
-from cellsection.workbook.values import Array, ErrorValue, Scalar
+from cellsection.workbook.coercion import CALC
+from cellsection.workbook.compile import Compiled, Compiler
+from cellsection.workbook.filling import fill, signed
+from cellsection.workbook.machine import (
+    PENDING,
+    Code,
+    Machine,
+    Pending,
+    Place,
+    Resolve,
+    Special,
+    Taint,
+    TimeUp,
+    Unsupported,
+)
+from cellsection.workbook.outcome import formula_cells
+from cellsection.workbook.relative import Key, Pattern, relative_key
+from cellsection.workbook.results import Recalculation, Status
+from cellsection.workbook.values import ErrorValue
 
 __all__ = ["recalculate", "recalculated"]
 
-Resolve = Callable[[str], "Callable[..., object] | None"]
 DEPTH = 6000  # Python frames allowed while a long formula is compiled and run
+ROUNDS = 5  # times a book is begun again because a formula fills more cells than the file says
 
 
 def recalculate(path: str | Path, *, resolve: Resolve | None = None, limits: Limits | None = None) -> Recalculation:
@@ -39,16 +53,39 @@ def recalculate(path: str | Path, *, resolve: Resolve | None = None, limits: Lim
 def recalculated(book: Book, resolve: Resolve | None = None, limits: Limits | None = None) -> Recalculation:
     """Recalculate a book that is already read."""
     limits = limits or Limits()
-    machine = Machine(book, resolve, limits)
+    spills: dict[Place, Bounds] = {}
+    with deep_stack(), uncollected():
+        for _ in range(ROUNDS):
+            driver = Driver(Machine(book, resolve, limits, spills))
+            driver.run()
+            if not driver.grown:
+                break
+            spills |= driver.grown  # cells there may have been read as blank before: begin again, knowing better
+        cells = [cell for index in range(len(book.sheets)) for cell in formula_cells(driver, index)]
+    return Recalculation(book.path, tuple(sheet.name for sheet in book.sheets), cells, list(book.notes))
+
+
+@contextmanager
+def deep_stack() -> Iterator[None]:
+    """Room for formulas that nest deeply; beyond it they are a finding."""
     before = sys.getrecursionlimit()
     sys.setrecursionlimit(max(before, DEPTH))
-    driver = Driver(machine)
     try:
-        driver.run()
+        yield
     finally:
         sys.setrecursionlimit(before)
-    cells = [cell for index, sheet in enumerate(book.sheets) for cell in formula_cells(driver, index, sheet)]
-    return Recalculation(book.path, tuple(s.name for s in book.sheets), cells, [*book.notes, *sorted(machine.notes)])
+
+
+@contextmanager
+def uncollected() -> Iterator[None]:
+    """Without the search for circular garbage, of which a book makes none while its cells are read and computed."""
+    running = gc.isenabled()
+    gc.disable()
+    try:
+        yield
+    finally:
+        if running:
+            gc.enable()
 
 
 class Driver:
@@ -57,161 +94,137 @@ class Driver:
     def __init__(self, machine: Machine) -> None:
         self.machine = machine
         self.compiler = Compiler(machine)
-        self.by_formula: dict[Formula, Compiled] = {}
-        self.by_key: dict[tuple[int, bool, str, str], Compiled] = {}
+        self.by_formula: list[dict[Formula, Compiled]] = [{} for _ in machine.book.sheets]
+        self.by_key: dict[tuple[int, bool, str], dict[Key, Compiled]] = {}
+        self.patterns: dict[tuple[int, int, bool], tuple[Pattern, Compiled]] = {}  # the last form met in each column
         self.open: dict[Place, None] = {}  # started and on hold, in the order they wait for one another
+        self.grown: dict[Place, Bounds] = {}  # areas that turned out larger than the file says
         self.count = 0
 
     def run(self) -> None:
         """Compute all formula cells."""
-        for index, sheet in enumerate(self.machine.book.sheets):
-            store = self.machine.stores[index]
-            for position in sheet.formulas:
-                if self.machine.is_pending(store.get(position)):
-                    self.settle((index, position))
+        machine = self.machine
+        try:
+            for index in range(len(machine.book.sheets)):
+                store, formulas = machine.stores[index], machine.formulas[index]
+                for key, formula in formulas.items():
+                    if store[key] is PENDING:
+                        try:
+                            self.compute(index, key, formula)
+                        except Pending as hold:
+                            self.settle((index, key), hold)
+        except TimeUp:
+            self.give_up()
 
-    def settle(self, place: Place) -> None:
-        """Compute one cell and all it waits for."""
-        machine, stack, waiting = self.machine, [place], self.open
+    def settle(self, place: Place, hold: Pending) -> None:
+        """Compute all that one cell waits for, and the cell itself."""
+        machine, waiting = self.machine, self.open
+        waiting[place] = None
+        stack = [place, *map(self.owning, hold.places)]
         while stack:
             here = stack[-1]
-            index, position = here
-            if not machine.is_pending(machine.stores[index].get(position)):
+            index, key = here
+            if machine.stores[index].get(key) is not PENDING:
                 stack.pop()
+                waiting.pop(here, None)
                 continue
-            owner = machine.owners[index].get(position)
-            if owner is not None:
-                here = (index, owner)
             waiting[here] = None
             try:
-                self.compute(here)
-            except Pending as hold:
-                needed = [self.owning(each) for each in hold.places]
+                self.compute(index, key, machine.formulas[index][key])
+            except Pending as again:
+                needed = [self.owning(each) for each in again.places]
                 circle = next((each for each in needed if each in waiting), None)
                 if circle is None:
                     stack.extend(needed)
-                    continue
-                self.close_circle(circle)
-            waiting.pop(here, None)
+                else:
+                    self.close_circle(circle)
 
     def owning(self, place: Place) -> Place:
         """The cell whose formula fills this one."""
-        index, position = place
-        return (index, self.machine.owners[index].get(position, position))
+        index, key = place
+        return (index, self.machine.owners[index].get(key, key))
 
     def close_circle(self, start: Place) -> None:
         """Cells that wait for one another in a circle keep their saved values and say so."""
-        order = list(self.open)
-        circle = order[order.index(start) :]
+        circle: list[Place] = []
+        for place in reversed(self.open):
+            circle.append(place)
+            if place == start:
+                break
+        circle.reverse()
         names = [self.machine.address(*place) for place in circle]
         shown = names if len(names) <= 12 else [*names[:11], f"... {len(names) - 12} more ...", names[-1]]
         reason = "circular reference " + " -> ".join([*shown, names[0]])
         if self.machine.book.iterate:
             reason += "; the book asks for iterative calculation, which is not carried out"
-        for index, position in circle:
-            self.machine.settle_saved(index, position, Taint(Status.CYCLE, reason))
-            self.open.pop((index, position), None)
+        for index, key in circle:
+            self.machine.settle_saved(index, key, Taint(Status.CYCLE, reason))
+            self.open.pop((index, key), None)
 
-    def compute(self, place: Place) -> None:
-        """Run one formula and keep what it gives."""
+    def give_up(self) -> None:
+        """The time is up: what is not computed keeps its saved value and says so."""
         machine = self.machine
-        index, position = place
-        machine.sheet, machine.own = index, machine.stores[index]
-        machine.row, machine.column = position
-        machine.taint = None
+        reason = f"not reached within the time limit of {machine.limits.seconds:g} s"
+        for index, formulas in enumerate(machine.formulas):
+            for key in formulas:
+                if machine.stores[index][key] is PENDING:
+                    machine.settle_saved(index, key, Taint(Status.NOT_VERIFIED, reason))
+
+    def compute(self, index: int, key: int, formula: Formula) -> None:
+        """Run one formula and keep what it gives. Raises Pending where it needs cells not computed yet."""
+        machine = self.machine
+        machine.sheet, machine.key, machine.taint = index, key, None
         self.count += 1
-        if not self.count % 512:
+        if not self.count % 256:
             machine.check_time()
-        formula = machine.book.sheets[index].formulas[position]
+        compiled = self.by_formula[index].get(formula) or self.compiled(formula, index)
         try:
-            compiled = self.compiled(formula, index)
-            if compiled.fault is not None:
-                raise Unsupported(compiled.fault.construct)
-            value = compiled.run(machine)
+            value = compiled.run(key)
         except Unsupported as finding:
-            machine.settle_saved(index, position, Taint(Status.UNSUPPORTED, finding.construct))
-            return
-        except (TypeError, ValueError, AttributeError, LookupError, ArithmeticError) as fault:
-            # A fault of the evaluator spoils this cell and what depends on it, not the book; it is reported.
-            construct = f"this formula ({type(fault).__name__}: {fault})"
-            machine.settle_saved(index, position, Taint(Status.UNSUPPORTED, construct))
+            machine.settle_saved(index, key, Taint(Status.UNSUPPORTED, finding.construct))
             return
         except RecursionError:
-            machine.settle_saved(index, position, Taint(Status.UNSUPPORTED, "formula nested too deeply"))
+            machine.settle_saved(index, key, Taint(Status.UNSUPPORTED, "formula nested too deeply"))
+            return
+        except (ArithmeticError, ValueError, TypeError, LookupError, AttributeError) as fault:
+            # A fault of this program spoils its own cell and what depends on it, not the whole book; it is reported.
+            what = f"this formula, at which the program fails ({type(fault).__name__}: {fault})"
+            machine.settle_saved(index, key, Taint(Status.UNSUPPORTED, what))
             return
         taint = machine.taint
+        if value.__class__ is float and taint is None and formula.kind == "cell":
+            machine.stores[index][key] = value
+            return
         if taint is not None and taint.status is not Status.VOLATILE:
-            machine.settle_saved(index, position, taint)
+            machine.settle_saved(index, key, taint)
             return
-        if (
-            isinstance(value, tuple)
-            and value
-            and not isinstance(value[0], CellArea)
-            and (len(value) > 1 or len(value[0]) > 1)
-        ):
-            machine.whole[place] = value
-        if formula.kind == "array":
-            self.fill(place, formula, value, taint)
-            return
-        if formula.dynamic and isinstance(value, (tuple, CellArea)):
-            self.fill(place, formula, value, taint)
-            return
-        single = given_back(intersected(machine, value))
+        if value.__class__ is tuple and not is_union(value) and (len(value) > 1 or len(value[0]) > 1):
+            machine.whole[index, key] = value
+        if formula.kind == "array" or (formula.dynamic and value.__class__ in (tuple, CellArea)):
+            grown = fill(machine, (index, key), formula, value, taint)
+            if grown is not None:
+                self.grown[index, key] = grown
+        else:
+            self.keep(index, key, value)
+
+    def keep(self, index: int, key: int, value: object) -> None:
+        """Keep the value of an ordinary cell; a blank reads as 0."""
+        machine = self.machine
+        single = given_back(intersected(key, value))
         if single is None:
             single = 0.0
-        if not isinstance(single, (float, str, bool, ErrorValue)):
-            single = ErrorValue("#CALC!", "the formula gives a function, not a value")
-        if isinstance(single, ErrorValue):
-            single = self.signed(single, place)
-        machine.own[position] = Special(single, taint) if taint is not None else single
-
-    def signed(self, error: ErrorValue, place: Place) -> ErrorValue:
-        """An error with the cell where it arises, which its dependants pass on."""
-        return error if error.origin else ErrorValue(error.code, error.message, self.machine.address(*place))
-
-    def fill(self, place: Place, formula: Formula, value: Any, taint: Taint | None) -> None:
-        """Spread an array formula's result over its area: one value fills it, what is missing is #N/A."""
-        machine, (index, (row, column)) = self.machine, place
-        array: Array = (
-            value.whole() if isinstance(value, CellArea) else value if isinstance(value, tuple) else ((value,),)
-        )
-        if array and isinstance(array[0], CellArea):
-            array = ((VALUE,),)
-        rows, columns = len(array), len(array[0]) if array else 0
-        area = formula.area or (row, column, row, column)
-        if formula.dynamic:
-            area = (row, column, row + rows - 1, column + columns - 1)
-        store, owners = machine.stores[index], machine.owners[index]
-        places = ((r, c) for r in range(area[0], area[2] + 1) for c in range(area[1], area[3] + 1))
-        if formula.dynamic and any(p in store and owners.get(p, p) != (row, column) for p in places):
-            array, rows, columns, area = ((SPILL,),), 1, 1, (row, column, row, column)
-        for r in range(area[0], area[2] + 1):
-            for c in range(area[1], area[3] + 1):
-                i, j = (0 if rows == 1 else r - row), (0 if columns == 1 else c - column)
-                single: Scalar = array[i][j] if i < rows and j < columns else NA
-                single = 0.0 if single is None else given_back(single)
-                if isinstance(single, ErrorValue):
-                    single = self.signed(single, place)
-                if (r, c) != (row, column) and owners.get((r, c)) != (row, column):
-                    if formula.dynamic and (r, c) not in store:
-                        owners[r, c] = (row, column)
-                    else:
-                        continue
-                store[r, c] = Special(single, taint) if taint is not None else single
-        top, left, bottom, right = formula.area or area
-        for r in range(top, bottom + 1):  # a result that has shrunk leaves the rest of its saved area blank
-            for c in range(left, right + 1):
-                if owners.get((r, c)) == (row, column) and machine.is_pending(store.get((r, c))):
-                    store.pop((r, c))
-        machine.filled[index, (row, column)] = area
-        last, end = machine.extent[index]
-        machine.extent[index] = (max(last, area[2]), max(end, area[3]))
+        elif isinstance(single, ErrorValue):
+            single = signed(machine, single, (index, key))
+        elif not isinstance(single, (float, str, bool)):
+            single = signed(machine, CALC, (index, key))
+        machine.stores[index][key] = single if machine.taint is None else Special(single, machine.taint)
 
     def compiled(self, formula: Formula, index: int) -> Compiled:
         """The compiled form of a formula: one for all that read alike relative to their cell."""
-        known = self.by_formula.get(formula)
-        if known is None:
-            known = self.by_formula[formula] = self.by_form(formula, index)
+        known = self.by_form(formula, index)
+        if known.fault is not None:
+            known.run = faulty(known.fault)
+        self.by_formula[index][formula] = known
         return known
 
     def by_form(self, formula: Formula, index: int) -> Compiled:
@@ -221,22 +234,22 @@ class Driver:
             return Compiled(fault=FormulaError("data tables are not supported", construct="data table"))
         if formula.kind == "missing" and formula.text:
             language = formula.text.partition(":=")[0]
-            return Compiled(
-                fault=FormulaError(
-                    f"it is written in the language {language}", construct=f"formula language {language}"
-                )
-            )
+            fault = FormulaError(f"it is written in the language {language}", construct=f"formula language {language}")
+            return Compiled(fault=fault)
         if formula.kind == "missing":
-            return Compiled(
-                fault=FormulaError("its shared formula is missing", construct="shared formula without master")
-            )
+            fault = FormulaError("its shared formula is missing", construct="shared formula without master")
+            return Compiled(fault=fault)
         if len(formula.text) > limit:
             fault = FormulaError(f"it has more than {limit:,} characters", construct="overlong formula")
             return Compiled(fault=fault)
         spread = formula.kind == "array" or formula.dynamic
-        form = relative_key(formula.text, formula.row, formula.column, formula.language)
-        key = (index, spread, formula.language, form)
-        known = self.by_key.get(key)
+        column = (index, formula.column, spread)
+        pattern, last = self.patterns.get(column, (None, None))
+        if pattern is not None and last is not None and pattern.text_in(formula.row) == formula.text:
+            return last
+        key = relative_key(formula.text, formula.row, formula.column, formula.language)
+        forms = self.by_key.setdefault((index, spread, formula.language), {})
+        known = forms.get(key)
         if known is None:
             try:
                 known = self.compiler.whole(formula, index)
@@ -244,31 +257,16 @@ class Driver:
                 known = Compiled(fault=problem)
             except RecursionError:
                 known = Compiled(fault=FormulaError("it nests too deeply", construct="deep nesting"))
-            self.by_key[key] = known
+            forms[key] = known
+        if "[@" not in formula.text:
+            self.patterns[column] = (Pattern(key, formula.text, formula.row, formula.language), known)
         return known
 
 
-def formula_cells(driver: Driver, index: int, sheet: Sheet) -> Iterator[FormulaCell]:
-    """The formula cells of a sheet, row by row, the areas of array formulas included."""
-    store, owners = driver.machine.stores[index], driver.machine.owners[index]
-    for position in sorted({*sheet.formulas, *owners}):
-        owner = owners.get(position, position)
-        formula = sheet.formulas[owner]
-        found = store.get(position)
-        status, reason, value = Status.RECALCULATED, "", found
-        if isinstance(found, Special):
-            value = found.value
-            if found.taint is not None:
-                status, reason = found.taint.status, found.taint.reason
-        yield FormulaCell(
-            sheet.name,
-            f"{column_letters(position[1])}{position[0]}",
-            sheet.values.get(position),
-            value,  # type: ignore[arg-type]
-            status,
-            call=driver.compiled(formula, index).call,
-            reason=reason,
-            has_saved=position in sheet.values,
-            text=partial(shown_text, formula, owner),
-            whole=driver.machine.whole.get((index, position)),
-        )
+def faulty(fault: FormulaError) -> Code:
+    """Code for a formula that could not be compiled."""
+
+    def run(k: int) -> object:
+        raise Unsupported(fault.construct)
+
+    return run

@@ -3,74 +3,126 @@
 from __future__ import annotations
 
 import re
+from typing import TypeAlias
 
+from cellsection.workbook.addresses import LAST_COLUMN, LAST_ROW
 from cellsection.workbook.book import Formula, Position, column_letters, column_number
+from cellsection.workbook.keys import SHIFT
 
-__all__ = ["moved_text", "relative_key", "shown_text"]
+__all__ = ["Key", "Pattern", "moved_text", "relative_key", "shown_text"]
 
-BEFORE = r"(?<![\w.$\\])"  # a reference does not begin inside a word
-EXCEL = re.compile(
-    # Texts, quoted sheet names and columns of tables stay as they are: [Q1] may be a column so called.
-    r"""("(?:[^"]|"")*"|'(?:[^']|'')*'|\[(?:[^\[\]']|'.)*\])"""
-    + rf"|{BEFORE}(\$?)([A-Za-z]{{1,3}})(\$?)([0-9]{{1,7}})(?![\w.(!\[])"
-    + rf"|{BEFORE}(\$?)([A-Za-z]{{1,3}}):(\$?)([A-Za-z]{{1,3}})(?![\w.(!])"
-    + rf"|{BEFORE}(\$?)([0-9]{{1,7}}):(\$?)([0-9]{{1,7}})(?![\w.])"
-)
-LAST_ROW, LAST_COLUMN = 1_048_576, 16_384  # what lies beyond is no cell: XYZ1 is a name
-# What reads differently in another place though its text is the same: whole rows and columns of OpenFormula, and the
-# columns of a table that is not named because the formula stands in it.
-PLACED = {
-    "excel": re.compile(r"(?<![\w.\]])\[(?!\d+\])"),
-    "openformula": re.compile(r"\.\$?(?:[A-Za-z]{1,3}|\d+)[\]:]"),
-}
-OPEN_ROWS = re.compile(r"""("(?:[^"]|"")*"|'(?:[^']|'')*')|(?<=\.)(\$?)([A-Za-z]{1,3})(\$?)([0-9]{1,7})(?=[\]:])""")
+Key: TypeAlias = tuple[str | int, ...]
+
+# One group around every word and around all that is left as it is: texts, quoted sheet names, bracketed parts of tables
+# and other books. A word takes the sign behind it along that tells a function or a sheet from a reference.
+EXCEL = re.compile(r"""([\w.$\\]+[(!]?|"(?:[^"]|"")*"|'(?:[^']|'')*'|\[(?:[^\[\]']|'.)*\])""")
+OPENFORMULA = re.compile(r"""("(?:[^"]|"")*"|'(?:[^']|'')*'|(?<=\.)\$?(?:[A-Za-z]{1,3})?\$?(?:[0-9]{1,7})?(?=[\]:]))""")
+PATTERN = {"excel": EXCEL, "openformula": OPENFORMULA}
+LETTERS = re.compile(r"(\$?)([A-Za-z]{1,3})(\$?)")
+DIGITS = "0123456789"
 
 
-def relative_key(text: str, row: int, column: int, language: str) -> str:
-    """The text with relative references written as offsets: equal keys mean equal compiled forms."""
+class Columns(dict[str, tuple[int, int] | None]):
+    """What stands before the digits of a reference: which of row and column are relative, and the column's number.
 
-    def offset(match: re.Match[str]) -> str:
-        if match[1] is not None:
-            return match[1]
-        if match[3] is not None:
-            if column_number(match[3]) > LAST_COLUMN or int(match[5]) > LAST_ROW:
-                return match[0]
-            c = match[3] if match[2] else f"[{column_number(match[3]) - column}]"
-            r = match[5] if match[4] else f"[{int(match[5]) - row}]"
-            return f"\x00{c}\x01{r}"
-        if match[7] is not None:
-            ends = [(match[6], match[7]), (match[8], match[9])]
-            return ":".join(f"\x00{name if pinned else column_number(name) - column}" for pinned, name in ends)
-        ends = [(match[10], match[11]), (match[12], match[13])]
-        return ":".join(f"\x01{name if pinned else int(name) - row}\x02{bool(pinned)}" for pinned, name in ends)
+    1: the row is, 2: the column is, 3: both are, 0: neither. None where it is no column.
+    """
 
-    key = (EXCEL if language == "excel" else OPEN_ROWS).sub(offset, text)
-    return f"{key}\x03{row},{column}" if PLACED[language].search(text) else key
+    def __missing__(self, letters: str) -> tuple[int, int] | None:
+        found = None
+        match = LETTERS.fullmatch(letters)
+        if match is not None and (column := column_number(match[2])) <= LAST_COLUMN:
+            found = ((0 if match[3] else 1) + (0 if match[1] else 2), column)
+        if len(letters) < 6:
+            self[letters] = found
+        return found
+
+
+COLUMNS = Columns()
+
+
+def beside(before: str | int, behind: str | int) -> bool:
+    """Whether what stands between is one end of a range, as of whole columns or rows."""
+    return str(before).startswith(":") or str(behind).startswith(":")
+
+
+def relative_key(text: str, row: int, column: int, language: str) -> Key:
+    """What is the same of two formulas exactly when they mean the same relative to their cells.
+
+    >>> relative_key("B3*2", 2, 1, "excel") == relative_key("B4*2", 3, 1, "excel")
+    True
+    """
+    if "[@" in text:  # of the table that the formula stands in, which it does not name
+        return (text, row, column)
+    parts: list[str | int] = PATTERN[language].split(text)
+    own = (0, row << SHIFT, column, (row << SHIFT) + column)
+    for k in range(1, len(parts), 2):
+        part: str = parts[k]  # type: ignore[assignment]
+        letters = part.rstrip(DIGITS)
+        known = COLUMNS[letters]
+        if known is None:
+            if part[-1] == "!" and parts[k - 1] == ":":  # the first sheet of several is a name, whatever it looks like
+                parts[k - 2] = PATTERN[language].split(text)[k - 2]
+            elif letters == "" and beside(parts[k - 1], parts[k + 1]):
+                parts[k] = f"row {int(part) - row}"
+            continue
+        kind, number = known
+        digits = part[len(letters) :]
+        if digits:
+            at = int(digits)
+            if at <= LAST_ROW:
+                parts[k] = ((at << SHIFT) + number - own[kind]) * 4 + kind
+        elif beside(parts[k - 1], parts[k + 1]):
+            parts[k] = f"column {number - column if kind & 2 else letters}"
+    return tuple(parts)
+
+
+class Pattern:
+    """A formula as it would read elsewhere in its column: a text to compare with is had sooner than a relative key."""
+
+    __slots__ = ("offsets", "template")
+
+    def __init__(self, key: Key, text: str, row: int, language: str) -> None:
+        parts = PATTERN[language].split(text.replace("%", "%%"))
+        self.offsets: list[int] = []
+        for k in range(1, len(parts), 2):
+            if key[k].__class__ is int and key[k] & 1:  # type: ignore[operator]
+                letters = parts[k].rstrip(DIGITS)
+                self.offsets.append(int(parts[k][len(letters) :]) - row)
+                parts[k] = letters + "%d"
+        self.template = "".join(parts)
+
+    def text_in(self, row: int) -> str:
+        """The formula as it would read in a row."""
+        return self.template % tuple([offset + row for offset in self.offsets])
 
 
 def moved_text(text: str, down: int, across: int, language: str) -> str:
-    """The formula as it reads when filled to another cell, as the children of a shared formula are."""
+    """The formula as it reads when filled to another cell, as the children of a shared formula are.
+
+    >>> moved_text("A1*$B$2+SUM(C:C)", 2, 1, "excel")
+    'B3*$B$2+SUM(D:D)'
+    """
     if not down and not across:
         return text
-
-    def moved(match: re.Match[str]) -> str:
-        if match[1] is not None:
-            return match[1]
-        if match[3] is not None:
-            if column_number(match[3]) > LAST_COLUMN or int(match[5]) > LAST_ROW:
-                return match[0]
-            letters = match[3] if match[2] else column_letters(max(column_number(match[3]) + across, 1))
-            number = match[5] if match[4] else str(int(match[5]) + down)
-            return f"{match[2]}{letters}{match[4]}{number}"
-        if match[7] is not None:
-            ends = [(match[6], match[7]), (match[8], match[9])]
-            return ":".join(
-                pin + (name if pin else column_letters(max(column_number(name) + across, 1))) for pin, name in ends
-            )
-        ends = [(match[10], match[11]), (match[12], match[13])]
-        return ":".join(pin + (name if pin else str(int(name) + down)) for pin, name in ends)
-
-    return (EXCEL if language == "excel" else OPEN_ROWS).sub(moved, text)
+    parts = PATTERN[language].split(text)
+    given = tuple(parts)
+    for k in range(1, len(parts), 2):
+        part = parts[k]
+        letters = part.rstrip(DIGITS)
+        known, digits = COLUMNS[letters], part[len(letters) :]
+        line = beside(given[k - 1], given[k + 1])
+        if known is None:
+            if part[-1] == "!" and given[k - 1] == ":":
+                parts[k - 2] = given[k - 2]
+            elif letters == "" and line:
+                parts[k] = str(int(digits) + down)
+        elif (digits and int(digits) <= LAST_ROW) or (not digits and line):
+            kind, number = known
+            if kind & 2:
+                letters = column_letters(max(number + across, 1)) + ("$" if letters.endswith("$") else "")
+            parts[k] = letters + (str(int(digits) + down) if digits and kind & 1 else digits)
+    return "".join(parts)
 
 
 FILE_PREFIX = re.compile(r"_xl(?:fn|ws|udf|pm|op)\.")
