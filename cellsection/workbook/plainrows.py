@@ -116,7 +116,7 @@ class PlainRows:
                     except ValueError:
                         number = nan
                     plain = number - number == 0.0 and "_" not in v and v.isascii()  # finite, and as XML writes numbers
-                    value: Scalar = number if plain else reader.value(kind, v, None)
+                    value: Scalar = number if plain else reader.value(kind, plain_text(v), None)
                 elif kind == "s" and v.isdecimal() and len(v) < 10 and int(v) < len(strings):
                     value = strings[int(v)]
                 else:

@@ -83,7 +83,7 @@ class SheetReader:
         if own == "row":
             self.read_row(attributes)
         elif own == "c":
-            self.c, self.f, self.v = attributes, None, None
+            self.c, self.f, self.v, self.f_text = attributes, None, None, ""
         elif own == "f":
             self.f = attributes
         elif own == "is":
@@ -139,16 +139,16 @@ class SheetReader:
                 raise self.no_cell(f'"{r[:24]}"')
             self.row, self.column = place[:2]
             self.backwards = self.backwards or self.row != before[0] or self.column <= before[1]
-        if v is None and f is None:
+        value = self.value(c.get("t", "n"), v, c.get("vm")) if v is not None else None
+        if value is None and not f and not f_text:
             return
         position = (self.row, self.column)
         if self.backwards:
             self.check_new(position)
-        value = self.value(c.get("t", "n"), v, c.get("vm")) if v is not None else None
         if value is not None:
             self.values[position] = value
-        if f is not None:
-            self.formulas.read_f(f_text, f, position, c.get("cm"))
+        if f or f_text:
+            self.formulas.read_f(f_text, f or {}, position, c.get("cm"))
         self.bottom, self.right = max(self.bottom, self.row), max(self.right, self.column)
 
     def check_new(self, position: Position) -> None:

@@ -6,7 +6,7 @@ from dataclasses import astuple
 from pathlib import Path
 
 import pytest
-from hypothesis import HealthCheck, given, settings
+from hypothesis import HealthCheck, example, given, settings
 from hypothesis import strategies as st
 
 from cellsection.errors import WorkbookError
@@ -57,6 +57,8 @@ def outcome(folder: Path, rows: str, before: str) -> object:
 
 @settings(max_examples=150, deadline=None, suppress_health_check=[HealthCheck.function_scoped_fixture])
 @given(rows=ROWS, ordered=st.booleans())
+@example(rows=[(1, "", [(1, "", "", "<v>1</v>", True)]), (2, "", [(1, "", "", "<v></v>", True)])], ordered=True)
+@example(rows=[(k, "", [(1, "", "", "<v>a&amp;b</v>", True)]) for k in (1, 2)], ordered=True)
 def test_both_ways_give_the_same_cells(
     rows: list[tuple[int, str, list[tuple[int, str, str, str, bool]]]], ordered: bool, tmp_path: Path
 ) -> None:
