@@ -24,9 +24,16 @@ __all__ = ["builtin_call", "given_back", "host_call"]
 
 Taker: TypeAlias = Callable[[Any], Any]  # turns what was found into what the function wants, or into an error value
 
-EMPTY = {"number": 0.0, "text": "", "logical": False}
-SCALAR_KINDS = frozenset(("number", "text", "logical", "value", "any"))
-TAKERS: dict[str, Taker] = {"number": number_of, "text": text_of, "logical": logical_of}
+EMPTY = {"number": 0.0, "measure": 0.0, "text": "", "logical": False}
+SCALAR_KINDS = frozenset(("number", "measure", "text", "logical", "value", "any"))
+
+
+def measured(value: Any) -> Any:
+    """A number, where a logical counts as none."""
+    return VALUE if value.__class__ is bool else number_of(value)
+
+
+TAKERS: dict[str, Taker] = {"number": number_of, "measure": measured, "text": text_of, "logical": logical_of}
 
 
 def given_back(result: Any) -> Any:
@@ -98,7 +105,7 @@ def protected(machine: Machine, declared: Builtin, kinds: list[str]) -> Callable
     for place, kind in enumerate(kinds):
         if kind in SCALAR_KINDS:
             if kind != "any":
-                steps.append((place, TAKERS.get(kind, same), kind in ("number", "value"), True))
+                steps.append((place, TAKERS.get(kind, same), kind in ("number", "measure", "value"), True))
         elif kind in ("array", "reference"):
             steps.append((place, array_of, False, False) if kind == "array" else (place, reference_of, False, True))
     before: tuple[Any, ...] = (machine,) if declared.context else ()

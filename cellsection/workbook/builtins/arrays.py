@@ -7,6 +7,7 @@ from functools import cmp_to_key
 from operator import itemgetter
 from typing import Any
 
+from cellsection.workbook.builtins.logical import ERROR_NUMBERS
 from cellsection.workbook.builtins.registry import ErrorResult, builtin
 from cellsection.workbook.builtins.traits import array_of, whole
 from cellsection.workbook.coercion import CALC, NA, NUM, VALUE, compared, logical_of, number_of
@@ -109,13 +110,18 @@ def transpose(array: Array) -> Array:
 def sequence(height: Scalar, width: Scalar = None, first: Scalar = None, by: Scalar = None) -> Array:
     r, c, start, step = int(given(height, 1.0)), int(given(width, 1.0)), given(first, 1.0), given(by, 1.0)
     if r < 1 or c < 1:
-        raise ErrorResult(VALUE)
+        raise ErrorResult(VALUE if r < 0 or c < 0 else CALC)
     if r * c > 5_000_000:
         raise ErrorResult(NUM)
     return cells([start + (i * c + j) * step for j in range(c)] for i in range(r))
 
 
 # ---- sorting and filtering
+
+
+def error_number(cell: Scalar) -> int:
+    """Place of an error value among the others, 0 of anything else."""
+    return ERROR_NUMBERS.get(cell.code, 99) if isinstance(cell, ErrorValue) else 0
 
 
 def order_key(descending: bool) -> Any:
@@ -125,7 +131,7 @@ def order_key(descending: bool) -> Any:
         if a is None or b is None:
             return (a is None) - (b is None)
         if isinstance(a, ErrorValue) or isinstance(b, ErrorValue):
-            side = isinstance(a, ErrorValue) - isinstance(b, ErrorValue)
+            side = error_number(a) - error_number(b)
         else:
             side = compared(a, b)
         return -side if descending else side
@@ -219,7 +225,7 @@ def cut(count: Scalar, length: int, drop: bool) -> slice:
     n = int(given(count, 0.0))
     if drop:
         if abs(n) >= length:
-            raise ErrorResult(VALUE)
+            raise ErrorResult(CALC)
         return slice(n, None) if n >= 0 else slice(None, max(length + n, 0))
     if n == 0:
         raise ErrorResult(CALC)

@@ -8,7 +8,7 @@ from datetime import date, timedelta
 from cellsection.workbook.builtins.registry import ErrorResult
 from cellsection.workbook.coercion import NUM
 
-__all__ = ["clock_of", "date_of", "day_of", "serial_of", "weekday_of"]
+__all__ = ["LAST", "clock_of", "date_of", "day_of", "serial_of", "weekday_of"]
 
 EPOCH_1900, EPOCH_1904 = date(1899, 12, 30), date(1904, 1, 1)
 LAST = 2_958_465  # 9999-12-31

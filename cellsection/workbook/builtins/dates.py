@@ -146,6 +146,8 @@ def eomonth(context: Context, serial: float, months: float) -> float:
 
 @builtin("DAYS", "number number")
 def days(end: float, start: float) -> float:
+    if start < 0 or end < 0:
+        return fail(NUM)
     return float(math.floor(end) - math.floor(start))
 
 
@@ -165,7 +167,7 @@ def days_360(start: tuple[int, int, int], end: tuple[int, int, int], european: b
 
 @builtin("DAYS360", "context number number logical?")
 def days360(context: Context, start: float, end: float, european: bool = False) -> float:
-    a, b = (day_of(math.floor(each), context.date1904)[:3] for each in (start, end))
+    a, b = (day_of(each, context.date1904)[:3] for each in (start, end))  # the last half second is the next day
     return float(days_360(a, b, european))
 
 

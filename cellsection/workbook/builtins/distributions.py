@@ -126,7 +126,18 @@ def binom_dist(k: float, n: float, p: float, cumulative: bool) -> float:
 
 @builtin("BINOM.INV CRITBINOM", "number number number")
 def binom_inv(n: float, p: float, alpha: float) -> float:
-    return finite(stats().binom.ppf(probability(alpha), whole(n), probability(p, ends=True)))
+    return finite(stats().binom.ppf(probability(alpha), whole(n), probability(p)))
+
+
+@builtin("BINOM.DIST.RANGE", "number number number number?")
+def binom_dist_range(n: float, p: float, first: float, last: float | None = None) -> float:
+    low, high = int(first), int(first if last is None else last)
+    if not 0 <= low <= high <= int(n):
+        return fail(NUM)
+    law = stats().binom(whole(n), probability(p, ends=True))
+    if high - low < 1000:  # the sum of the terms keeps the digits that a difference of two sums loses
+        return finite(math.fsum(law.pmf(k) for k in range(low, high + 1)))
+    return finite(law.cdf(high) - law.cdf(low - 1))
 
 
 @builtin("T.DIST", "number number logical")
@@ -255,7 +266,7 @@ def betadist(x: float, a: float, b: float, low: float = 0.0, high: float = 1.0) 
 
 @builtin("BETA.INV BETAINV", "number number number number? number?")
 def beta_inv(p: float, a: float, b: float, low: float = 0.0, high: float = 1.0) -> float:
-    if a <= 0 or b <= 0 or not 0 < p <= 1:
+    if a <= 0 or b <= 0 or not 0 < p < 1:
         return fail(NUM)
     return low + (high - low) * finite(stats().beta.ppf(p, a, b))
 
@@ -337,17 +348,40 @@ def hypgeom_dist(k: float, n: float, successes: float, population: float, cumula
 
 @builtin("NEGBINOM.DIST", "number number number logical")
 def negbinom_dist(failures: float, successes: float, p: float, cumulative: bool) -> float:
-    if failures < 0 or successes < 1 or not 0 < p <= 1:
+    if failures < 0 or successes < 1 or not 0 < p < 1:
         return fail(NUM)
     law = stats().nbinom(whole(successes), p)
     return finite(law.cdf(whole(failures)) if cumulative else law.pmf(whole(failures)))
 
 
-@builtin("ERF ERF.PRECISE", "number number?")
+@builtin("HYPGEOMDIST", "number number number number")
+def hypgeomdist(k: float, n: float, successes: float, population: float) -> float:
+    return hypgeom_dist(k, n, successes, population, False)
+
+
+@builtin("NEGBINOMDIST", "number number number")
+def negbinomdist(failures: float, successes: float, p: float) -> float:
+    return negbinom_dist(failures, successes, p, False)
+
+
+@builtin("LOGNORMDIST", "number number number")
+def lognormdist(x: float, m: float, s: float) -> float:
+    return lognorm_dist(x, m, s, True)
+
+
+@builtin("PROB", "array array number number?")
+def prob(values: Array, chances: Array, low: float, high: float | None = None) -> float:
+    pairs = paired(values, chances)
+    if not pairs or any(not 0 <= p <= 1 for _, p in pairs) or abs(math.fsum(p for _, p in pairs) - 1) > 1e-9:
+        return fail(NUM)
+    return math.fsum(p for x, p in pairs if low <= x <= (low if high is None else high))
+
+
+@builtin("ERF ERF.PRECISE", "measure measure?")
 def erf(low: float, high: float | None = None) -> float:
     return math.erf(low) if high is None else math.erf(high) - math.erf(low)
 
 
-@builtin("ERFC ERFC.PRECISE", "number")
+@builtin("ERFC ERFC.PRECISE", "measure")
 def erfc(x: float) -> float:
     return math.erfc(x)

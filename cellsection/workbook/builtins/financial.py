@@ -6,9 +6,10 @@ import math
 from collections.abc import Callable, Sequence
 from typing import Any
 
+from cellsection.workbook.builtins.dates import yearfrac
 from cellsection.workbook.builtins.mathematics import fail
-from cellsection.workbook.builtins.registry import builtin
-from cellsection.workbook.builtins.traits import numbers
+from cellsection.workbook.builtins.registry import Context, builtin
+from cellsection.workbook.builtins.traits import cells_of, numbers
 from cellsection.workbook.coercion import DIV0, NUM, VALUE
 from cellsection.workbook.values import Array
 
@@ -106,7 +107,15 @@ def ipmt(rate: float, period: float, periods: float, present: float, future: flo
 
 @builtin("PPMT", "number number number number number? number?")
 def ppmt(rate: float, period: float, periods: float, present: float, future: float = 0.0, early: float = 0.0) -> float:
-    return pmt(rate, periods, present, future, early) - ipmt(rate, period, periods, present, future, early)
+    if not 1 <= period < periods + 1:
+        return fail(NUM)
+    if early and period == 1:
+        return pmt(rate, periods, present, future, early)
+    _, series = growth_and_sum(rate, periods)
+    if not series:
+        return fail(DIV0)
+    # the debt paid off grows with the interest: no difference of nearly equal amounts
+    return -(present + future) / series * power(1 + rate, period - (2 if early else 1))
 
 
 def summed(
@@ -119,12 +128,12 @@ def summed(
     return sum(part(rate, float(k), periods, present, 0.0, early) for k in range(first, last + 1))
 
 
-@builtin("CUMIPMT", "number number number number number number")
+@builtin("CUMIPMT", "measure measure measure measure measure measure")
 def cumipmt(rate: float, periods: float, present: float, first: float, last: float, early: float) -> float:
     return summed(ipmt, rate, periods, present, first, last, early)
 
 
-@builtin("CUMPRINC", "number number number number number number")
+@builtin("CUMPRINC", "measure measure measure measure measure measure")
 def cumprinc(rate: float, periods: float, present: float, first: float, last: float, early: float) -> float:
     return summed(ppmt, rate, periods, present, first, last, early)
 
@@ -161,10 +170,10 @@ def irr(area: Any, guess: float = 0.1) -> float:
 def mirr(area: Any, finance: float, reinvest: float) -> float:
     flows = list(numbers((area,)))
     n = len(flows)
-    if reinvest == -1 or finance == -1:
+    if reinvest == -1:
         return fail(DIV0)
     gains = sum(max(f, 0.0) / power(1 + reinvest, k) for k, f in enumerate(flows))
-    losses = sum(min(f, 0.0) / power(1 + finance, k) for k, f in enumerate(flows))
+    losses = sum(f / power(1 + finance, k) for k, f in enumerate(flows) if f < 0)
     if not losses or n < 2:
         return fail(DIV0)
     return power(-gains * power(1 + reinvest, n - 1) / losses, 1 / (n - 1)) - 1
@@ -178,7 +187,7 @@ def dated(rate: float, flows: list[float], days: list[float]) -> float:
 def flows_and_days(area: Any, days: Any) -> tuple[list[float], list[float]]:
     """Cash flows and their days."""
     flows, when = list(numbers((area,))), [float(math.floor(d)) for d in numbers((days,))]
-    if len(flows) != len(when) or not flows or min(when) < when[0]:
+    if len(flows) != len(when) or not flows or min(when) < when[0] or when[0] < 0:
         fail(NUM)
     return flows, when
 
@@ -191,6 +200,8 @@ def xnpv(rate: float, area: Any, days: Any) -> float:
 
 @builtin("XIRR", "range range number?")
 def xirr(area: Any, days: Any, guess: float = 0.1) -> float:
+    if any(isinstance(cell, (str, bool)) for cell in cells_of(area)):
+        return fail(VALUE)
     flows, when = flows_and_days(area, days)
     if min(flows) >= 0 or max(flows) <= 0:
         return fail(NUM)
@@ -280,6 +291,43 @@ def declining(cost: float, salvage: float, life: float, period: float, factor: f
     before = cost * power(1 - rate, period - 1) if rate < 1 else (cost if period == 1 else 0.0)
     after = cost * power(1 - rate, period)
     return max(before - max(after, salvage), 0.0)
+
+
+@builtin("VDB", "number number number number number number? logical?")
+def vdb(
+    cost: float, salvage: float, life: float, start: float, end: float, factor: float = 2.0, no_switch: bool = False
+) -> float:
+    """Declining balance over a span, whole periods and shares of them, with the change to straight line where that
+    writes off more (OpenFormula 1.2, VDB).
+    """
+    if cost < 0 or salvage < 0 or life <= 0 or factor < 0 or not 0 <= start <= end <= life or life > 1e6:
+        return fail(NUM)
+    book, result = cost, 0.0
+    straight: float | None = None  # once it is taken, it stays
+    for period in range(math.ceil(end)):
+        amount = min(book * min(factor / life, 1.0), max(book - salvage, 0.0))
+        if not no_switch:
+            even = max(book - salvage, 0.0) / (life - period)
+            straight = even if straight is None and even > amount else straight
+            amount = amount if straight is None else min(straight, max(book - salvage, 0.0))
+        result += amount * max(min(end, period + 1.0) - max(start, float(period)), 0.0)
+        book -= amount
+    return result
+
+
+@builtin("AMORLINC", "context measure measure measure measure measure measure measure?")
+def amorlinc(
+    context: Context, cost: float, bought: float, first_end: float, salvage: float, period: float, rate: float,
+    basis: float = 0.0,
+) -> float:  # fmt: skip
+    """Straight line with a first period of its own length (OpenFormula 1.2, AMORLINC)."""
+    if cost <= 0 or salvage < 0 or salvage > cost or period < 0 or rate <= 0 or bought > first_end:
+        return fail(NUM)
+    first = cost * rate * yearfrac(context, bought, first_end, basis)
+    n, left = int(period), cost - salvage - first
+    if n == 0:
+        return min(first, cost - salvage)
+    return min(max(left - cost * rate * (n - 1), 0.0), cost * rate)
 
 
 @builtin("DOLLARDE", "number number")

@@ -6,9 +6,10 @@ import math
 from typing import Any
 
 from cellsection.workbook.builtins.mathematics import fail
-from cellsection.workbook.builtins.registry import builtin
-from cellsection.workbook.builtins.traits import numbers
+from cellsection.workbook.builtins.registry import Context, builtin
+from cellsection.workbook.builtins.traits import cells_of, numbers
 from cellsection.workbook.coercion import NUM, VALUE
+from cellsection.workbook.values import Scalar
 
 DIGITS = "0123456789ABCDEFGHIJKLMNOPQRSTUVWXYZ"
 ROMAN = (
@@ -85,6 +86,8 @@ def permutationa(n: float, k: float) -> float:
 
 @builtin("MULTINOMIAL", "range+")
 def multinomial(*arguments: Any) -> float:
+    if any(isinstance(cell, bool) for argument in arguments for cell in cells_of(argument)):
+        return fail(VALUE)
     parts = naturals(arguments)
     if sum(parts) > 170:
         return fail(NUM)
@@ -200,8 +203,10 @@ def bitrshift(x: float, by: float) -> float:
     return shifted(x, -by)
 
 
-@builtin("ROMAN", "number")
-def roman(x: float) -> str:
+@builtin("ROMAN", "context number value?")
+def roman(context: Context, x: float, form: Scalar = None) -> str:
+    if form not in (None, 0.0, True):
+        context.unsupported("ROMAN in a shortened form")
     n = int(x)
     if not 0 <= n <= 3999:
         fail(VALUE)

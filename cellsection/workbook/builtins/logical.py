@@ -175,8 +175,10 @@ def sheet(context: Context, which: Any = None) -> Any:
         wanted = which.sheet
     elif isinstance(which, tuple) and which and hasattr(which[0], "sheet"):
         wanted = which[0].sheet
-    else:
-        return VALUE
+    elif isinstance(which, ErrorValue):
+        return which
+    else:  # no sheet is called so
+        return NA
     return float(names.index(wanted.casefold()) + 1) if wanted.casefold() in names else NA
 
 

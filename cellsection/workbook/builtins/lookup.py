@@ -4,9 +4,10 @@ from __future__ import annotations
 
 from typing import Any
 
+from cellsection.workbook.builtins.patterns import compiled
 from cellsection.workbook.builtins.registry import Context, ErrorResult, builtin
 from cellsection.workbook.builtins.traits import array_of, cells_of, matcher, whole
-from cellsection.workbook.coercion import NA, REF, VALUE, compared, equal
+from cellsection.workbook.coercion import NA, REF, VALUE, compared, equal, text_of
 from cellsection.workbook.values import Array, ErrorValue, Scalar
 
 
@@ -131,12 +132,36 @@ def match(wanted: Scalar, area: Any, kind: float = 1.0) -> Any:
     return NA if found is None else float(found + 1)
 
 
-def searched(wanted: Scalar, cells: list[Scalar], match_mode: float, search_mode: float) -> int | None:
+def by_pattern(context: Context, pattern: str, cells: list[Scalar]) -> int | None:
+    """Position of the first text that a regular expression meets. Whether it must meet all of a text is not known:
+    where that decides, the search is reported.
+    """
+    position = None
+    for k, cell in enumerate(cells):
+        if not isinstance(cell, str):
+            continue
+        expression = compiled(context, pattern, cell, False)
+        if expression.search(cell) is None:
+            continue
+        if expression.fullmatch(cell) is None:
+            context.unsupported("a search by a regular expression that meets part of a text")
+        position = k
+        break
+    return position
+
+
+def searched(
+    context: Context, wanted: Scalar, cells: list[Scalar], match_mode: float, search_mode: float
+) -> int | None:
     """Position by XMATCH's rules."""
     order = list(range(len(cells)))
     if search_mode in (-1, -2):
         order.reverse()
     viewed = [cells[k] for k in order]
+    if match_mode == 3:
+        pattern = text_of(wanted)
+        position = None if isinstance(pattern, ErrorValue) else by_pattern(context, pattern, viewed)
+        return None if position is None else order[position]
     position = exact(wanted, viewed, wild=match_mode == 2)
     if position is None and wanted is None:
         position = next((k for k, cell in enumerate(viewed) if cell is None), None)
@@ -152,19 +177,12 @@ def searched(wanted: Scalar, cells: list[Scalar], match_mode: float, search_mode
     return None if position is None else order[position]
 
 
-def plain_mode(context: Context, match_mode: float) -> None:
-    """Regular expressions are not supported."""
-    if match_mode == 3:
-        context.unsupported("a search by regular expression")
-
-
 @builtin("XMATCH", "context value range number? number?")
 def xmatch(context: Context, wanted: Scalar, area: Any, match_mode: float = 0.0, search_mode: float = 1.0) -> Any:
-    plain_mode(context, match_mode)
     array = whole(area)
     if array and len(array) > 1 and len(array[0]) > 1:
         return VALUE
-    found = searched(wanted, list(cells_of(array)), match_mode, search_mode)
+    found = searched(context, wanted, list(cells_of(array)), match_mode, search_mode)
     return NA if found is None else float(found + 1)
 
 
@@ -178,14 +196,13 @@ def xlookup(
     match_mode: float = 0.0,
     search_mode: float = 1.0,
 ) -> Any:
-    plain_mode(context, match_mode)
     keys, values = whole(area), whole(results)
     upright = len(keys[0]) == 1
     if not upright and len(keys) > 1:
         return VALUE
     if (len(values) if upright else len(values[0])) != (len(keys) if upright else len(keys[0])):
         return VALUE
-    found = searched(wanted, list(cells_of(keys)), match_mode, search_mode)
+    found = searched(context, wanted, list(cells_of(keys)), match_mode, search_mode)
     if found is None:
         return NA if missing is None else missing
     if upright:
@@ -220,6 +237,11 @@ def index(area: Any, row: float = 0.0, column: float | None = None, number: floa
     return picked[0][0] if len(picked) == 1 and len(picked[0]) == 1 else picked
 
 
+def extent(size: float) -> int:
+    """Rows or columns, cut to a whole number; a positive share of one is one."""
+    return 1 if 0 < size < 1 else int(size)
+
+
 @builtin("OFFSET", "context reference number number number? number?", volatile=False)
 def offset(
     context: Context, area: Any, down: float, right: float, height: float | None = None, width: float | None = None
@@ -228,7 +250,7 @@ def offset(
         return VALUE
     rows, columns = area.shape
     top, left = area.top + int(down), area.left + int(right)
-    high, wide = int(rows if height is None else height), int(columns if width is None else width)
+    high, wide = extent(rows if height is None else height), extent(columns if width is None else width)
     if not high or not wide:
         return REF
     bottom, end = (top + high - 1, left + wide - 1)

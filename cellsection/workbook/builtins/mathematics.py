@@ -37,6 +37,12 @@ def product(*arguments: Any) -> float:
     return math.prod(values) if values else 0.0
 
 
+@builtin("PERCENTOF", "range range")
+def percentof(part: Any, whole: Any) -> float:
+    base = total(numbers((whole,)))
+    return total(numbers((part,))) / base if base else fail(DIV0)
+
+
 @builtin("SUMSQ", "range+")
 def sumsq(*arguments: Any) -> float:
     return total(x * x for x in numbers(arguments))
@@ -88,7 +94,7 @@ def sumxmy2(a: Array, b: Array) -> float:
     return total((x - y) ** 2 for x, y in paired(a, b))
 
 
-@builtin("SERIESSUM", "number number number array")
+@builtin("SERIESSUM", "measure measure measure array")
 def seriessum(x: float, n: float, m: float, coefficients: Array) -> float:
     result = 0.0
     for k, a in enumerate(numbers((coefficients,))):

@@ -4,8 +4,10 @@ from __future__ import annotations
 
 import re
 
-from cellsection.workbook.builtins.calendar import clock_of, day_of
+from cellsection.workbook.builtins.calendar import LAST, clock_of, day_of
 from cellsection.workbook.builtins.mathematics import rounded
+from cellsection.workbook.builtins.registry import ErrorResult
+from cellsection.workbook.coercion import VALUE
 from cellsection.workbook.values import Scalar
 
 __all__ = ["formatted"]
@@ -115,6 +117,9 @@ def number_section(section: str, number: float, date1904: bool) -> str | None:
     if any(
         m["date"] or m["ampm"] or (m["bracket"] and re.fullmatch(r"\[[hms]+\]", m["bracket"], re.I)) for m in pieces
     ):
+        last = LAST - (1462 if date1904 else 0)
+        if not 0 <= number < last + 1 or any(m["other"] and m["other"] in "0#?" for m in pieces):
+            raise ErrorResult(VALUE)  # beyond the calendar, or a date with digits to fill in
         return date_section(pieces, number, date1904)
     if any(m["general"] for m in pieces):
         body = general(abs(number))
@@ -250,10 +255,8 @@ def fraction_section(section: str, number: float) -> str | None:
     return f"{sign}{top}/{bottom}"
 
 
-def date_section(pieces: list[re.Match[str]], number: float, date1904: bool) -> str | None:
-    """Dates and times. Negative serial numbers have none."""
-    if number < 0:
-        return None
+def date_section(pieces: list[re.Match[str]], number: float, date1904: bool) -> str:
+    """Dates and times."""
     twelve = any(m["ampm"] for m in pieces)
     decimals = max((len(m["fraction"]) - 1 for m in pieces if m["fraction"] and m["date"][0] in "sS"), default=0)
     year, month, day, weekday = day_of(number, date1904, decimals)

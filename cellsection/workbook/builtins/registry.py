@@ -7,6 +7,7 @@ The words, one an argument (a `?` behind one: may be left out; the last may carr
 least one):
 
     number text logical   a scalar, coerced as the application does; an error value is passed on without a call
+    measure               a number, but a logical is #VALUE!: functions that once were the application's add-in
     value                 a scalar of any kind but an error (which is passed on without a call); blank stays None
     any                   a scalar of any kind, error values included
     array                 an Array: a reference is read, a scalar becomes 1 x 1; errors stay inside
@@ -17,7 +18,7 @@ least one):
 
 A function whose scalar arguments meet an array is called once an element and returns an array (in an array formula) or
 takes the cell of its own row or column (elsewhere). An argument left out arrives as the Python default; one written but
-empty (`IF(1,,2)`) arrives as blank None for value/any, 0.0 for number, "" for text, False for logical.
+empty (`IF(1,,2)`) arrives as blank None for value/any, 0.0 for number/measure, "" for text, False for logical.
 A word `context` in front passes the running Context (own cell, workbook, clock) first.
 A function returns a scalar, an Array or an Area, and raises ErrorResult to return an error value.
 """
@@ -34,7 +35,7 @@ from cellsection.workbook.values import Area, ErrorValue
 __all__ = ["BUILTINS", "Builtin", "Context", "ErrorResult", "builtin"]
 
 F = TypeVar("F", bound=Callable[..., Any])
-KINDS = frozenset(("number", "text", "logical", "value", "any", "array", "range", "table", "reference"))
+KINDS = frozenset(("number", "measure", "text", "logical", "value", "any", "array", "range", "table", "reference"))
 
 
 class Context(Protocol):

@@ -117,12 +117,19 @@ def linest(y: Array, x: Array | None = None, constant: Scalar = None, statistics
     return tuple(map(tuple, fitted(y, x, chosen(constant, True), chosen(statistics, False))))
 
 
-@builtin("LOGEST", "array array? value? value?")
-def logest(y: Array, x: Array | None = None, constant: Scalar = None, statistics: Scalar = None) -> Array:
+def logarithms(y: Array) -> Array:
+    """Logarithms of an array of nothing but positive numbers, as a column."""
     values = list(numbers((y,)))
+    if len(values) != sum(map(len, y)):
+        raise ErrorResult(VALUE)
     if min(values, default=0.0) <= 0:
         raise ErrorResult(NUM)
-    found = fitted(tuple((math.log(v),) for v in values), x, chosen(constant, True), chosen(statistics, False))
+    return tuple((math.log(v),) for v in values)
+
+
+@builtin("LOGEST", "array array? value? value?")
+def logest(y: Array, x: Array | None = None, constant: Scalar = None, statistics: Scalar = None) -> Array:
+    found = fitted(logarithms(y), x, chosen(constant, True), chosen(statistics, False))
     found[0] = [math.exp(c) for c in found[0]]  # type: ignore[arg-type]
     return tuple(map(tuple, found))
 
@@ -165,8 +172,4 @@ def trend(y: Array, x: Array | None = None, new: Array | None = None, constant: 
 
 @builtin("GROWTH", "array array? array? logical?")
 def growth(y: Array, x: Array | None = None, new: Array | None = None, constant: bool = True) -> Array:
-    values = list(numbers((y,)))
-    if min(values, default=0.0) <= 0:
-        raise ErrorResult(NUM)
-    logs = tuple((math.log(v),) for v in values)
-    return shaped([math.exp(v) for v in predicted(logs, x, new, constant)], new or x or y)
+    return shaped([math.exp(v) for v in predicted(logarithms(y), x, new, constant)], new or x or y)

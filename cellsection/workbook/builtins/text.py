@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 import re
 import unicodedata
 from typing import Any
@@ -14,6 +15,7 @@ from cellsection.workbook.coercion import CALC, NA, NUM, VALUE, number_of, text_
 from cellsection.workbook.values import Array, ErrorValue, Scalar
 
 LONGEST = 32_767
+UNASSIGNED = frozenset((0x81, 0x8D, 0x8F, 0x90, 0x9D))  # of code page 1252; they stand for themselves
 
 
 def fail_text(error: ErrorValue) -> str:
@@ -105,12 +107,15 @@ def char(x: float) -> str:
     n = int(x)
     if not 1 <= n <= 255:
         return fail_text(VALUE)
-    return bytes([n]).decode("cp1252", errors="replace")
+    byte = bytes([n])
+    return byte.decode("latin-1" if n in UNASSIGNED else "cp1252")
 
 
 @builtin("CODE", "text")
 def code(text: str) -> Any:
-    return float(text[0].encode("cp1252", errors="replace")[0]) if text else VALUE
+    if not text:
+        return VALUE
+    return float(ord(text[0]) if ord(text[0]) in UNASSIGNED else text[0].encode("cp1252", errors="replace")[0])
 
 
 @builtin("UNICHAR", "number")
@@ -237,22 +242,18 @@ def dollar(x: float, decimals: float = 2.0) -> str:
 
 @builtin("TEXTBEFORE", "text array number? number? number? any?")
 def textbefore(
-    text: str, marks: Array, n: float = 1.0, fold: float = 0.0, end: float = 0.0, missing: Scalar = NA
+    text: str, marks: Array, n: float | None = None, fold: float = 0.0, end: float = 0.0, missing: Scalar = NA
 ) -> Any:
-    found = nth(text, marks, int(n), bool(fold))
-    if found is None:
-        return text if end else missing
-    return text[: found[0]]
+    found = nth(text, marks, n, fold, end)
+    return ("" if missing is None else missing) if found is None else text[: found[0]]
 
 
 @builtin("TEXTAFTER", "text array number? number? number? any?")
 def textafter(
-    text: str, marks: Array, n: float = 1.0, fold: float = 0.0, end: float = 0.0, missing: Scalar = NA
+    text: str, marks: Array, n: float | None = None, fold: float = 0.0, end: float = 0.0, missing: Scalar = NA
 ) -> Any:
-    found = nth(text, marks, int(n), bool(fold))
-    if found is None:
-        return "" if end else missing
-    return text[found[1] :]
+    found = nth(text, marks, n, fold, end)
+    return ("" if missing is None else missing) if found is None else text[found[1] :]
 
 
 def separators(marks: Array, fold: bool) -> re.Pattern[str]:
@@ -263,11 +264,20 @@ def separators(marks: Array, fold: bool) -> re.Pattern[str]:
     return re.compile("|".join(map(re.escape, words)), re.IGNORECASE if fold else 0)
 
 
-def nth(text: str, marks: Array, n: int, fold: bool) -> tuple[int, int] | None:
-    """Place of the n-th mark, from the end where n is negative."""
-    if n == 0:
+def nth(text: str, marks: Array, number: float | None, fold: float, end: float) -> tuple[int, int] | None:
+    """Place of the n-th mark, from the end where n is negative; where asked, the far end of the text is one more.
+
+    A mark longer than the text is not found where n is left out, and #VALUE! where it is given.
+    """
+    n, pattern = 1 if number is None else math.floor(number), separators(marks, bool(fold))
+    too_long = number is not None and all(len(plain(cell)) > len(text) > 0 for row in marks for cell in row)
+    if n == 0 or end not in (0.0, 1.0) or too_long:
         raise ErrorResult(VALUE)
-    places = [match.span() for match in separators(marks, fold).finditer(text)]
+    places = [match.span() for match in pattern.finditer(text)]
+    if end and n > 0:
+        places.append((len(text), len(text)))
+    elif end:
+        places.insert(0, (0, 0))
     return places[n - 1 if n > 0 else n] if abs(n) <= len(places) else None
 
 
@@ -277,6 +287,8 @@ def textsplit(
 ) -> Array:
     across = None if columns == ((None,),) else separators(columns, bool(fold))
     down = None if rows is None or rows == ((None,),) else separators(rows, bool(fold))
+    if across is None and down is None:
+        raise ErrorResult(VALUE)
     lines = down.split(text) if down else [text]
     table = [across.split(line) if across else [line] for line in lines]
     if skip:
@@ -311,5 +323,5 @@ def arraytotext(array: Array, strict: float = 0.0) -> str:
     if strict not in (0.0, 1.0):
         return fail_text(NUM)
     if not strict:
-        return ", ".join(plain(cell) for row in array for cell in row)
+        return ", ".join(valuetotext(cell) for row in array for cell in row)
     return "{" + ";".join(",".join(valuetotext(cell, 1.0) for cell in row) for row in array) + "}"

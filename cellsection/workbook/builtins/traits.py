@@ -93,9 +93,9 @@ def wildcard(pattern: str) -> re.Pattern[str]:
     k = 0
     while k < len(pattern):
         c = pattern[k]
-        if c == "~" and k + 1 < len(pattern) and pattern[k + 1] in "*?~":
+        if c == "~":  # a last ~ stands for nothing
             k += 1
-            parts.append(re.escape(pattern[k]))
+            parts.append(re.escape(pattern[k : k + 1]))
         else:
             parts.append({"*": ".*", "?": "."}.get(c) or re.escape(c))
         k += 1
@@ -167,6 +167,8 @@ def equal_to(rest: str, number: float | None, explicit: bool) -> Callable[[Scala
 def ordered(sign: str, rest: str, number: float | None) -> Callable[[Scalar], bool]:
     """A criterion with < or >: numbers are compared with numbers, text with text."""
     holds = ORDERS[sign]
+    if not rest:  # ">" alone asks for more than nothing, which no cell is
+        return lambda _: False
     if number is not None:
         return lambda cell: cell.__class__ is float and holds(compared(cell, number))
     return lambda cell: isinstance(cell, str) and cell != "" and holds(compared(cell, rest))
