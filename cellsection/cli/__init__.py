@@ -1,0 +1,53 @@
+"""The command line: `cellsection check`, `cellsection functions`, `cellsection start`, one file a command.
+
+Start-up is part of the speed of a check, so each command imports what it needs when it runs.
+"""
+
+from __future__ import annotations
+
+import io
+import sys
+
+import click
+
+import cellsection
+from cellsection.cli.check import check
+from cellsection.cli.functions import functions
+from cellsection.cli.refusal import CANNOT
+from cellsection.cli.start import start
+
+__all__ = ["commands", "main"]
+
+
+def main() -> None:
+    """Run the command line; the program's entry point."""
+    for stream in (sys.stdout, sys.stderr):  # a console that cannot show a ² must not end the run
+        if isinstance(stream, io.TextIOWrapper):
+            stream.reconfigure(errors="replace")
+    try:
+        sys.exit(commands.main(prog_name="cellsection", standalone_mode=False) or 0)
+    except click.Abort:
+        sys.exit(130)
+    except click.ClickException as refusal:
+        refusal.show()
+        sys.exit(CANNOT)
+    except BrokenPipeError:  # the reader of our output has seen enough
+        sys.stderr.close()
+        sys.exit(1)
+
+
+@click.group(context_settings={"help_option_names": ["-h", "--help"], "max_content_width": 100})
+@click.version_option(cellsection.__version__, prog_name="cellsection", message="%(prog)s %(version)s")
+def commands() -> None:
+    """Section functions for calc workbooks, and a check that recalculates saved workbooks without their application.
+
+    \b
+    Examples:
+      cellsection check girder.xlsx         does the saved workbook hold?
+      cellsection functions CS_TOTALS       what a cell function takes and returns
+      cellsection start girder new.xlsx     a template workbook to fill in
+    """  # noqa: D301 - a \b keeps the lines below it as they are
+
+
+for each in (check, functions, start):
+    commands.add_command(each)
