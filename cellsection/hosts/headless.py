@@ -6,7 +6,9 @@ The catalogue is imported when the first formula names one of its functions, so 
 from __future__ import annotations
 
 from collections.abc import Callable
+from datetime import datetime
 from pathlib import Path
+from typing import Literal
 
 from cellsection.workbook.book import Limits
 from cellsection.workbook.recalculate import recalculate as recalculate_book
@@ -26,9 +28,17 @@ def section_function(name: str) -> Callable[..., object] | None:
     return None if function is None else function.call
 
 
-def recalculate(path: str | Path, *, limits: Limits | None = None) -> Recalculation:
+def recalculate(
+    path: str | Path,
+    *,
+    limits: Limits | None = None,
+    clock: datetime | Literal["saved"] | None = None,
+    seed: int | None = None,
+) -> Recalculation:
     """Recalculate a saved workbook, section functions included. The file is not changed.
 
+    clock : the moment that TODAY and NOW give, "saved" for the day on which the book was saved; else the present
+    seed : makes random numbers come out the same again
     Raises WorkbookError where the file cannot be read.
     """
-    return recalculate_book(path, resolve=section_function, limits=limits)
+    return recalculate_book(path, resolve=section_function, limits=limits, clock=clock, seed=seed)

@@ -109,7 +109,9 @@ def protected(machine: Machine, declared: Builtin, kinds: list[str]) -> Callable
         elif kind in ("array", "reference"):
             steps.append((place, array_of, False, False) if kind == "array" else (place, reference_of, False, True))
     before: tuple[Any, ...] = (machine,) if declared.context else ()
-    volatile = Taint(Status.VOLATILE, f"{name} changes from one calculation to the next") if declared.volatile else None
+    volatile: Taint | None = None
+    if declared.volatile and declared.volatile not in machine.known:
+        volatile = Taint(Status.VOLATILE, f"{name} changes from one calculation to the next")
 
     def work(values: list[Any]) -> Any:
         for place, take, number_is, stops in steps:

@@ -11,7 +11,7 @@ import time
 from collections.abc import Callable
 from dataclasses import dataclass
 from datetime import datetime
-from typing import Any, TypeAlias
+from typing import TYPE_CHECKING, Any, TypeAlias
 
 from cellsection.workbook.addresses import LAST_COLUMN, LAST_ROW, address
 from cellsection.workbook.areas import CellArea
@@ -22,7 +22,22 @@ from cellsection.workbook.relative import shown_text
 from cellsection.workbook.results import Status
 from cellsection.workbook.values import Array, ErrorValue, Scalar
 
-__all__ = ["PENDING", "Code", "Machine", "Pending", "Place", "Resolve", "Special", "Taint", "TimeUp", "Unsupported"]
+if TYPE_CHECKING:
+    from random import Random
+
+__all__ = [
+    "PENDING",
+    "Code",
+    "Machine",
+    "Moment",
+    "Pending",
+    "Place",
+    "Resolve",
+    "Special",
+    "Taint",
+    "TimeUp",
+    "Unsupported",
+]
 
 Place: TypeAlias = tuple[int, int]  # index of the sheet, key of the cell
 Code: TypeAlias = Callable[[int], Any]  # a compiled formula or part of one: from the key of its cell to its value
@@ -58,6 +73,20 @@ class Taint:
     reason: str
 
 
+@dataclass(frozen=True, slots=True)
+class Moment:
+    """What a recalculation is told of that which changes from one to the next.
+
+    clock : the moment to calculate for; the present where there is none
+    known : what kinds of change it settles ("day", "time"), so that what depends on them is verified and not volatile
+    seed : what random numbers begin from, so that they come out the same again
+    """
+
+    clock: datetime | None = None
+    known: frozenset[str] = frozenset()
+    seed: int | None = None
+
+
 class Special:
     """Stands in the store for a cell that is pending, or whose value is tainted."""
 
@@ -76,10 +105,20 @@ class Machine:
     """All cells of a book under recalculation. It is the Context that builtins are passed, see builtins/registry.
 
     spills : areas that dynamic formulas are known to fill beyond what the file says, by the place of the formula
+    moment : what moment to calculate for, and what chance begins from
     """
 
-    def __init__(self, book: Book, resolve: Resolve | None, limits: Limits, spills: dict[Place, Bounds]) -> None:
+    def __init__(
+        self,
+        book: Book,
+        resolve: Resolve | None,
+        limits: Limits,
+        spills: dict[Place, Bounds],
+        moment: Moment | None = None,
+    ) -> None:
         self.book, self.resolve, self.limits = book, resolve, limits
+        moment = moment or Moment()
+        self.started, self.known, self.seed = moment.clock or datetime.now(), moment.known, moment.seed
         self.names = [sheet.name for sheet in book.sheets]
         self.sheet_index = {sheet.name.casefold(): k for k, sheet in enumerate(book.sheets)}
         self.stores: list[Store] = []
@@ -99,7 +138,7 @@ class Machine:
         self.kept_cells = 0
         self.references: dict[tuple[int, str], Code | None] = {}  # texts that INDIRECT has read
         self.deadline = time.monotonic() + limits.seconds
-        self.started = datetime.now()
+        self.drawing: Random | None = None  # random numbers of the running formula
 
     def add_sheet(self, values: dict[Position, Scalar], formulas: dict[Position, Formula]) -> int:
         """A sheet's cells: constants stand, formula cells wait. Gives its index."""
@@ -306,8 +345,16 @@ class Machine:
         raise Unsupported(construct)
 
     def now(self) -> datetime:
-        """When the recalculation began."""
+        """When the recalculation began, or the moment it was given."""
         return self.started
+
+    def chance(self) -> Random:
+        """Random numbers; with a seed the same ones for the same cell in every recalculation."""
+        from random import Random
+
+        if self.drawing is None:
+            self.drawing = Random(None if self.seed is None else f"{self.seed} {self.address(self.sheet, self.key)}")
+        return self.drawing
 
     def address(self, index: int, key: int) -> str:
         """Sheet!A1 as a report shows it."""

@@ -6,7 +6,9 @@ import gc
 import sys
 from collections.abc import Iterator
 from contextlib import contextmanager
+from datetime import datetime
 from pathlib import Path
+from typing import Literal
 
 from cellsection.errors import FormulaError
 from cellsection.workbook.areas import CellArea, intersected, is_union
@@ -19,6 +21,7 @@ from cellsection.workbook.machine import (
     PENDING,
     Code,
     Machine,
+    Moment,
     Pending,
     Place,
     Resolve,
@@ -38,25 +41,47 @@ DEPTH = 6000  # Python frames allowed while a long formula is compiled and run
 ROUNDS = 5  # times a book is begun again because a formula fills more cells than the file says
 
 
-def recalculate(path: str | Path, *, resolve: Resolve | None = None, limits: Limits | None = None) -> Recalculation:
+def recalculate(
+    path: str | Path,
+    *,
+    resolve: Resolve | None = None,
+    limits: Limits | None = None,
+    clock: datetime | Literal["saved"] | None = None,
+    seed: int | None = None,
+) -> Recalculation:
     """Read a workbook and recalculate it. The file is not changed.
 
     resolve : gives the host's function for a name in capitals, or None; see hosts.headless
-    Raises WorkbookError where the file cannot be read; whatever is wrong with a formula is told by its cell's status.
+    clock : the moment that TODAY and NOW give; what depends on them is then verified like anything else. "saved" takes
+        the moment at which the book says it was last saved, of which only the day is sure: times stay volatile.
+        Without one it is the present, and both are volatile.
+    seed : makes random numbers come out the same in every recalculation; they stay volatile, as the file does not say
+        what its own numbers began from
+    Raises WorkbookError where the file cannot be read, or does not say when it was saved though that is asked for;
+    whatever is wrong with a formula is told by its cell's status.
     """
-    from cellsection.workbook.reader import read_book
+    from cellsection.workbook.reader import read_book, saved_moment
 
     limits = limits or Limits()
-    return recalculated(read_book(path, limits), resolve, limits)
+    if clock == "saved":
+        moment = Moment(saved_moment(path, limits), frozenset(["day"]), seed)
+    else:
+        moment = Moment(clock, frozenset(["day", "time"] if clock else []), seed)
+    return recalculated(read_book(path, limits), resolve, limits, moment)
 
 
-def recalculated(book: Book, resolve: Resolve | None = None, limits: Limits | None = None) -> Recalculation:
-    """Recalculate a book that is already read."""
+def recalculated(
+    book: Book,
+    resolve: Resolve | None = None,
+    limits: Limits | None = None,
+    moment: Moment | None = None,
+) -> Recalculation:
+    """Recalculate a book that is already read; see recalculate."""
     limits = limits or Limits()
     spills: dict[Place, Bounds] = {}
     with deep_stack(), uncollected():
         for _ in range(ROUNDS):
-            driver = Driver(Machine(book, resolve, limits, spills))
+            driver = Driver(Machine(book, resolve, limits, spills, moment))
             driver.run()
             if not driver.grown:
                 break
@@ -173,7 +198,7 @@ class Driver:
     def compute(self, index: int, key: int, formula: Formula) -> None:
         """Run one formula and keep what it gives. Raises Pending where it needs cells not computed yet."""
         machine = self.machine
-        machine.sheet, machine.key, machine.taint = index, key, None
+        machine.sheet, machine.key, machine.taint, machine.drawing = index, key, None, None
         self.count += 1
         if not self.count % 256:
             machine.check_time()

@@ -76,13 +76,13 @@ def second(serial: float) -> float:
     return float(clock_of(serial)[2]) if serial >= 0 else fail(NUM)
 
 
-@builtin("TODAY", "context", volatile=True)
+@builtin("TODAY", "context", volatile="day")
 def today(context: Context) -> float:
     now = context.now()
     return serial_of(now.year, now.month, now.day, context.date1904)
 
 
-@builtin("NOW", "context", volatile=True)
+@builtin("NOW", "context", volatile="time")
 def now_(context: Context) -> float:
     now = context.now()
     fraction = (now.hour * 3600 + now.minute * 60 + now.second) / 86400

@@ -230,27 +230,25 @@ def arabic(text: str) -> float:
     return float(sign * result) if not rest else fail(VALUE)
 
 
-@builtin("RAND", "", volatile=True)
-def rand() -> float:
-    import random
-
-    return random.random()
+@builtin("RAND", "context", volatile="chance")
+def rand(context: Context) -> float:
+    return context.chance().random()
 
 
-@builtin("RANDBETWEEN", "number number", volatile=True)
-def randbetween(low: float, high: float) -> float:
-    import random
-
+@builtin("RANDBETWEEN", "context number number", volatile="chance")
+def randbetween(context: Context, low: float, high: float) -> float:
     first, last = math.ceil(low), math.floor(high)
-    return float(random.randint(first, last)) if first <= last else fail(NUM)
+    return float(context.chance().randint(first, last)) if first <= last else fail(NUM)
 
 
-@builtin("RANDARRAY", "number? number? number? number? logical?", volatile=True)
-def randarray(rows: float = 1, columns: float = 1, low: float = 0, high: float = 1, whole: bool = False) -> Any:
-    import random
-
+@builtin("RANDARRAY", "context number? number? number? number? logical?", volatile="chance")
+def randarray(
+    context: Context, rows: float = 1, columns: float = 1, low: float = 0, high: float = 1, whole: bool = False
+) -> Any:
     if rows < 1 or columns < 1 or rows * columns > 1_000_000:
         fail(VALUE)
+
+    random = context.chance()
 
     def draw() -> float:
         return float(random.randint(int(low), int(high))) if whole else random.uniform(low, high)

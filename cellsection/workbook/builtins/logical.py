@@ -203,7 +203,7 @@ def cell(context: Context, what: str, area: Any = None) -> Any:
     return VALUE
 
 
-@builtin("INFO", "context text", volatile=True)
+@builtin("INFO", "context text", volatile="machine")
 def info(context: Context, what: str) -> Any:
     if what.strip().lower() == "numfile":
         return float(len(context.sheet_names))

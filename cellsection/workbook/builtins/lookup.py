@@ -242,7 +242,7 @@ def extent(size: float) -> int:
     return 1 if 0 < size < 1 else int(size)
 
 
-@builtin("OFFSET", "context reference number number number? number?", volatile=False)
+@builtin("OFFSET", "context reference number number number? number?")
 def offset(
     context: Context, area: Any, down: float, right: float, height: float | None = None, width: float | None = None
 ) -> Any:

@@ -28,13 +28,17 @@ from __future__ import annotations
 from collections.abc import Callable
 from dataclasses import dataclass
 from datetime import datetime
-from typing import Any, Protocol, TypeVar
+from typing import TYPE_CHECKING, Any, Literal, Protocol, TypeAlias, TypeVar
 
 from cellsection.workbook.values import Area, ErrorValue
+
+if TYPE_CHECKING:
+    from random import Random
 
 __all__ = ["BUILTINS", "Builtin", "Context", "ErrorResult", "builtin"]
 
 F = TypeVar("F", bound=Callable[..., Any])
+Volatility: TypeAlias = Literal["", "day", "time", "chance", "machine"]
 KINDS = frozenset(("number", "measure", "text", "logical", "value", "any", "array", "range", "table", "reference"))
 
 
@@ -84,7 +88,11 @@ class Context(Protocol):
         ...
 
     def now(self) -> datetime:
-        """When the recalculation began."""
+        """When the recalculation began, or the moment it was given."""
+        ...
+
+    def chance(self) -> Random:
+        """Random numbers; with a seed the same ones for the same cell in every recalculation."""
         ...
 
     def unsupported(self, construct: str) -> None:
@@ -110,7 +118,7 @@ class Builtin:
     least: int  # fewest arguments
     most: int | None  # None: any number
     context: bool = False
-    volatile: bool = False
+    volatile: Volatility = ""
 
     def kind(self, index: int) -> str:
         """How argument number index, counted from 0, is taken."""
@@ -120,8 +128,11 @@ class Builtin:
 BUILTINS: dict[str, Builtin] = {}
 
 
-def builtin(name: str, arguments: str = "", *, volatile: bool = False) -> Callable[[F], F]:
-    """Declare a builtin under its name (or several, separated by blanks: the old and the new spelling)."""
+def builtin(name: str, arguments: str = "", *, volatile: Volatility = "") -> Callable[[F], F]:
+    """Declare a builtin under its name (or several, separated by blanks: the old and the new spelling).
+
+    volatile : what makes it give another value another time
+    """
     words = arguments.split()
     context = words[:1] == ["context"]
     words = words[context:]
