@@ -27,7 +27,7 @@ def run(folder: Path) -> int:
     cells = equal = unreadable = 0
     for path in books_in(folder):
         start = time.perf_counter()
-        (report,) = check_books([path], Tolerance(), processes=1)
+        (report,) = check_books([path], Tolerance(), jobs=1)
         seconds = time.perf_counter() - start
         if report.verdict is Verdict.UNREADABLE:
             print(f"{path.name[:36]:36} {report.unreadable}")

@@ -136,7 +136,7 @@ def test_json_says_the_same_as_data(good: Path, bad: Path) -> None:
 
 
 def test_books_are_checked_in_several_processes_in_their_order(good: Path, bad: Path) -> None:
-    made = json.loads(process("check", good, bad, good, "--json", "--processes", 2).stdout)
+    made = json.loads(process("check", good, bad, good, "--json", "--jobs", 2).stdout)
     assert [Path(book["book"]).name for book in made["books"]] == ["good.xlsx", "bad.xlsx", "good.xlsx"]
 
 

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import re
 from collections import defaultdict
+from dataclasses import replace
 from typing import TYPE_CHECKING
 
 from cellsection.check.compare import Tolerance, agree, kind
@@ -27,9 +28,12 @@ from cellsection.workbook.results import Status
 from cellsection.workbook.values import ErrorValue
 
 if TYPE_CHECKING:
+    from datetime import datetime
     from pathlib import Path
+    from typing import Literal
 
     from cellsection.check.findings import Cells
+    from cellsection.workbook.book import Limits
     from cellsection.workbook.results import FormulaCell, Recalculation
     from cellsection.workbook.values import Scalar
 
@@ -42,11 +46,22 @@ SECTION_FUNCTION = re.compile(r"\bCS[_.]\w+ *\(", re.IGNORECASE)
 STANDARD = Tolerance()
 
 
-def check_book(path: str | Path, *, relative: float = STANDARD.relative, absolute: float = STANDARD.absolute) -> Report:
+def check_book(
+    path: str | Path,
+    *,
+    relative: float = STANDARD.relative,
+    absolute: float = STANDARD.absolute,
+    limits: Limits | None = None,
+    clock: datetime | Literal["saved"] | None = None,
+    seed: int | None = None,
+) -> Report:
     """Recalculate a saved workbook and compare every formula cell with the value the file holds; it is not changed.
 
     path : an .xlsx, .xlsm or .ods file
     relative, absolute : the tolerance for numbers, see `Tolerance`; both zero or more
+    limits : how much a book may ask for before it is refused
+    clock : the moment that TODAY and NOW give, "saved" for the one at which the book was saved; else the present
+    seed : makes random numbers come out the same again
 
     A file that cannot be read is a report too: its verdict is UNREADABLE, `unreadable` says why and what to do.
     """
@@ -54,13 +69,14 @@ def check_book(path: str | Path, *, relative: float = STANDARD.relative, absolut
 
     tolerance = Tolerance(relative, absolute)
     try:
-        return examine(recalculate(path), tolerance)
+        report = examine(recalculate(path, limits=limits, clock=clock, seed=seed), tolerance)
     except WorkbookError as unreadable:
-        return Report(str(path), tolerance, unreadable=str(unreadable))
+        report = Report(str(path), tolerance, unreadable=str(unreadable))
     except OSError as failure:
         reason = f"{path} cannot be opened: {failure.strerror or failure}"
         remedy = "Look at its name, and whether you may read it"
-        return Report(str(path), tolerance, unreadable=f"{reason}. {remedy}.")
+        report = Report(str(path), tolerance, unreadable=f"{reason}. {remedy}.")
+    return replace(report, clock=clock, seed=seed)
 
 
 def examine(book: Recalculation, tolerance: Tolerance = STANDARD) -> Report:

@@ -7,12 +7,13 @@ from __future__ import annotations
 
 from dataclasses import dataclass, field
 from enum import Enum
-from typing import TYPE_CHECKING, ClassVar, TypeAlias
+from typing import TYPE_CHECKING, ClassVar, Literal, TypeAlias
 
 from cellsection.check.places import address
 
 if TYPE_CHECKING:
     from collections.abc import Iterable
+    from datetime import datetime
 
     from cellsection.check.compare import Tolerance
     from cellsection.workbook.values import Scalar
@@ -225,7 +226,10 @@ class Tally:
 
 @dataclass(frozen=True, slots=True)
 class Report:
-    """The check of one book."""
+    """The check of one book.
+
+    clock, seed : what was asked for, see `check_book`; None where nothing was
+    """
 
     path: str
     tolerance: Tolerance
@@ -234,6 +238,8 @@ class Report:
     findings: tuple[Finding, ...] = ()
     notes: tuple[Note, ...] = ()
     unreadable: str = ""  # fault and remedy, where the book could not be read
+    clock: datetime | Literal["saved"] | None = None
+    seed: int | None = None
 
     @property
     def verdict(self) -> Verdict:

@@ -1,4 +1,4 @@
-"""A report as plain data, as `--json` prints it.
+"""A report as plain data, as `--json` and `--jsonl` print it.
 
 docs/checking.md describes the schema; a change of meaning raises its number.
 """
@@ -18,6 +18,7 @@ from cellsection.check.findings import (
     worst,
 )
 from cellsection.check.places import address
+from cellsection.check.report import moment_in_words
 from cellsection.workbook.values import ErrorValue
 
 if TYPE_CHECKING:
@@ -26,23 +27,37 @@ if TYPE_CHECKING:
     from cellsection.check.findings import Cells, Finding, Report, Spot
     from cellsection.workbook.values import Scalar
 
-__all__ = ["SCHEMA", "book_record", "record"]
+__all__ = ["LINE_SCHEMA", "SCHEMA", "book_record", "line_record", "record"]
 
 SCHEMA = "cellsection check 1"
+LINE_SCHEMA = "cellsection check line 1"
 Record: TypeAlias = dict[str, Any]
 
 
 def record(reports: Sequence[Report]) -> Record:
     """The whole result of one run."""
     verdict = worst(report.verdict for report in reports)
-    tolerance = reports[0].tolerance
     return {
         "schema": SCHEMA,
-        "version": cellsection.__version__,
-        "tolerance": {"relative": tolerance.relative, "absolute": tolerance.absolute},
+        **_terms(reports[0]),
         "verdict": verdict.words,
         "exit code": verdict.value,
         "books": [book_record(report) for report in reports],
+    }
+
+
+def line_record(report: Report) -> Record:
+    """One book, with what else must be known to read it apart from its run."""
+    return {"schema": LINE_SCHEMA, **_terms(report), **book_record(report)}
+
+
+def _terms(report: Report) -> Record:
+    """What checked the book, and what was asked for; the same for all books of a run."""
+    return {
+        "version": cellsection.__version__,
+        "tolerance": {"relative": report.tolerance.relative, "absolute": report.tolerance.absolute},
+        "clock": None if report.clock is None else moment_in_words(report.clock),
+        "seed": report.seed,
     }
 
 

@@ -2,14 +2,15 @@
 
 from __future__ import annotations
 
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Literal
 
 from cellsection.check.compare import kind
 from cellsection.check.findings import Error, Verdict
 from cellsection.check.places import rectangles
 
 if TYPE_CHECKING:
-    from collections.abc import Sequence
+    from collections.abc import Mapping, Sequence
+    from datetime import datetime
 
     from cellsection.check.findings import Cells, Report
     from cellsection.workbook.values import Scalar
@@ -21,6 +22,7 @@ __all__ = [
     "closing_line",
     "counted",
     "headline",
+    "moment_in_words",
     "places_in_words",
     "printable",
     "tally_line",
@@ -86,20 +88,36 @@ def checks_line(report: Report) -> str:
     return f"{counted(tally.checks, 'acceptance check')}: {said}" if tally.checks else ""
 
 
-def closing_line(reports: Sequence[Report]) -> str:
-    """One line for many books: how many of them hold, and the tolerance."""
-    counts = {verdict: sum(report.verdict is verdict for report in reports) for verdict in Verdict}
+def closing_line(counts: Mapping[Verdict, int], report: Report) -> str:
+    """One line for many books: how many came to each verdict, and on what terms, which any one report tells."""
+    total = sum(counts.values())
     words = {
         Verdict.HOLDS: ("holds", "hold"),
         Verdict.DOES_NOT_HOLD: ("does not hold", "do not hold"),
         Verdict.NOT_VERIFIABLE: ("is not verifiable in part", "are not verifiable in part"),
         Verdict.UNREADABLE: ("is unreadable", "are unreadable"),
     }
-    met = [f"{count:,} {words[verdict][count != 1]}" for verdict, count in counts.items() if count]
-    if counts[Verdict.HOLDS] == len(reports) > 1:
+    met = [f"{count:,} {words[verdict][count != 1]}" for verdict in Verdict if (count := counts.get(verdict, 0))]
+    if counts.get(Verdict.HOLDS) == total > 1:
         met = ["all hold"]
-    books = f"{counted(len(reports), 'book')}: " if len(reports) > 1 else ""
-    return f"{books}{', '.join(met) if books else ''}{'. ' if books else ''}Tolerance: {reports[0].tolerance}."
+    sentences = [f"{counted(total, 'book')}: {', '.join(met)}"] if total > 1 else []
+    sentences.append(f"Tolerance: {report.tolerance}")
+    if report.clock is not None:
+        moment = "the day each book was saved" if report.clock == "saved" else moment_in_words(report.clock)
+        sentences.append(f"TODAY and NOW: {moment}")
+    if report.seed is not None:
+        sentences.append(f"Random numbers begin from {report.seed}")
+    return ". ".join(sentences) + "."
+
+
+def moment_in_words(clock: datetime | Literal["saved"]) -> str:
+    """A moment as it is given to `--clock`.
+
+    >>> from datetime import datetime
+    >>> moment_in_words(datetime(2026, 12, 1)), moment_in_words(datetime(2026, 12, 1, 14, 30)), moment_in_words("saved")
+    ('2026-12-01', '2026-12-01T14:30:00', 'saved')
+    """
+    return clock if isinstance(clock, str) else clock.isoformat().removesuffix("T00:00:00")
 
 
 def value_in_words(value: Scalar, *, every: bool = False) -> str:

@@ -2,22 +2,28 @@
 
 from __future__ import annotations
 
-import sys
+from collections import Counter
+from contextlib import closing
 from pathlib import Path
 from typing import TYPE_CHECKING
 
 import click
 
+from cellsection.cli.options import host_options
+from cellsection.cli.progress import Progress
 from cellsection.cli.refusal import Refusal
 
 if TYPE_CHECKING:
-    from collections.abc import Iterable, Iterator, Sequence
+    from collections.abc import Iterator, Mapping, Sequence
+    from datetime import datetime
+    from typing import Literal
 
-    from cellsection.check import Report
+    from cellsection.check import Report, Verdict
+    from cellsection.workbook.book import Limits
 
 __all__ = ["check"]
 
-BUSY = 500_000  # bytes of a book from which a person at a terminal is told that it is being worked on
+LEAST_MEMORY = 256  # MB of address space below which Python with its libraries cannot begin
 
 
 @click.command(short_help="Recalculate saved workbooks and compare them with the file.")
@@ -37,10 +43,20 @@ BUSY = 500_000  # bytes of a book from which a person at a terminal is told that
     help="Absolute tolerance, in the unit of the cell; a number holds when it keeps either.  [default: 1e-12]",
 )
 @click.option("--all", "every", is_flag=True, help="Show long lists, texts and formulas whole.")
-@click.option("--json", "as_json", is_flag=True, help="Print the whole result as JSON (docs/checking.md).")
+@click.option("--json", "as_json", is_flag=True, help="Print the whole result as one JSON object (docs/checking.md).")
 @click.option(
-    "--processes", metavar="NUMBER", type=click.IntRange(1), help="Books checked at a time.  [default: as many as pay]"
+    "--jsonl", "as_lines", is_flag=True, help="Print a JSON object a line and book, each as soon as it is there."
 )
+@click.option(
+    "-j", "--jobs", metavar="NUMBER", type=click.IntRange(1), help="Books checked at a time.  [default: as many as pay]"
+)
+@click.option(
+    "--memory",
+    metavar="MB",
+    type=click.IntRange(LEAST_MEMORY),
+    help="The most memory that a book may take, checked in a process apart; not on Windows.  [default: no bound]",
+)
+@host_options
 @click.option("--trace", is_flag=True, help="Show the Python traceback of an internal fault.")
 def check(
     books: tuple[Path, ...],
@@ -48,7 +64,12 @@ def check(
     absolute: float,
     every: bool,
     as_json: bool,
-    processes: int | None,
+    as_lines: bool,
+    jobs: int | None,
+    memory: int | None,
+    limits: Limits | None,
+    clock: datetime | Literal["saved"] | None,
+    seed: int | None,
     trace: bool,
 ) -> None:
     """Recalculate saved workbooks and compare every formula cell with the value in the file.
@@ -70,25 +91,43 @@ def check(
       cellsection check girder.xlsx
       cellsection check calcs/ --relative 1e-6
       cellsection check girder.xlsx --json > girder.json
+      cellsection check archive/ --jobs 8 --clock saved --jsonl > archive.jsonl
     """  # noqa: D301 - a \b keeps the lines below it as they are
-    from cellsection.check import Tolerance, worst
-    from cellsection.check.many import check_books
+    from cellsection.check import Tolerance, check_books, worst
 
+    if as_json and as_lines:
+        raise Refusal("--json and --jsonl are two ways to print the result. Give one of them.")
     paths = list(_expanded(books))
     if not paths:
         raise Refusal("there are no workbooks (.xlsx, .xlsm, .ods) in " + ", ".join(map(str, books)))
-    found: list[Report] = []
-    for report in _with_progress(
-        paths, check_books(paths, Tolerance(relative, absolute), processes=processes or 0, trace=trace)
-    ):
-        found.append(report)
-        if not as_json:
-            _show(report, every=every, first=len(found) == 1)
+    reports = check_books(
+        paths,
+        Tolerance(relative, absolute),
+        limits=limits,
+        clock=clock,
+        seed=seed,
+        jobs=jobs or 0,
+        memory=memory and memory * 1_000_000,
+        trace=trace,
+    )
+    kept: list[Report] = []  # only where all must be there before anything can be printed
+    counts: Counter[Verdict] = Counter()
+    with closing(reports), Progress(paths) as progress:
+        for report in reports:
+            progress.withdraw()
+            if as_json:
+                kept.append(report)
+            elif as_lines:
+                _show_line(report)
+            else:
+                _show(report, every=every, first=not counts)
+            counts[report.verdict] += 1
+            progress.advance()
     if as_json:
-        _show_json(found)
-    else:
-        _show_closing(found)
-    click.get_current_context().exit(worst(report.verdict for report in found).value)
+        _show_json(kept)
+    elif not as_lines:
+        _show_closing(counts, report)
+    click.get_current_context().exit(worst(counts).value)
 
 
 def _expanded(books: Sequence[Path]) -> Iterator[Path]:
@@ -100,22 +139,6 @@ def _expanded(books: Sequence[Path]) -> Iterator[Path]:
             yield from books_in(each)
         else:
             yield each
-
-
-def _with_progress(paths: Sequence[Path], reports: Iterable[Report]) -> Iterator[Report]:
-    """The reports; meanwhile a person at a terminal reads which book is being worked on, where that takes a while."""
-    large = any(path.is_file() and path.stat().st_size > BUSY for path in paths)
-    told = sys.stderr.isatty() and (large or len(paths) > 3)
-    coming = iter(reports)
-    for number, path in enumerate(paths, start=1):
-        if told:
-            click.echo(f"\r\033[K  checking {number} of {len(paths)}: {path.name[:50]} ...", nl=False, err=True)
-        report = next(coming, None)
-        if told:
-            click.echo("\r\033[K", nl=False, err=True)
-        if report is None:
-            return
-        yield report
 
 
 def _show(report: Report, *, every: bool, first: bool) -> None:
@@ -136,11 +159,11 @@ def _show(report: Report, *, every: bool, first: bool) -> None:
         lay_out(report, every=every)
 
 
-def _show_closing(reports: Sequence[Report]) -> None:
+def _show_closing(counts: Mapping[Verdict, int], last: Report) -> None:
     from cellsection.check.report import closing_line
 
     click.echo()
-    click.echo(closing_line(reports))
+    click.echo(closing_line(counts, last))
 
 
 def _show_json(reports: Sequence[Report]) -> None:
@@ -149,3 +172,11 @@ def _show_json(reports: Sequence[Report]) -> None:
     from cellsection.check.record import record
 
     click.echo(json.dumps(record(reports), indent=2, allow_nan=False))
+
+
+def _show_line(report: Report) -> None:
+    import json
+
+    from cellsection.check.record import line_record
+
+    click.echo(json.dumps(line_record(report), allow_nan=False))  # echo flushes, so that a reader has it at once

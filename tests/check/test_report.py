@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import json
+from collections import Counter
 
 import pytest
 
@@ -93,9 +94,10 @@ def test_a_long_list_of_places_is_cut_with_a_count() -> None:
 
 def test_the_closing_line_counts_the_books_and_states_the_tolerance() -> None:
     good, bad = examine(book(cell("C4", 1.0, 1.0))), examine(book(cell("C4", 1.0, 2.0)))
-    assert closing_line([good]) == "Tolerance: relative 1e-9, absolute 1e-12."
-    assert closing_line([good, good]).startswith("2 books: all hold. ")
-    assert closing_line([good, bad, bad]).startswith("3 books: 1 holds, 2 do not hold. ")
+    assert closing_line(Counter([good.verdict]), good) == "Tolerance: relative 1e-9, absolute 1e-12."
+    assert closing_line(Counter([good.verdict] * 2), good).startswith("2 books: all hold. ")
+    counts = Counter(each.verdict for each in (good, bad, bad))
+    assert closing_line(counts, bad).startswith("3 books: 1 holds, 2 do not hold. ")
 
 
 def test_the_record_is_json_and_holds_every_finding() -> None:
