@@ -6,6 +6,7 @@ children of a shared formula hold the very same Formula object as their master, 
 
 from __future__ import annotations
 
+import re
 from dataclasses import dataclass, field
 from typing import Literal, TypeAlias
 
@@ -13,6 +14,7 @@ from cellsection.workbook.values import Scalar
 
 __all__ = ["Book", "Bounds", "Formula", "Limits", "Position", "Sheet", "Table", "column_letters", "column_number"]
 
+NUMBER = re.compile(r"[0-9]{1,20}(?:\.[0-9]{1,30})?(?:[Ee][+-]?[0-9]{1,2})?", re.ASCII)
 Position: TypeAlias = tuple[int, int]
 Bounds: TypeAlias = tuple[int, int, int, int]  # top, left, bottom, right, ends included
 
@@ -87,8 +89,22 @@ class Book:
     tables: dict[str, Table] = field(default_factory=dict)
     externals: dict[str, tuple[str, list[Sheet]]] = field(default_factory=dict)
     date1904: bool = False
-    iterate: bool = False
+    iterate: bool = False  # circles are worked off by iteration, in so many rounds, until changes are so small
+    rounds: int = 100
+    change_allowed: float = 0.001
     notes: list[str] = field(default_factory=list)
+
+    def iterated(self, rounds: str, change: str) -> None:
+        """The book asks for iteration, in so many rounds at most and until changes are so small; "" for the usual."""
+        self.iterate = True
+        if rounds.isdecimal() and rounds.isascii() and 0 < len(rounds) < 6:
+            self.rounds = max(int(rounds), 1)
+        if NUMBER.fullmatch(change):
+            self.change_allowed = float(change)
+        self.notes.append(
+            f"the book asks for circles to be iterated, in {self.rounds:,} rounds at most, to changes of "
+            f"{self.change_allowed:g} or less"
+        )
 
 
 def column_letters(column: int) -> str:

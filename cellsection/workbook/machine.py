@@ -27,6 +27,7 @@ if TYPE_CHECKING:
 
 __all__ = [
     "PENDING",
+    "SETTLING",
     "Code",
     "Machine",
     "Moment",
@@ -97,6 +98,7 @@ class Special:
 
 
 PENDING = Special()
+SETTLING = Taint(Status.VOLATILE, "is part of a circle that is being iterated")
 WEIGHT = {Status.VOLATILE: 1, Status.NOT_VERIFIED: 2, Status.CYCLE: 3, Status.UNSUPPORTED: 4}
 Store: TypeAlias = dict[int, Any]
 
@@ -133,6 +135,7 @@ class Machine:
         self.sheet, self.key = 0, cell_key(1, 1)
         self.taint: Taint | None = None
         self.whole: dict[Place, Array] = {}  # what a formula gave, where that is more than its own cell shows
+        self.remarks: dict[Place, str] = {}  # what a reader should know of one cell
         self.filled: dict[Place, Bounds] = {}  # first cell of an array formula -> the area it fills
         self.areas: dict[tuple[int, int, int, int, int], tuple[Array, Taint | None]] = {}
         self.kept_cells = 0
@@ -197,7 +200,7 @@ class Machine:
 
     def stain(self, taint: Taint) -> None:
         """Note why the running formula's value is not a plain one; the weightier reason stays."""
-        if self.taint is None or WEIGHT[taint.status] > WEIGHT[self.taint.status]:
+        if self.taint is None or weight(taint) > weight(self.taint):
             self.taint = taint
 
     def area_values(self, index: int, top: int, left: int, bottom: int, right: int) -> Array:
@@ -220,7 +223,7 @@ class Machine:
             finally:
                 taint, self.taint = self.taint, outer
             kept = (array, taint)
-            if self.kept_cells < KEPT_CELLS:
+            if self.kept_cells < KEPT_CELLS and taint is not SETTLING:
                 self.kept_cells += cells
                 self.areas[key] = kept
         if kept[1] is not None:
@@ -359,6 +362,11 @@ class Machine:
     def address(self, index: int, key: int) -> str:
         """Sheet!A1 as a report shows it."""
         return f"{self.names[index]}!{address(position(key))}"
+
+
+def weight(taint: Taint) -> float:
+    """How much a taint says: of two the heavier one stays."""
+    return 1.5 if taint is SETTLING else WEIGHT[taint.status]
 
 
 def sparse_rows(store: Store, top: int, left: int, bottom: int, right: int) -> list[tuple[Any, ...]]:

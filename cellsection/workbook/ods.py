@@ -147,9 +147,8 @@ class ContentReader:
                     raise refused(f'counts days from "{day[:24]}", which is no date') from None
                 notes.append(f"the book counts days from {day}, which is not supported in formulas")
         for iteration in settings.along("iteration"):
-            book.iterate = iteration.get(TABLE + "status") == "enable"
-            if book.iterate:
-                notes.append("the book asks for iterative calculation")
+            if iteration.get(TABLE + "status") == "enable":
+                book.iterated(iteration.get(TABLE + "steps"), iteration.get(TABLE + "maximum-difference"))
         if settings.get(TABLE + "precision-as-shown") == "true":
             notes.append("the book asks for calculation with the precision as displayed, which is not supported")
         if settings.get(TABLE + "search-criteria-must-apply-to-whole-cell") == "false":

@@ -30,6 +30,9 @@ def formula_cells(driver: Driver, index: int) -> Iterator[FormulaCell]:
         owner = owners.get(key, key) if owners else key
         formula = formulas[owner]
         form = compiled.get(formula)
+        notes = form.notes if form else ()
+        if (remark := machine.remarks.get((index, owner))) is not None:
+            notes = (*notes, remark)
         status, reason, value = Status.RECALCULATED, "", store.get(key)
         if value.__class__ is Special:
             if value.taint is not None:
@@ -43,7 +46,7 @@ def formula_cells(driver: Driver, index: int) -> Iterator[FormulaCell]:
             status,
             form.call if form else "",
             reason,
-            form.notes if form else (),
+            notes,
             place in saved,
             partial(shown_text, formula, place if owner == key else position(owner)),
             machine.whole.get((index, key)),

@@ -14,11 +14,13 @@ from cellsection.errors import FormulaError
 from cellsection.workbook.areas import CellArea, intersected, is_union
 from cellsection.workbook.book import Book, Bounds, Formula, Limits
 from cellsection.workbook.calls import given_back
+from cellsection.workbook.circles import Circles
 from cellsection.workbook.coercion import CALC
 from cellsection.workbook.compile import Compiled, Compiler
 from cellsection.workbook.filling import fill, signed
 from cellsection.workbook.machine import (
     PENDING,
+    SETTLING,
     Code,
     Machine,
     Moment,
@@ -122,6 +124,7 @@ class Driver:
         self.by_formula: list[dict[Formula, Compiled]] = [{} for _ in machine.book.sheets]
         self.by_key: dict[tuple[int, bool, str], dict[Key, Compiled]] = {}
         self.patterns: dict[tuple[int, int, bool], tuple[Pattern, Compiled]] = {}  # the last form met in each column
+        self.circles = Circles(self)
         self.open: dict[Place, None] = {}  # started and on hold, in the order they wait for one another
         self.grown: dict[Place, Bounds] = {}  # areas that turned out larger than the file says
         self.count = 0
@@ -149,47 +152,34 @@ class Driver:
         while stack:
             here = stack[-1]
             index, key = here
-            if machine.stores[index].get(key) is not PENDING:
+            if machine.stores[index].get(key) is not PENDING and here not in self.circles.heads:
                 stack.pop()
                 waiting.pop(here, None)
                 continue
             waiting[here] = None
             try:
                 self.compute(index, key, machine.formulas[index][key])
+                if here in self.circles.heads:
+                    self.circles.computed(here)
             except Pending as again:
                 needed = [self.owning(each) for each in again.places]
                 circle = next((each for each in needed if each in waiting), None)
                 if circle is None:
                     stack.extend(needed)
                 else:
-                    self.close_circle(circle)
+                    self.circles.close(circle)
 
     def owning(self, place: Place) -> Place:
         """The cell whose formula fills this one."""
         index, key = place
         return (index, self.machine.owners[index].get(key, key))
 
-    def close_circle(self, start: Place) -> None:
-        """Cells that wait for one another in a circle keep their saved values and say so."""
-        circle: list[Place] = []
-        for place in reversed(self.open):
-            circle.append(place)
-            if place == start:
-                break
-        circle.reverse()
-        names = [self.machine.address(*place) for place in circle]
-        shown = names if len(names) <= 12 else [*names[:11], f"... {len(names) - 12} more ...", names[-1]]
-        reason = "circular reference " + " -> ".join([*shown, names[0]])
-        if self.machine.book.iterate:
-            reason += "; the book asks for iterative calculation, which is not carried out"
-        for index, key in circle:
-            self.machine.settle_saved(index, key, Taint(Status.CYCLE, reason))
-            self.open.pop((index, key), None)
-
     def give_up(self) -> None:
         """The time is up: what is not computed keeps its saved value and says so."""
         machine = self.machine
         reason = f"not reached within the time limit of {machine.limits.seconds:g} s"
+        for index, key in (*self.circles.heads, *self.circles.members):
+            machine.settle_saved(index, key, Taint(Status.NOT_VERIFIED, reason))
         for index, formulas in enumerate(machine.formulas):
             for key in formulas:
                 if machine.stores[index][key] is PENDING:
@@ -217,6 +207,8 @@ class Driver:
             machine.settle_saved(index, key, Taint(Status.UNSUPPORTED, what))
             return
         taint = machine.taint
+        if taint is SETTLING:
+            self.circles.members[index, key] = None
         if value.__class__ is float and taint is None and formula.kind == "cell":
             machine.stores[index][key] = value
             return

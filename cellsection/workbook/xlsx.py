@@ -102,9 +102,8 @@ def read_workbook_pr(root: Element, book: Book) -> None:
 def read_calc_pr(root: Element, book: Book) -> None:
     """How the book wants to be calculated."""
     for element in root.along("calcPr"):
-        book.iterate = element.flag("iterate")
-        if book.iterate:
-            book.notes.append("the book asks for iterative calculation")
+        if element.flag("iterate"):
+            book.iterated(element.get("iterateCount"), element.get("iterateDelta"))
         if element.get("fullPrecision") in ("0", "false"):
             book.notes.append("the book asks for calculation with the precision as displayed, which is not supported")
         if element.get("calcMode") == "manual":

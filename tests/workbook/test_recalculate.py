@@ -90,16 +90,6 @@ def test_volatile_results_and_their_dependants_are_marked(tmp_path: Path) -> Non
     assert found.cells["A4"].status is Status.RECALCULATED
 
 
-def test_iterative_calculation_is_reported_and_not_faked(tmp_path: Path) -> None:
-    from cellsection.workbook.recalculate import recalculate
-
-    path = saved(tmp_path, {"S": {"A1": "=A1+1"}}, None, '<calcPr iterate="1"/>')
-    found = Results(recalculate(path))
-    assert found.cells["A1"].status is Status.CYCLE
-    assert "iterative" in found.cells["A1"].reason
-    assert any("iterative" in note for note in found.recalculation.notes)
-
-
 def test_a_data_table_is_reported(tmp_path: Path) -> None:
     cell = results(tmp_path, {"A1": '<f t="dataTable" ref="A1:A2" dt2D="0" r1="B1"/><v>3</v>'}).cells["A1"]
     assert (cell.status, cell.value) == (Status.UNSUPPORTED, 3.0)
