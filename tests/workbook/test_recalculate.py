@@ -11,7 +11,7 @@ from cellsection.workbook.book import Limits
 from cellsection.workbook.builtins import BUILTINS
 from cellsection.workbook.results import Status
 from cellsection.workbook.values import ErrorValue
-from tests.workbook.small import Results, results, saved
+from tests.workbook.small import results, saved
 
 
 def test_a_chain_of_a_hundred_thousand_cells_needs_no_recursion(tmp_path: Path) -> None:
