@@ -37,7 +37,7 @@ class Limits:
 class Formula:
     """A formula as written in its cell, without its leading sign. Compared by identity: children share their master's.
 
-    kind : an ordinary cell, an array formula over `area`, a data table (which is not supported), or missing: its shared
+    kind : an ordinary cell, an array formula over `area`, a data table over `area`, or missing: its shared
         formula is not in the file, or it is written in a language that is not supported, and then `text` has its prefix
     dynamic : written by an application with dynamic arrays, so that it spills instead of intersecting
     language : the spelling of references and separators
@@ -102,7 +102,7 @@ class Book:
         if NUMBER.fullmatch(change):
             self.change_allowed = float(change)
         self.notes.append(
-            f"the book asks for circles to be iterated, in {self.rounds:,} rounds at most, to changes of "
+            f"the book asks for iterative calculation of circles, in {self.rounds:,} rounds at most, to changes of "
             f"{self.change_allowed:g} or less"
         )
 

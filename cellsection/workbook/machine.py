@@ -25,6 +25,8 @@ from cellsection.workbook.values import Array, ErrorValue, Scalar
 if TYPE_CHECKING:
     from random import Random
 
+    from cellsection.workbook.recalculate import Driver
+
 __all__ = [
     "PENDING",
     "SETTLING",
@@ -130,11 +132,13 @@ class Machine:
         for index, sheet in enumerate(book.sheets):
             self.add_sheet(sheet.values, sheet.formulas)
             for key, formula in self.formulas[index].items():
-                if area := spills.get((index, key), formula.area if formula.kind == "array" else None):
+                if area := spills.get((index, key), formula.area if formula.kind != "cell" else None):
                     self.own_area(index, key, area)
         self.sheet, self.key = 0, cell_key(1, 1)
         self.taint: Taint | None = None
         self.whole: dict[Place, Array] = {}  # what a formula gave, where that is more than its own cell shows
+        self.driver: Driver | None = None  # which computes the cells
+        self.supposing = False  # while it is asked what a cell would come to if others held other values
         self.remarks: dict[Place, str] = {}  # what a reader should know of one cell
         self.filled: dict[Place, Bounds] = {}  # first cell of an array formula -> the area it fills
         self.areas: dict[tuple[int, int, int, int, int], tuple[Array, Taint | None]] = {}
@@ -342,6 +346,14 @@ class Machine:
         """The formula of a cell as the engineer reads it, "" where there is none."""
         formula = self.formula_at(sheet, row, column)
         return shown_text(formula, (row, column)) if formula else ""
+
+    def supposed(self, given: list[tuple[CellArea, Scalar]], wanted: CellArea) -> Scalar:
+        """What a cell would come to if others held other values."""
+        from cellsection.workbook.whatif import supposed
+
+        assert self.driver is not None
+        places = {(area.index, cell_key(area.top, area.left)): value for area, value in given}
+        return supposed(self.driver, places, (wanted.index, cell_key(wanted.top, wanted.left)))
 
     def unsupported(self, construct: str) -> None:
         """The running formula needs what is not supported."""

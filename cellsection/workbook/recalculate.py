@@ -36,10 +36,12 @@ from cellsection.workbook.outcome import formula_cells
 from cellsection.workbook.relative import Key, Pattern, relative_key
 from cellsection.workbook.results import Recalculation, Status
 from cellsection.workbook.values import ErrorValue
+from cellsection.workbook.whatif import data_table
 
 __all__ = ["recalculate", "recalculated"]
 
 DEPTH = 6000  # Python frames allowed while a long formula is compiled and run
+FILLING = ("array", "data table")  # kinds of formula that fill an area
 ROUNDS = 5  # times a book is begun again because a formula fills more cells than the file says
 
 
@@ -120,6 +122,7 @@ class Driver:
 
     def __init__(self, machine: Machine) -> None:
         self.machine = machine
+        machine.driver = self
         self.compiler = Compiler(machine)
         self.by_formula: list[dict[Formula, Compiled]] = [{} for _ in machine.book.sheets]
         self.by_key: dict[tuple[int, bool, str], dict[Key, Compiled]] = {}
@@ -217,7 +220,7 @@ class Driver:
             return
         if value.__class__ is tuple and not is_union(value) and (len(value) > 1 or len(value[0]) > 1):
             machine.whole[index, key] = value
-        if formula.kind == "array" or (formula.dynamic and value.__class__ in (tuple, CellArea)):
+        if formula.kind in FILLING or (formula.dynamic and value.__class__ in (tuple, CellArea)):
             grown = fill(machine, (index, key), formula, value, taint)
             if grown is not None:
                 self.grown[index, key] = grown
@@ -238,27 +241,27 @@ class Driver:
 
     def compiled(self, formula: Formula, index: int) -> Compiled:
         """The compiled form of a formula: one for all that read alike relative to their cell."""
-        known = self.by_form(formula, index)
+        try:
+            known = self.by_form(formula, index)
+        except FormulaError as problem:
+            known = Compiled(fault=problem)
         if known.fault is not None:
             known.run = faulty(known.fault)
         self.by_formula[index][formula] = known
         return known
 
     def by_form(self, formula: Formula, index: int) -> Compiled:
-        """As compiled, found by the formula's relative form, or compiled now."""
+        """As compiled, found by the formula's relative form, or compiled now. Raises FormulaError."""
         limit = self.machine.limits.formula_length
         if formula.kind == "data table":
-            return Compiled(fault=FormulaError("data tables are not supported", construct="data table"))
+            return Compiled(run=data_table(self, index, formula))
         if formula.kind == "missing" and formula.text:
             language = formula.text.partition(":=")[0]
-            fault = FormulaError(f"it is written in the language {language}", construct=f"formula language {language}")
-            return Compiled(fault=fault)
+            raise FormulaError(f"it is written in the language {language}", construct=f"formula language {language}")
         if formula.kind == "missing":
-            fault = FormulaError("its shared formula is missing", construct="shared formula without master")
-            return Compiled(fault=fault)
+            raise FormulaError("its shared formula is missing", construct="shared formula without master")
         if len(formula.text) > limit:
-            fault = FormulaError(f"it has more than {limit:,} characters", construct="overlong formula")
-            return Compiled(fault=fault)
+            raise FormulaError(f"it has more than {limit:,} characters", construct="overlong formula")
         spread = formula.kind == "array" or formula.dynamic
         column = (index, formula.column, spread)
         pattern, last = self.patterns.get(column, (None, None))

@@ -134,4 +134,4 @@ def shown_text(formula: Formula, position: Position) -> str:
     if "_xl" in text:
         text = FILE_PREFIX.sub("", text)
     sign = "=" if formula.language == "excel" else "of:="
-    return f"{{{sign}{text}}}" if formula.kind == "array" and not formula.dynamic else f"{sign}{text}"
+    return f"{{{sign}{text}}}" if formula.kind in ("array", "data table") and not formula.dynamic else f"{sign}{text}"

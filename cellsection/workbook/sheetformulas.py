@@ -46,6 +46,8 @@ class SheetFormulas:
             dynamic = cm is not None and cm in self.metadata.dynamic
             formula = Formula(text, *position, kind="array", area=self.area(f, position), dynamic=dynamic)
         elif kind == "dataTable":
+            two, across = f.get("dt2D") in ("1", "true"), f.get("dtr") in ("1", "true")
+            text = table_text(f.get("r1", ""), f.get("r2", ""), two, across)
             formula = Formula(text, *position, kind="data table", area=self.area(f, position))
         elif text:
             formula = Formula(text, *position, dynamic=cm is not None and cm in self.metadata.dynamic)
@@ -80,3 +82,14 @@ class SheetFormulas:
         if missing:
             cells = "1 cell shares" if missing == 1 else f"{missing:,} cells share"
             notes.append(f"sheet {self.sheet.name}: {cells} a formula that is not in the file")
+
+
+def table_text(first: str, second: str, two: bool, across: bool) -> str:
+    """A data table as its application shows it: TABLE(row input cell, column input cell).
+
+    >>> table_text("B1", "B2", True, True), table_text("B1", "", False, True), table_text("B1", "", False, False)
+    ('TABLE(B1,B2)', 'TABLE(B1,)', 'TABLE(,B1)')
+    """
+    if two:
+        return f"TABLE({first},{second})"
+    return f"TABLE({first},)" if across else f"TABLE(,{first})"

@@ -90,12 +90,6 @@ def test_volatile_results_and_their_dependants_are_marked(tmp_path: Path) -> Non
     assert found.cells["A4"].status is Status.RECALCULATED
 
 
-def test_a_data_table_is_reported(tmp_path: Path) -> None:
-    cell = results(tmp_path, {"A1": '<f t="dataTable" ref="A1:A2" dt2D="0" r1="B1"/><v>3</v>'}).cells["A1"]
-    assert (cell.status, cell.value) == (Status.UNSUPPORTED, 3.0)
-    assert "data table" in cell.reason
-
-
 def test_shared_formulas_move_with_their_cells_and_a_lost_master_is_reported(tmp_path: Path) -> None:
     found = results(
         tmp_path,

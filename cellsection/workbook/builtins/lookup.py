@@ -327,3 +327,9 @@ def hyperlink(target: str, shown: Scalar = None) -> Scalar:
 def formulatext(context: Context, area: Any) -> Any:
     text = context.formula_text(area.sheet, area.top, area.left) if not isinstance(area, tuple) else ""
     return text or NA
+
+
+@builtin("MULTIPLE.OPERATIONS", "context reference reference value reference? value?")
+def multiple_operations(context: Context, wanted: Any, first: Any, x: Any, second: Any = None, y: Any = None) -> Any:
+    given = [(first, x)] if second is None else [(first, x), (second, y)]
+    return context.supposed(given, wanted)

@@ -95,6 +95,10 @@ class Context(Protocol):
         """Random numbers; with a seed the same ones for the same cell in every recalculation."""
         ...
 
+    def supposed(self, given: list[tuple[Any, Any]], wanted: Any) -> Any:
+        """What a cell would come to if others held other values; each is told as an Area."""
+        ...
+
     def unsupported(self, construct: str) -> None:
         """Report that the running formula needs what is not supported; does not return."""
         ...
