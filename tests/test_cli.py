@@ -5,6 +5,7 @@ from __future__ import annotations
 import json
 import subprocess
 import sys
+from dataclasses import fields
 from pathlib import Path
 
 import pytest
@@ -12,7 +13,9 @@ from click.testing import CliRunner, Result
 
 import cellsection
 from cellsection.cli import commands
-from tests.check.small_book import write_book
+from cellsection.cli.progress import Progress
+from cellsection.workbook.book import Limits
+from tests.check.small_book import link_other_book, write_book
 
 GOOD = {"A1": 300.0, "A2": 20.0, "B1": ("A1*A2", 6000.0), "B2": ("SUM(A1:A2)", 320.0), "B3": ('"flange"', "flange")}
 PARTS = {
@@ -138,6 +141,102 @@ def test_json_says_the_same_as_data(good: Path, bad: Path) -> None:
 def test_books_are_checked_in_several_processes_in_their_order(good: Path, bad: Path) -> None:
     made = json.loads(process("check", good, bad, good, "--json", "--jobs", 2).stdout)
     assert [Path(book["book"]).name for book in made["books"]] == ["good.xlsx", "bad.xlsx", "good.xlsx"]
+
+
+def test_json_lines_are_one_object_a_book_each_readable_apart(good: Path, bad: Path) -> None:
+    result = process("check", good, bad, good, "--jsonl", "--jobs", 2, "--clock", "2026-12-01")
+    lines = [json.loads(line) for line in result.stdout.splitlines()]
+    assert [(Path(line["book"]).name, line["verdict"]) for line in lines] == [
+        ("good.xlsx", "holds"),
+        ("bad.xlsx", "does not hold"),
+        ("good.xlsx", "holds"),
+    ]
+    assert {(line["schema"], line["clock"]) for line in lines} == {("cellsection check line 1", "2026-12-01")}
+    assert (result.returncode, result.stderr) == (1, "")
+
+
+def test_json_and_json_lines_together_are_refused(good: Path) -> None:
+    result = run("check", good, "--json", "--jsonl")
+    assert result.exit_code == 4
+    assert "two ways" in result.output
+
+
+def test_cells_that_read_another_book_are_counted_and_its_saved_values_named(tmp_path: Path) -> None:
+    cells = {"A1": ("[1]Loads!A1*2", 14.0), "A2": ("[1]Loads!A1*3", 21.0), "A3": ("A1+A2", 35.0)}
+    path = link_other_book(write_book(tmp_path / "linked.xlsx", cells), "Loads.xlsx", 7.0)
+    assert run("check", path).output.splitlines()[1:3] == [
+        "  3 formula cells on 1 sheet: all hold; 2 read saved values of other books",
+        "  reads saved values of another book (Loads.xlsx), 2 cells: Girder!A1:A2",
+    ]
+    (made,) = json.loads(run("check", path, "--json").output)["books"]
+    assert made["reading other books"] == 2
+
+
+def test_what_depends_on_the_date_is_verified_for_a_given_moment(tmp_path: Path) -> None:
+    # 46357 is 2026-12-01 in the 1900 date system: 2026-01-01 is 46023, and 334 days later it is December
+    path = write_book(tmp_path / "today.xlsx", {"A1": ("TODAY()", 46357.0), "A2": ("A1+1", 46358.0)})
+    assert "2 volatile (compared by kind)" in run("check", path).output
+    assert "2 formula cells on 1 sheet: all hold" in run("check", path, "--clock", "2026-12-01").output
+    assert run("check", path, "--clock", "2026-12-02").exit_code == 1
+    unknown = run("check", path, "--clock", "saved")
+    assert unknown.exit_code == 3
+    assert "does not say when it was saved" in unknown.output
+
+
+def test_random_numbers_come_out_the_same_for_a_seed(tmp_path: Path) -> None:
+    path = write_book(tmp_path / "random.xlsx", {"A1": ("IF(RAND()<2,1,0)", 1.0)})
+    result = run("check", path, "--seed", 7)
+    assert "1 volatile (compared by kind)" in result.output
+    assert result.output.splitlines()[-1].endswith("Random numbers begin from 7.")
+
+
+def test_a_limit_refuses_a_book_that_asks_for_more(good: Path) -> None:
+    result = run("check", good, "--limit", "parts=2", "--limit", "cells=1_000")
+    assert result.exit_code == 3
+    assert "2" in result.output
+
+
+@pytest.mark.parametrize(
+    ("option", "given", "says"),
+    [
+        ("--limit", "books=3", "there is no limit 'books'. The limits are unzipped_bytes, ratio, parts"),
+        ("--limit", "cells", "cells takes a whole number above 0. Write for example cells=4000000."),
+        ("--limit", "cells=many", "cells takes a whole number above 0"),
+        ("--limit", "cells=0", "cells takes a whole number above 0"),
+        ("--limit", "cells=1.5", "cells takes a whole number above 0"),
+        ("--limit", "seconds=inf", "seconds takes a number above 0. Write for example seconds=300."),
+        ("--limit", "seconds=nan", "seconds takes a number above 0"),
+        ("--clock", "soon", "that is no date"),
+        ("--clock", "2026-13-01", "that is no date"),
+        ("--clock", "2026-12-01T10:00Z", "time zone"),
+        ("--clock", "1850-01-01", "Write a later date"),
+        ("--seed", "-1", "a seed is a whole number"),
+        ("--seed", "9" * 5000, "a seed is a whole number"),
+    ],
+)
+def test_a_wrong_limit_clock_or_seed_is_refused_in_one_line(good: Path, option: str, given: str, says: str) -> None:
+    result = run("check", good, option, given)
+    assert result.exit_code == 4
+    assert result.output.startswith(f"cellsection: {option} ")
+    assert says in result.output
+    assert len(result.output.splitlines()) == 1
+
+
+def test_every_limit_is_named_in_the_help_with_its_default() -> None:
+    shown = " ".join(run("check", "--help").output.split())
+    for each in fields(Limits):
+        assert f"{each.name}={each.default:.15g}" in shown
+
+
+def test_a_terminal_shows_a_bar_and_a_pipe_none(good: Path, monkeypatch: pytest.MonkeyPatch) -> None:
+    assert process("check", *[good] * 5).stderr == ""
+    monkeypatch.setattr("cellsection.cli.progress.sys.stderr.isatty", lambda: True, raising=False)
+    with Progress([good] * 5) as progress:
+        assert progress.bar is not None
+        for done in range(1, 6):
+            progress.withdraw()
+            progress.advance()
+            assert progress.done == done
 
 
 def test_no_book_is_changed_by_a_check(bad: Path) -> None:

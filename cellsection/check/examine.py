@@ -40,6 +40,7 @@ if TYPE_CHECKING:
 __all__ = ["NO_FAULTS", "check_book", "examine"]
 
 FAULTS_TOLD = 3
+OTHER_BOOK = "reads saved values of another book"  # how the evaluator's note on such a cell opens
 NO_FAULTS = "no faults"  # what CS_FAULTS says of a sound parts block
 FUNCTION_IN_FRONT = re.compile(r"CS_\w+[:,] *")
 SECTION_FUNCTION = re.compile(r"\bCS[_.]\w+ *\(", re.IGNORECASE)
@@ -118,6 +119,7 @@ class _Examination:
         self.tally.cells += 1
         for note in cell.notes:
             self.notes[note].append((cell.sheet, cell.address))
+        self.tally.external += any(note.startswith(OTHER_BOOK) for note in cell.notes)
         if cell.status in self.unverified:
             self.tally.not_verified += 1
             self.unverified[cell.status][cell.reason].append(cell)
@@ -127,10 +129,10 @@ class _Examination:
             self._judge(cell)
             if not _meets(cell):
                 return
-        if isinstance(cell.value, ErrorValue):
+        volatile = cell.status is Status.VOLATILE
+        if isinstance(cell.value, ErrorValue) and (holds or not volatile):
             self.errors[_origin(cell)].append((cell, holds))
         elif cell.has_saved and not holds:
-            volatile = cell.status is Status.VOLATILE
             self.differences.append(Difference(_spot(cell), cell.saved, cell.value, volatile))
 
     def _compare(self, cell: FormulaCell) -> bool:
@@ -147,6 +149,8 @@ class _Examination:
         elif cell.status is Status.VOLATILE:
             holds = _one_kind(cell.saved, cell.value)
             self.tally.volatile += holds
+            self.tally.not_verified += not holds
+            return holds
         else:
             holds = agree(cell.saved, cell.value, self.tolerance)
             self.tally.hold += holds

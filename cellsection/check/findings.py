@@ -83,18 +83,21 @@ class Spot:
 
 @dataclass(frozen=True, slots=True)
 class Difference:
-    """A cell that does not hold: its recalculated value is not the saved one."""
+    """A cell whose recalculated value is not the saved one.
+
+    volatile : it depends on the clock, a random number or the machine; it was compared by kind, and even that differs
+    """
 
     kind: ClassVar[str] = "difference"
     spot: Spot
     saved: Scalar
     recalculated: Scalar
-    volatile: bool = False  # compared by kind only, and even that differs
+    volatile: bool = False
 
     @property
     def verdict(self) -> Verdict:
-        """A difference always counts."""
-        return Verdict.DOES_NOT_HOLD
+        """A difference counts; but a volatile cell may have been right when it was saved."""
+        return Verdict.NOT_VERIFIABLE if self.volatile else Verdict.DOES_NOT_HOLD
 
 
 @dataclass(frozen=True, slots=True)
@@ -212,14 +215,15 @@ class Note:
 
 @dataclass(slots=True)
 class Tally:
-    """How many formula cells the book has, each counted once, and its acceptance checks (which are among them)."""
+    """How many formula cells the book has, each counted once from `hold` to `unsaved`, and what is among them."""
 
     cells: int = 0
     hold: int = 0
     differ: int = 0
     volatile: int = 0  # the kind of the value holds, which is all that can be asked
-    not_verified: int = 0
+    not_verified: int = 0  # volatile cells of another kind among them
     unsaved: int = 0
+    external: int = 0  # of all cells, those that read saved values of other books
     checks: int = 0
     checks_met: int = 0
 

@@ -17,8 +17,10 @@ from cellsection.check.report import (
     LISTED,
     checks_line,
     counted,
+    notes_in_words,
     places_in_words,
     printable,
+    saved_errors_in_words,
     shortened,
     tally_line,
     value_in_words,
@@ -74,8 +76,9 @@ def _sections(report: Report, every: bool) -> Iterator[tuple[str, RenderableType
     """The sections of a report that have something in them, each with its title."""
     if unmet := _of(report, UnmetCheck):
         yield f"Acceptance checks not met ({len(unmet):,})", _unmet_checks(unmet, every)
-    if differences := _of(report, Difference):
-        yield f"Cells that do not hold ({len(differences):,})", _differences(differences, every)
+    differences = _of(report, Difference)
+    if differing := [each for each in differences if not each.volatile]:
+        yield f"Cells that do not hold ({len(differing):,})", _differences(differing, every)
     errors = _of(report, Error)
     if counting := [each for each in errors if each.verdict is not Verdict.HOLDS]:
         yield f"Errors ({len(counting):,})", _paragraphs([_error(each, every) for each in counting], every)
@@ -86,6 +89,8 @@ def _sections(report: Report, every: bool) -> Iterator[tuple[str, RenderableType
         )
     if cycles := _of(report, Cycle):
         yield f"Circular references ({len(cycles):,})", _paragraphs([_cycle(each, every) for each in cycles], every)
+    if changing := [each for each in differences if each.volatile]:
+        yield f"Volatile cells that came to another kind of value ({len(changing):,})", _changing(changing, every)
     if unverified := _of(report, NotVerified):
         lines = [_text(f"{each.reason}: {places_in_words(each.cells, every=every)}") for each in unverified]
         yield "Not verified for another reason", _paragraphs(lines, every)
@@ -94,14 +99,11 @@ def _sections(report: Report, every: bool) -> Iterator[tuple[str, RenderableType
         said = "Nothing to compare with; open the book in the spreadsheet application and save it"
         yield f"No saved value ({len(cells):,})", _text(f"{places_in_words(cells, every=every)}. {said}.")
     if saved_alike := [each for each in errors if each.verdict is Verdict.HOLDS]:
-        title = f"Errors that the saved file shows too ({len(saved_alike):,})"
-        yield title, _paragraphs([_error(each, every) for each in saved_alike], every)
+        count = sum(len(each.cells) + len(each.echoes) for each in saved_alike)
+        lines = [_text(line) for line in saved_errors_in_words(saved_alike, every=every)]
+        yield f"Errors that the saved file shows too ({counted(count, 'cell')})", _paragraphs(lines, every)
     if report.notes:
-        lines = [
-            _text(note.text + (f": {places_in_words(note.cells, every=every)}" if note.cells else ""))
-            for note in report.notes
-        ]
-        yield "Notes", _paragraphs(lines, every)
+        yield "Notes", Group(*map(_text, notes_in_words(report, every=every)))
 
 
 def _of(report: Report, kind_of_finding: type[F]) -> list[F]:
@@ -111,7 +113,7 @@ def _of(report: Report, kind_of_finding: type[F]) -> list[F]:
 def _differences(differences: Sequence[Difference], every: bool) -> RenderableType:
     table = _table("cell", ">saved", ">recalculated", ">relative difference", "formula")
     for each in _first(differences, every):
-        off = "other kind" if each.volatile else _relative_difference(each.saved, each.recalculated)
+        off = _relative_difference(each.saved, each.recalculated)
         _row(
             table,
             str(each.spot),
@@ -121,6 +123,15 @@ def _differences(differences: Sequence[Difference], every: bool) -> RenderableTy
             _formula(each.spot.formula, every),
         )
     return Group(table, *_rest(differences, every))
+
+
+def _changing(changing: Sequence[Difference], every: bool) -> RenderableType:
+    said = "They depend on the date, the time or a random number; --clock saved calculates for the day of saving."
+    table = _table("cell", ">saved", ">recalculated", "formula")
+    for each in _first(changing, every):
+        values = _value(each.saved, every), _value(each.recalculated, every)
+        _row(table, str(each.spot), *values, _formula(each.spot.formula, every))
+    return Group(_text(said, style="dim"), table, *_rest(changing, every))
 
 
 def _unmet_checks(unmet: Sequence[UnmetCheck], every: bool) -> RenderableType:
@@ -150,8 +161,9 @@ def _error(error: Error, every: bool) -> RenderableType:
 
 def _unsupported(each: Unsupported, every: bool) -> RenderableType:
     cells = f" in {counted(len(each.cells), 'cell')}: {places_in_words(each.cells, every=every)}"
-    example = _text(f"{each.example}  {_formula(each.example.formula, every)}", style="dim")
-    return _entry(_assembled((each.construct, "bold"), cells), [example, *_dependants(each.dependants, every)])
+    formula = each.example.formula.strip("={} ")  # a formula that is missing in the file has nothing to show
+    example = [_text(f"{each.example}  {_formula(each.example.formula, every)}", style="dim")] if formula else []
+    return _entry(_assembled((each.construct, "bold"), cells), [*example, *_dependants(each.dependants, every)])
 
 
 def _cycle(each: Cycle, every: bool) -> RenderableType:

@@ -78,6 +78,7 @@ def book_record(report: Report) -> Record:
             "not verified": tally.not_verified,
             "no saved value": tally.unsaved,
         },
+        "reading other books": tally.external,
         "acceptance checks": {"all": tally.checks, "met": tally.checks_met},
         "findings": [_finding(finding) for finding in report.findings],
         "notes": [{"text": note.text, "cells": _addresses(note.cells)} for note in report.notes],

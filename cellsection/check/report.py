@@ -23,14 +23,17 @@ __all__ = [
     "counted",
     "headline",
     "moment_in_words",
+    "notes_in_words",
     "places_in_words",
     "printable",
+    "saved_errors_in_words",
     "tally_line",
     "value_in_words",
 ]
 
 LISTED = 10  # how much of a long list is shown unless all of it is asked for
 LONGEST_TEXT = 60  # of a text value, likewise
+LONGEST_NOTE = 200
 
 
 def headline(report: Report) -> str:
@@ -50,12 +53,37 @@ def calm_lines(report: Report, *, every: bool = False) -> list[str]:
     if errors:
         cells = tuple(key for error in errors for key in (*error.cells, *error.echoes))
         arise = [key for error in errors for key in error.cells]
-        lines.append(
-            f"{counted(len(cells), 'cell shows', 'cells show')} an error value, as in the saved file; "
-            f"they arise in {places_in_words(arise, every=every)}"
-        )
-    for note in report.notes:
-        lines.append(note.text + (f": {places_in_words(note.cells, every=every)}" if note.cells else ""))
+        shown = f"{counted(len(cells), 'cell shows', 'cells show')} an error value, as in the saved file"
+        among = "" if len(arise) == len(cells) else "arising in "
+        lines.append(f"{shown}: {among}{places_in_words(arise, every=every)}")
+    return lines + notes_in_words(report, every=every)
+
+
+def notes_in_words(report: Report, *, every: bool = False) -> list[str]:
+    """The notes, a line each, with their cells; many notes and long ones are cut."""
+    lines = []
+    for note in report.notes if every else report.notes[:LISTED]:
+        line = shortened(note.text, LONGEST_NOTE, every=every)
+        if len(note.cells) > 1:
+            line += f", {len(note.cells):,} cells"
+        lines.append(line + (f": {places_in_words(note.cells, every=every)}" if note.cells else ""))
+    more = len(report.notes) - len(lines)
+    return [*lines, f"and {counted(more, 'note')} more; --all lists them"] if more else lines
+
+
+def saved_errors_in_words(errors: Sequence[Error], *, every: bool = False) -> list[str]:
+    """Errors that the saved file shows too, a line for each code and cause: they are told, and cry no alarm."""
+    alike: dict[tuple[str, str], list[Error]] = {}
+    for error in errors:
+        alike.setdefault((error.code, error.cause), []).append(error)
+    lines = []
+    for (code, cause), met in alike.items():
+        arise = [key for error in met for key in error.cells]
+        echoes = [key for error in met for key in error.echoes]
+        line = f"{code}  {places_in_words(arise, every=every)}"
+        if echoes:
+            line += f"; passed on to {counted(len(echoes), 'cell')}: {places_in_words(echoes, every=every)}"
+        lines.append(line + (f"  {shortened(cause, LONGEST_NOTE, every=every)}" if cause and cause != code else ""))
     return lines
 
 
@@ -77,7 +105,10 @@ def tally_line(report: Report) -> str:
     met = [f"{count:,} {word}" for count, word in parts if count]
     if tally.hold == tally.cells:
         met = ["all hold"] if tally.cells > 1 else ["it holds"]
-    return f"{counted(tally.cells, 'formula cell')} on {counted(len(report.sheets), 'sheet')}: {', '.join(met)}"
+    line = f"{counted(tally.cells, 'formula cell')} on {counted(len(report.sheets), 'sheet')}: {', '.join(met)}"
+    if tally.external:
+        line += f"; {counted(tally.external, 'reads', 'read')} saved values of other books"
+    return line
 
 
 def checks_line(report: Report) -> str:

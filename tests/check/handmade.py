@@ -60,7 +60,8 @@ def troubled() -> Recalculation:
         cell("Q2", hand_over, hand_over, formula="=Q1"),
         cell("R1", None, 2.0, has_saved=False),
         cell("S1", 44000.0, 44001.0, status=Status.VOLATILE, call="NOW", formula="=NOW()"),
-        cell("T1", 7.0, 7.0, notes=("external link [1] read from its saved values",)),
+        cell("S2", 44000.0, "", status=Status.VOLATILE, formula='=IF(DAY(S1)=1,S1,"")'),
+        cell("T1", 7.0, 7.0, notes=("reads saved values of another book (Loads.xlsx)",)),
         *(cell(f"B{row}", float(row), row + 1.0, sheet="Crane hall", formula="=Girder!C5") for row in range(1, 40)),
         notes=("iterative calculation is switched on in this book",),
     )

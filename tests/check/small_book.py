@@ -62,3 +62,28 @@ def _c(address: str, content: object) -> str:
             return f'<c r="{address}" t="inlineStr"><is><t>{escape(value)}</t></is></c>'
         case _:
             return f'<c r="{address}">{f}<v>{value!r}</v></c>'
+
+
+def link_other_book(path: Path, target: str, value: float) -> Path:
+    """The book with a link [1] to another one, of which A1 of the sheet Loads is saved with the link."""
+    with ZipFile(path) as book:
+        parts = {name: book.read(name).decode() for name in book.namelist()}
+    main, relations = "xl/workbook.xml", "xl/_rels/workbook.xml.rels"
+    links = '<externalReferences><externalReference r:id="rId9"/></externalReferences>'
+    parts[main] = parts[main].replace("</workbook>", f"{links}</workbook>")
+    link = f'<Relationship Id="rId9" Type="{OFFICE}/externalLink" Target="externalLinks/externalLink1.xml"/>'
+    parts[relations] = parts[relations].replace("</Relationships>", f"{link}</Relationships>")
+    parts["xl/externalLinks/externalLink1.xml"] = (
+        f'<externalLink xmlns="{MAIN}" xmlns:r="{OFFICE}"><externalBook r:id="rId1">'
+        '<sheetNames><sheetName val="Loads"/></sheetNames><sheetDataSet><sheetData sheetId="0">'
+        f'<row r="1"><cell r="A1"><v>{value}</v></cell></row>'
+        "</sheetData></sheetDataSet></externalBook></externalLink>"
+    )
+    parts["xl/externalLinks/_rels/externalLink1.xml.rels"] = (
+        f'<Relationships xmlns="{PACKAGE}/relationships"><Relationship Id="rId1" TargetMode="External" '
+        f'Type="{OFFICE}/externalLinkPath" Target="{target}"/></Relationships>'
+    )
+    with ZipFile(path, "w") as book:
+        for name, text in parts.items():
+            book.writestr(name, text)
+    return path

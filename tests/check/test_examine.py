@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import astuple, replace
+from typing import TYPE_CHECKING
 
 import pytest
 
@@ -11,6 +12,9 @@ from cellsection.check.findings import Cycle, Difference, Error, NotVerified, Ta
 from cellsection.workbook.results import Status
 from cellsection.workbook.values import ErrorValue
 from tests.check.handmade import REFUSED, book, cell, troubled
+
+if TYPE_CHECKING:
+    from cellsection.workbook.values import Scalar
 
 DIV = ErrorValue("#DIV/0!", "", "Girder!Q1")
 
@@ -192,11 +196,25 @@ def test_a_cell_without_a_saved_value_is_not_verifiable() -> None:
 def test_a_volatile_cell_is_compared_by_kind() -> None:
     good = cell("S1", 44000.0, 44001.0, status=Status.VOLATILE)
     assert examine(book(good)).verdict is Verdict.HOLDS
-    report = examine(book(good, cell("S2", 44000.0, "today", status=Status.VOLATILE)))
+    assert examine(book(good)).tally == Tally(cells=1, volatile=1)
+
+
+@pytest.mark.parametrize("value", ["not today", ErrorValue("#N/A", "", "Girder!S2"), True])
+def test_a_volatile_cell_that_came_to_another_kind_is_not_verified_and_contradicts_nothing(value: Scalar) -> None:
+    report = examine(book(cell("S2", 44000.0, value, status=Status.VOLATILE)))
     (found,) = report.findings
     assert isinstance(found, Difference)
     assert found.volatile
-    assert report.tally == Tally(cells=2, volatile=1, differ=1)
+    assert report.tally == Tally(cells=1, not_verified=1)
+    assert report.verdict is Verdict.NOT_VERIFIABLE
+
+
+def test_cells_that_read_other_books_are_counted_once() -> None:
+    notes = "reads saved values of another book (a.xlsx)", "reads saved values of another book (b.xlsx)"
+    report = examine(
+        book(cell("A1", 1.0, 1.0, notes=notes), cell("A2", 1.0, 1.0, notes=notes[:1]), cell("A3", 1.0, 1.0))
+    )
+    assert report.tally == Tally(cells=3, hold=3, external=2)
 
 
 def test_what_does_not_hold_weighs_more_than_what_is_not_verified() -> None:

@@ -4,12 +4,13 @@ from __future__ import annotations
 
 import json
 from collections import Counter
+from datetime import datetime
 
 import pytest
 
 from cellsection.check import Report, Tolerance, examine
 from cellsection.check.layout import lay_out
-from cellsection.check.record import SCHEMA, record
+from cellsection.check.record import LINE_SCHEMA, SCHEMA, line_record, record
 from cellsection.check.report import calm_lines, closing_line, headline, places_in_words, value_in_words
 from cellsection.workbook.values import ErrorValue
 from tests.check.handmade import book, cell, troubled
@@ -30,7 +31,7 @@ def test_an_unreadable_book_is_told_in_one_line() -> None:
 def test_errors_that_were_saved_so_are_told_where_they_arise() -> None:
     div = ErrorValue("#DIV/0!", "", "Girder!Q1")
     report = examine(book(cell("Q1", div, div), cell("Q2", div, div), cell("C4", 1.0, 1.0)))
-    assert calm_lines(report)[1] == "2 cells show an error value, as in the saved file; they arise in Girder!Q1"
+    assert calm_lines(report)[1] == "2 cells show an error value, as in the saved file: arising in Girder!Q1"
 
 
 def test_the_layout_shows_every_kind_of_finding(capsys: pytest.CaptureFixture[str]) -> None:
@@ -51,8 +52,12 @@ def test_the_layout_shows_every_kind_of_finding(capsys: pytest.CaptureFixture[st
         "1 cell depends on it, not verified: Girder!M2",
         "Girder!P1 -> Girder!P2 -> Girder!P1",
         "Girder!R1. Nothing to compare with",
-        "#DIV/0!  Girder!Q1",
-        "external link [1] read from its saved values: Girder!T1",
+        "#DIV/0!  Girder!Q1; passed on to 1 cell: Girder!Q2",
+        "Volatile cells that came to another kind of value (1)",
+        "--clock saved",
+        "1 reads saved values of other books",
+        "reads saved values of another book (Loads.xlsx): Girder!T1",
+        "Errors that the saved file shows too (2 cells)",
         "iterative calculation is switched on in this book",
     ):
         assert piece in shown, piece
@@ -106,7 +111,8 @@ def test_the_record_is_json_and_holds_every_finding() -> None:
     assert made["tolerance"] == {"relative": 1e-9, "absolute": 1e-12}
     (one,) = made["books"]
     kinds = [finding["kind"] for finding in one["findings"]]
-    assert len(kinds) == 2 + 41 + 2 + 1 + 1 + 1  # nothing is cut
+    assert one["reading other books"] == 1
+    assert len(kinds) == 2 + 42 + 2 + 1 + 1 + 1  # nothing is cut
     first = next(finding for finding in one["findings"] if finding["kind"] == "difference")
     assert first == {
         "kind": "difference",
@@ -132,3 +138,31 @@ def test_the_record_of_an_unreadable_book_says_why() -> None:
     made = record([Report("girder.xls", Tolerance(), unreadable="girder.xls is in the old format. Save it as .xlsx.")])
     assert made["exit code"] == 3
     assert made["books"][0]["unreadable"].startswith("girder.xls is in the old format")
+
+
+def test_the_terms_of_the_check_are_told_in_words_and_as_data() -> None:
+    report = Report("a.xlsx", Tolerance(), clock=datetime(2026, 12, 1, 14, 30), seed=7)
+    said = "TODAY and NOW: 2026-12-01T14:30:00. Random numbers begin from 7."
+    assert closing_line(Counter([report.verdict]), report).endswith(said)
+    line = json.loads(json.dumps(line_record(report), allow_nan=False))
+    assert (line["schema"], line["clock"], line["seed"]) == (LINE_SCHEMA, "2026-12-01T14:30:00", 7)
+    assert (line["book"], line["verdict"], line["tolerance"]["relative"]) == ("a.xlsx", "holds", 1e-9)
+
+
+def test_many_notes_and_long_ones_are_cut_with_a_count() -> None:
+    report = examine(
+        book(cell("C4", 1.0, 1.0), notes=tuple(f"circle {number} " + "A1 -> " * 99 for number in range(30)))
+    )
+    cut = calm_lines(report)
+    assert cut[-1] == "and 20 notes more; --all lists them"
+    assert max(map(len, cut)) == 200
+    assert len(calm_lines(report, every=True)) == 31
+
+
+def test_errors_of_one_code_that_were_saved_so_are_one_line(capsys: pytest.CaptureFixture[str]) -> None:
+    cells = [
+        cell(f"A{row}", error, error) for row in range(1, 60) for error in [ErrorValue("#N/A", "", f"Girder!A{row}")]
+    ]
+    lay_out(examine(book(*cells, cell("B1", 1.0, 2.0))))
+    shown = capsys.readouterr().out
+    assert "Errors that the saved file shows too (59 cells)\n    #N/A  Girder!A1:A59\n" in shown
