@@ -1,4 +1,4 @@
-"""The command line: `cellsection check`, `cellsection functions`, `cellsection start`, one file a command.
+"""The command line: `cellsection check`, `recalculate`, `functions`, `start`, one file a command.
 
 Start-up is part of the speed of a check, so each command imports what it needs when it runs.
 """
@@ -13,6 +13,7 @@ import click
 import cellsection
 from cellsection.cli.check import check
 from cellsection.cli.functions import functions
+from cellsection.cli.recalculate import recalculate
 from cellsection.cli.refusal import CANNOT
 from cellsection.cli.start import start
 
@@ -44,10 +45,12 @@ def commands() -> None:
     \b
     Examples:
       cellsection check girder.xlsx         does the saved workbook hold?
+      cellsection recalculate girder.xlsx -o new.xlsx
+                                            a copy with recalculated values
       cellsection functions CS_TOTALS       what a cell function takes and returns
       cellsection start girder new.xlsx     a template workbook to fill in
     """  # noqa: D301 - a \b keeps the lines below it as they are
 
 
-for each in (check, functions, start):
+for each in (check, recalculate, functions, start):
     commands.add_command(each)

@@ -7,6 +7,7 @@ from functools import partial
 from typing import TYPE_CHECKING
 
 from cellsection.workbook.book import column_letters
+from cellsection.workbook.figures import as_shown
 from cellsection.workbook.keys import position
 from cellsection.workbook.machine import Special
 from cellsection.workbook.relative import shown_text
@@ -23,7 +24,8 @@ def formula_cells(driver: Driver, index: int) -> Iterator[FormulaCell]:
     machine = driver.machine
     sheet, store = machine.book.sheets[index], machine.stores[index]
     owners, formulas, saved = machine.owners[index], machine.formulas[index], sheet.values
-    name, compiled = sheet.name, driver.by_formula[index]
+    figures = machine.book.format == "ods"
+    name, compiled, filled = sheet.name, driver.by_formula[index], machine.filled
     letters = [column_letters(column) for column in range(machine.extent[index][1] + 1)]
     for key in sorted({*formulas, *owners}) if owners else sorted(formulas):
         place = row, column = position(key)
@@ -38,6 +40,8 @@ def formula_cells(driver: Driver, index: int) -> Iterator[FormulaCell]:
             if value.taint is not None:
                 status, reason = value.taint.status, value.taint.reason
             value = value.value
+        if figures and place in saved:
+            value = as_shown(value, saved[place])
         yield FormulaCell(
             name,
             f"{letters[column]}{row}",
@@ -50,4 +54,5 @@ def formula_cells(driver: Driver, index: int) -> Iterator[FormulaCell]:
             place in saved,
             partial(shown_text, formula, place if owner == key else position(owner)),
             machine.whole.get((index, key)),
+            filled.get((index, key)) if filled else None,
         )

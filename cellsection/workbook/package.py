@@ -154,9 +154,13 @@ class Package:
                 found[element.get("Id")] = Relationship(element.get("Type").rsplit("/", 1)[-1], target, external)
         return found
 
-    def copy_into(self, target: zipfile.ZipFile, changed: dict[str, bytes]) -> None:
-        """Copy all parts into another package in their order, with the contents of some replaced."""
+    def copy_into(
+        self, target: zipfile.ZipFile, changed: dict[str, bytes], dropped: frozenset[str] = frozenset()
+    ) -> None:
+        """Copy all parts but those dropped into another package in their order, the contents of some replaced."""
         for key, info in self._parts.items():
+            if key in dropped:
+                continue
             fresh = zipfile.ZipInfo(info.filename, info.date_time)
             fresh.compress_type, fresh.external_attr, fresh.comment = (
                 info.compress_type, info.external_attr, info.comment,

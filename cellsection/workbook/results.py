@@ -9,6 +9,7 @@ from typing import TYPE_CHECKING
 if TYPE_CHECKING:
     from collections.abc import Callable
 
+    from cellsection.workbook.book import Bounds
     from cellsection.workbook.values import Array, Scalar
 
 __all__ = ["FormulaCell", "Recalculation", "Status"]
@@ -32,6 +33,7 @@ class FormulaCell:
     value : the recalculated value; the saved one where status is UNSUPPORTED, NOT_VERIFIED or CYCLE
     call : name of the outermost function of the formula in this project's or the application's own spelling
         ("CS_AGREES", "SUM"), "" where the formula is not one call
+    fills : the area that the array formula in this cell fills, None for any other cell
     notes : what a reader should know though the value holds ("external link [1] read from its saved values")
     """
 
@@ -48,6 +50,7 @@ class FormulaCell:
     whole: Array | None = field(
         default=None, repr=False
     )  # all that the formula gave, where it gave more than one value
+    fills: Bounds | None = None
 
     @property
     def formula(self) -> str:

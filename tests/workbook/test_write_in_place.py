@@ -14,9 +14,9 @@ from cellsection.workbook.package import Package
 from cellsection.workbook.reader import read_book
 from cellsection.workbook.recalculate import recalculate
 from cellsection.workbook.results import FormulaCell, Recalculation, Status
-from cellsection.workbook.sheetxml import sheet_with_values
+from cellsection.workbook.sheetxml import Sheet, sheet_with_values
 from cellsection.workbook.values import ErrorValue, Scalar
-from cellsection.workbook.write import write_values
+from cellsection.workbook.write import Written, write_values
 from tests.workbook.small import MAIN, parts_of, saved, zipped
 
 SHEET = "xl/worksheets/sheet1.xml"
@@ -28,7 +28,7 @@ def sheet(rows: str, prefix: str = "") -> str:
 
 
 def written(xml: str, values: dict[Position, Scalar]) -> str:
-    return sheet_with_values(xml.encode(), values, "book.xlsx").decode()
+    return sheet_with_values(xml.encode(), Sheet(values), "book.xlsx").decode()
 
 
 F = "<f>A1</f>"
@@ -95,7 +95,7 @@ def test_the_prefix_of_the_file_is_kept() -> None:
 
 def test_a_wide_part_becomes_a_narrow_one() -> None:
     wide = '<?xml version="1.0" encoding="UTF-16"?>' + sheet(f'<row r="1"><c r="A1">{F}</c></row>')
-    new = sheet_with_values(wide.encode("utf-16"), {(1, 1): "é"}, "book.xlsx")
+    new = sheet_with_values(wide.encode("utf-16"), Sheet({(1, 1): "é"}), "book.xlsx")
     assert new.decode("utf-8") == sheet(f'<row r="1"><c r="A1" t="str">{F}<v>é</v></c></row>')
 
 
@@ -175,7 +175,7 @@ def test_a_file_that_is_there_stays_whole_where_the_copy_fails(tmp_path: Path) -
     data[at : at + 4] = b"\xff\xff\xff\xff"
     path.write_bytes(data)
     with pytest.raises(WorkbookError, match="late"):
-        write_values(path, new_values(path, {"A1": 5.0}), out)
+        write_values(path, new_values(path, {"A1": 5.0}), out, replace=True)
     assert out.read_bytes() == b"what was there"
     assert sorted(each.name for each in tmp_path.iterdir()) == ["book.xlsx", "out.xlsx"]
 
@@ -183,5 +183,5 @@ def test_a_file_that_is_there_stays_whole_where_the_copy_fails(tmp_path: Path) -
 def test_a_signature_that_no_longer_holds_is_told(tmp_path: Path) -> None:
     signed = {**parts_of({"S": {"A1": "=1"}}, {}), "_xmlsignatures/sig1.xml": "<Signature/>"}
     path = zipped(tmp_path / "book.xlsx", signed)
-    assert "signature" in write_values(path, new_values(path, {"A1": 5.0}), tmp_path / "out.xlsx")[0]
-    assert write_values(path, new_values(path, {}), tmp_path / "same.xlsx") == ()
+    assert "signature" in write_values(path, new_values(path, {"A1": 5.0}), tmp_path / "out.xlsx").notes[0]
+    assert write_values(path, new_values(path, {}), tmp_path / "same.xlsx") == Written()
