@@ -25,7 +25,7 @@ __all__ = ["BOOKS", "books_in", "check_books"]
 BOOKS = (".xlsx", ".xlsm", ".ods")
 WORTH_PROCESSES = 1_000_000  # bytes of books in all, below which starting processes costs more than it saves
 LOOKED_AT = 200  # books whose size is asked for to tell that; so many are worth processes in any case
-AHEAD = 8  # books a worker that are handed out before the report on the first of them is taken
+AHEAD = 32  # books a worker that are handed out before the report on the first of them is taken
 AHEAD_OF_EXECUTOR = 256  # books handed to an executor whose number of workers we do not know
 
 
