@@ -20,6 +20,7 @@ from cellsection.workbook.book import Formula
 from cellsection.workbook.builtins import BUILTINS
 from cellsection.workbook.calls import builtin_call, host_call
 from cellsection.workbook.expressions import binary_code, chain_code, snapping
+from cellsection.workbook.figures import COMPARISONS, SHOWS, as_figure, counting, raising, told_apart
 from cellsection.workbook.forms import FORMS
 from cellsection.workbook.grammar import parsed
 from cellsection.workbook.lambdas import LAMBDA_FORMS, invoke_code, named_lambda
@@ -75,6 +76,7 @@ class Compiler:
         self.lambdas = 0  # bodies of LAMBDA around the node being compiled
         self.naming: dict[tuple[str, str], list[Code]] = {}  # names being compiled
         self.notes: set[str] = set()
+        self.figures = machine.book.format == "ods"  # logical values are numbers there
 
     def whole(self, formula: Formula, sheet: int) -> Compiled:
         """A whole formula; its last addition or subtraction is snapped to zero where it cancels."""
@@ -94,7 +96,7 @@ class Compiler:
     def value(self, node: Node, spread: bool) -> Code:
         """Code for one value, or an array where `spread`."""
         if isinstance(node, Constant):
-            constant = node.value
+            constant = as_figure(node.value) if self.figures else node.value
             return lambda k: constant
         if isinstance(node, Reference) and node.single and node.book is None and node.last_sheet is None:
             return cell_code(self, node)
@@ -174,7 +176,12 @@ class Compiler:
         if len(steps) > LONG:
             return chain_code(code, [(sign, self.value(right, spread)) for sign, right in reversed(steps)])
         for sign, right in reversed(steps):
+            if self.figures and sign == "^":
+                code = raising(code, self.value(right, spread))
+                continue
             code = binary_code(sign, code, self.value(right, spread))
+            if self.figures and sign in COMPARISONS:
+                code = counting(code)
         return code
 
     # ---- functions
@@ -186,9 +193,13 @@ class Compiler:
         elif node.name == "SINGLE" and len(node.arguments) == 1:  # how a file spells @
             return self.unary(Unary("@", node.arguments[0]), spread)
         elif (form := ALL_FORMS.get(node.name)) is not None:
-            return form(self, node, spread, as_value)
+            code = form(self, node, spread, as_value)
+            return counting(code) if self.figures else code
         elif (declared := BUILTINS.get(node.name)) is not None:
-            return builtin_call(self, declared, node, spread, as_value)
+            code = builtin_call(self, declared, node, spread, as_value)
+            if self.figures and node.name in SHOWS and len(node.arguments) == 1:
+                code = told_apart(node.name, self.value(node.arguments[0], False), code)
+            return counting(code) if self.figures else code
         elif (own := named_lambda(self, node, spread)) is not None:
             code = own
         else:

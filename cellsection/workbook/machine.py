@@ -150,6 +150,8 @@ class Machine:
     def add_sheet(self, values: dict[Position, Scalar], formulas: dict[Position, Formula]) -> int:
         """A sheet's cells: constants stand, formula cells wait. Gives its index."""
         store: Store = {(row << SHIFT) + column: value for (row, column), value in values.items()}
+        if self.book.format == "ods":  # logical values are numbers there, see figures
+            store.update((key, float(value)) for key, value in store.items() if value.__class__ is bool)
         waiting = {(row << SHIFT) + column: formula for (row, column), formula in formulas.items()}
         store.update(dict.fromkeys(waiting, PENDING))
         self.stores.append(store)
