@@ -63,14 +63,15 @@ def agree(saved: Scalar, value: Scalar, tolerance: Tolerance) -> bool:
     """Whether the recalculated value is what the file says.
 
     The two must be of one kind: the text "2" is not the number 2, nor is TRUE the number 1. Texts must be equal
-    character by character, errors equal in their code. Two exceptions, because the files know no better: empty text
-    and a blank are stored alike; and where a host wrote the refusal of a function as text, an error agrees with it.
+    character by character, errors equal in their code. Three exceptions, because the files know no better: empty text
+    and a blank are stored alike; where a host wrote the refusal of a function as text, an error agrees with it; and so
+    it does with its own code, as some programs store it for text.
 
     >>> agree("2", 2.0, Tolerance()), agree("", None, Tolerance())
     (False, True)
     """
     if isinstance(saved, str) and isinstance(value, ErrorValue):
-        return saved.startswith(REFUSAL)
+        return saved.startswith(REFUSAL) or saved == value.code
     if (saved is None or saved == "") and (value is None or value == ""):
         return True
     if kind(saved) != kind(value):

@@ -41,6 +41,7 @@ __all__ = ["NO_FAULTS", "check_book", "examine"]
 
 FAULTS_TOLD = 3
 OTHER_BOOK = "reads saved values of another book"  # how the evaluator's note on such a cell opens
+CODE_AS_TEXT = "an error is saved as the text of its code"
 NO_FAULTS = "no faults"  # what CS_FAULTS says of a sound parts block
 FUNCTION_IN_FRONT = re.compile(r"CS_\w+[:,] *")
 SECTION_FUNCTION = re.compile(r"\bCS[_.]\w+ *\(", re.IGNORECASE)
@@ -153,6 +154,8 @@ class _Examination:
             return holds
         else:
             holds = agree(cell.saved, cell.value, self.tolerance)
+            if isinstance(cell.value, ErrorValue) and cell.saved == cell.value.code:
+                self.notes[CODE_AS_TEXT].append((cell.sheet, cell.address))
             self.tally.hold += holds
         self.tally.differ += not holds
         return holds

@@ -186,15 +186,20 @@ def shortened(text: str, longest: int, *, every: bool = False) -> str:
 
 
 def places_in_words(cells: Cells | Sequence[tuple[str, str]], *, every: bool = False) -> str:
-    """Where cells are, as rectangles; a long list is cut with a count.
+    """Where cells are, as rectangles; a sheet is named once for those that follow it, and a long list cut with a count.
 
-    >>> places_in_words([("Girder", "C4"), ("Girder", "C5"), ("Girder", "E9")])
-    'Girder!C4:C5, Girder!E9'
+    >>> places_in_words([("Girder", "C4"), ("Girder", "C5"), ("Girder", "E9"), ("Loads", "A1")])
+    'Girder!C4:C5, E9, Loads!A1'
     """
     found = rectangles(cells)
     listed = found if every else found[:LISTED]
-    more = len(found) - len(listed)
-    return ", ".join(listed) + (f" and {more:,} more places (--all lists them)" if more else "")
+    more = counted(len(found) - len(listed), "more place", "more places")
+    words, before = [], ""
+    for each in listed:
+        sheet, mark, area = each.rpartition("!")
+        words.append(area if sheet == before else sheet + mark + area)
+        before = sheet
+    return ", ".join(words) + (f" and {more} (--all lists them)" if len(found) > len(listed) else "")
 
 
 def counted(count: int, one: str, many: str = "") -> str:

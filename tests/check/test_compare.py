@@ -32,7 +32,7 @@ def test_numbers_agree_within_either_tolerance(saved: float, value: float, toler
 
 @pytest.mark.parametrize(
     ("saved", "value"),
-    [("2", 2.0), (1.0, True), (0.0, False), ("TRUE", True), (0.0, None), (0.0, ""), ("#N/A", ErrorValue("#N/A"))],
+    [("2", 2.0), (1.0, True), (0.0, False), ("TRUE", True), (0.0, None), (0.0, ""), ("#N/A!", ErrorValue("#N/A"))],
 )
 def test_values_of_different_kinds_never_agree(saved: object, value: object) -> None:
     assert not agree(saved, value, Tolerance(1.0, 1e9))
@@ -63,6 +63,13 @@ def test_a_refusal_written_as_text_agrees_with_an_error() -> None:
     assert agree(refusal, ErrorValue("#VALUE!"), STANDARD)
     assert not agree(refusal, 5.0, STANDARD)
     assert not agree("some other text", ErrorValue("#VALUE!"), STANDARD)
+
+
+def test_an_error_saved_as_the_text_of_its_code_agrees_with_that_error_only() -> None:
+    # so written by an online spreadsheet: <c r="F2" t="str"><f>NA()</f><v>#N/A</v></c>
+    assert agree("#N/A", ErrorValue("#N/A"), STANDARD)
+    assert not agree("#N/A", ErrorValue("#VALUE!"), STANDARD)
+    assert not agree(ErrorValue("#N/A"), "#N/A", STANDARD)
 
 
 def test_truth_is_a_kind_of_its_own() -> None:

@@ -209,6 +209,13 @@ def test_a_volatile_cell_that_came_to_another_kind_is_not_verified_and_contradic
     assert report.verdict is Verdict.NOT_VERIFIABLE
 
 
+def test_errors_saved_as_the_text_of_their_code_hold_and_are_noted() -> None:
+    error = ErrorValue("#N/A", "", "Girder!A1")
+    report = examine(book(cell("A1", "#N/A", error), cell("A2", "#N/A", error)))
+    assert report.verdict is Verdict.HOLDS
+    assert [(note.text, len(note.cells)) for note in report.notes] == [("an error is saved as the text of its code", 2)]
+
+
 def test_cells_that_read_other_books_are_counted_once() -> None:
     notes = "reads saved values of another book (a.xlsx)", "reads saved values of another book (b.xlsx)"
     report = examine(
