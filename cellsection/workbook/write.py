@@ -28,6 +28,7 @@ from cellsection.workbook.xlsx import sheet_parts, workbook_part
 
 __all__ = ["WRITTEN", "Written", "differs", "refuse_in_the_way", "refuse_other_format", "write_values"]
 
+CONTENT = "content.xml"
 WRITTEN = (Status.RECALCULATED, Status.VOLATILE)
 SIGNATURES = ("_xmlsignatures/", "meta-inf/documentsignatures")  # of the whole document; macros are signed apart
 MACROS = ("/vbaproject.bin", "basic/", "scripts/")
@@ -68,8 +69,6 @@ def write_values(
     temporary = place.with_name(f".{place.name}.{os.getpid()}.part")
     try:
         with Package(source, limits or Limits()) as package:
-            if "content.xml" in package:
-                raise WorkbookError(f"{source.name}: values cannot be written into .ods yet", remedy="Save as .xlsx")
             changed, dropped = changed_parts(package, recalculation)
             named = tuple(name for name in package.names if canonical(name) in changed)
             notes = tuple(remarks(package, bool(changed)))
@@ -122,6 +121,8 @@ def refuse_in_the_way(source: Path, target: Path, replace: bool) -> None:
 def changed_parts(package: Package, recalculation: Recalculation) -> tuple[dict[str, bytes], tuple[str, ...]]:
     """The parts with new contents by their canonical name, and the parts that are left out."""
     by_sheet, areas = values_by_sheet(recalculation)
+    if CONTENT in package:
+        return changed_content(package, by_sheet), ()
     main = workbook_part(package)
     relations = package.relationships(main)
     parts = {each.kind: each.target for each in relations.values() if not each.external}
@@ -141,6 +142,15 @@ def changed_parts(package: Package, recalculation: Recalculation) -> tuple[dict[
         raise no_such_sheet(package, next(iter(by_sheet)))
     chain, mentions = without_chain(package, main, relations, blanked)
     return changed | mentions, (chain,) if chain else ()
+
+
+def changed_content(package: Package, by_sheet: dict[str, dict[Position, Scalar]]) -> dict[str, bytes]:
+    """The one part of an .ods package that holds the cells, with new values."""
+    from cellsection.workbook.odsxml import content_with_values
+
+    if not by_sheet:
+        return {}
+    return {CONTENT: content_with_values(package.part(CONTENT), by_sheet, package.where(CONTENT))}
 
 
 def values_by_sheet(
