@@ -10,7 +10,7 @@ from cellsection.workbook.areas import plain
 from cellsection.workbook.coercion import CALC, VALUE, number_of
 from cellsection.workbook.forms import Form, arguments
 from cellsection.workbook.machine import Code, Machine
-from cellsection.workbook.nodes import Call, Invoke, Name, Node
+from cellsection.workbook.nodes import Call, Invoke, Missing, Name, Node
 from cellsection.workbook.operators import spread as spread_over
 from cellsection.workbook.operators import width_height
 from cellsection.workbook.values import ErrorValue
@@ -18,31 +18,71 @@ from cellsection.workbook.values import ErrorValue
 if TYPE_CHECKING:
     from cellsection.workbook.compile import Compiler
 
-__all__ = ["LAMBDA_FORMS", "LambdaValue", "invoke_code", "named_lambda"]
+__all__ = ["LAMBDA_FORMS", "FunctionValue", "LambdaValue", "invoke_code", "named_lambda"]
+
+OMITTED = object()  # stands for an argument that a call leaves out
 
 
 class LambdaValue:
     """A function made by LAMBDA: parameters, and the code of its body with the values in force where it was made."""
 
-    __slots__ = ("body", "captured", "machine", "slots")
+    __slots__ = ("body", "captured", "machine", "omissions", "slots")
 
     def __init__(
-        self, machine: Machine, slots: list[list[Any]], body: Code, captured: list[tuple[list[Any], Any]]
+        self,
+        machine: Machine,
+        slots: list[list[Any]],
+        omissions: list[list[Any]],
+        body: Code,
+        captured: list[tuple[list[Any], Any]],
     ) -> None:
-        self.machine, self.slots, self.body, self.captured = machine, slots, body, captured
+        self.machine, self.slots, self.omissions, self.body, self.captured = machine, slots, omissions, body, captured
 
     def __call__(self, k: int, values: list[Any]) -> Any:
         """The body's value with the parameters bound to values; those left out are blank."""
         if len(values) > len(self.slots):
             return VALUE
         self.machine.check_time()
-        bound = [*self.captured, *zip(self.slots, [*values, *([None] * (len(self.slots) - len(values)))], strict=True)]
+        given = [*values, *([OMITTED] * (len(self.slots) - len(values)))]
+        bound = list(self.captured)
+        for slot, omission, value in zip(self.slots, self.omissions, given, strict=True):
+            bound += [(slot, None if value is OMITTED else value), (omission, value is OMITTED)]
         for slot, value in bound:
             slot.append(value)
         try:
             return self.body(k)
         finally:
             for slot, _ in bound:
+                slot.pop()
+
+
+class FunctionValue(LambdaValue):
+    """A function of the application itself, handed over by its name: BYROW(A1:C9,SUM)."""
+
+    __slots__ = ("bodies", "compiler", "name")
+
+    def __init__(self, compiler: Compiler, name: str) -> None:
+        super().__init__(compiler.machine, [], [], lambda k: VALUE, [])
+        self.compiler, self.name = compiler, name
+        self.bodies: dict[int, tuple[list[list[Any]], Code]] = {}  # by the number of arguments
+
+    def __call__(self, k: int, values: list[Any]) -> Any:
+        """The function's value for these arguments."""
+        if len(values) not in self.bodies:
+            scope: dict[str, list[Any]] = {f"{self.name} {place}": [] for place in range(len(values))}
+            outer, self.compiler.scopes = self.compiler.scopes, [scope]
+            try:
+                body = self.compiler.operand(Call(self.name, tuple(map(Name, scope))), True)
+            finally:
+                self.compiler.scopes = outer
+            self.bodies[len(values)] = (list(scope.values()), body)
+        slots, body = self.bodies[len(values)]
+        for slot, value in zip(slots, values, strict=True):
+            slot.append(None if value is OMITTED else value)
+        try:
+            return body(k)
+        finally:
+            for slot in slots:
                 slot.pop()
 
 
@@ -91,6 +131,8 @@ def form_lambda(compiler: Compiler, node: Call, spread: bool, as_value: bool) ->
     if len(scope) < len(nodes) - 1:
         raise FormulaError("a LAMBDA names a parameter twice", construct="LAMBDA parameter")
     slots = list(scope.values())
+    omissions: list[list[Any]] = [[] for _ in slots]
+    scope |= {omission_of(name): omission for name, omission in zip(list(scope), omissions, strict=True)}
     outer = [slot for around in compiler.scopes for slot in around.values()]
     compiler.scopes.append(scope)
     compiler.lambdas += 1
@@ -100,13 +142,30 @@ def form_lambda(compiler: Compiler, node: Call, spread: bool, as_value: bool) ->
         compiler.scopes.pop()
         compiler.lambdas -= 1
     machine = compiler.machine
-    return lambda k: LambdaValue(machine, slots, body, [(slot, slot[-1]) for slot in outer if slot])
+    return lambda k: LambdaValue(machine, slots, omissions, body, [(slot, slot[-1]) for slot in outer if slot])
+
+
+def omission_of(name: str) -> str:
+    """Under which name a scope keeps whether the call left a parameter out; no name that a formula can hold."""
+    return f"{name} omitted"
+
+
+def form_isomitted(compiler: Compiler, node: Call, spread: bool, as_value: bool) -> Code:
+    """ISOMITTED(parameter): whether the call of the LAMBDA left it out."""
+    (subject,) = arguments(node, 1, 1)
+    for scope in reversed(compiler.scopes):
+        omission = scope.get(omission_of(parameter(subject)))
+        if omission is not None:
+            return lambda k: omission[-1]
+    return lambda k: False
 
 
 def invoke_code(compiler: Compiler, node: Invoke, spread: bool) -> Code:
     """A call of whatever the callee gives."""
     callee = compiler.operand(node.callee, True)
-    codes = [compiler.operand(each, spread) for each in node.arguments]
+    codes: list[Code] = [
+        (lambda k: OMITTED) if isinstance(each, Missing) else compiler.operand(each, spread) for each in node.arguments
+    ]
 
     def run(k: int) -> Any:
         function = callee(k)
@@ -226,6 +285,7 @@ def work_makearray(call: Apply, values: list[Any], machine: Machine) -> Any:
 LAMBDA_FORMS: dict[str, Form] = {
     "LET": form_let,
     "LAMBDA": form_lambda,
+    "ISOMITTED": form_isomitted,
     "MAP": with_lambda(work_map, 2, None),
     "REDUCE": with_lambda(work_reduce, 2, 3),
     "SCAN": with_lambda(work_scan, 2, 3),

@@ -8,15 +8,19 @@ from cellsection.errors import FormulaError
 from cellsection.workbook.addresses import LAST_COLUMN, LAST_ROW
 from cellsection.workbook.areas import CellArea
 from cellsection.workbook.book import Table
+from cellsection.workbook.builtins import BUILTINS
 from cellsection.workbook.coercion import NULL, REF, VALUE
 from cellsection.workbook.grammar import parsed
 from cellsection.workbook.keys import ACROSS, ROWS, SHIFT, cell_key, inside, offset, wrapped
+from cellsection.workbook.lambdas import FunctionValue
 from cellsection.workbook.machine import Code, Special
 from cellsection.workbook.nodes import Coordinate, Join, Name, Reference, Spill, Structured
 from cellsection.workbook.values import ErrorValue
 
 if TYPE_CHECKING:
     from cellsection.workbook.compile import Compiler
+
+HANDED_OVER = "_XLETA."  # how a file spells the name of a function that is an argument itself
 
 __all__ = ["area_code", "cell_code", "join_code", "name_code", "spill_code", "structured_code"]
 
@@ -265,6 +269,9 @@ def name_code(compiler: Compiler, node: Name, spread: bool) -> Code:
     defined = machine.book.names.get((scope_name, key))
     if defined is None and key in machine.book.tables:
         return structured_code(compiler, Structured(node.text, (), None, None))
+    if defined is None and key.startswith(HANDED_OVER) and key.removeprefix(HANDED_OVER) in BUILTINS:
+        function = FunctionValue(compiler, key.removeprefix(HANDED_OVER))
+        return lambda k: function
     if defined is None:
         undefined = ErrorValue("#NAME?", f"the name {node.text} is not defined")
         return lambda k: undefined

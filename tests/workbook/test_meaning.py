@@ -208,3 +208,30 @@ def test_a_fault_of_the_program_stays_in_its_cell() -> None:
     found = calculated({"A1": "=1+LAMBDA(x,x)", "A2": "=A1", "A3": "=2"})
     assert [found[address].status for address in ("A1", "A2")] == [Status.UNSUPPORTED, Status.NOT_VERIFIED]
     assert found["A3"].value == 2.0
+
+
+# Functions as arguments, parameters left out, references by number
+
+
+def test_a_parameter_that_a_call_leaves_out_says_so() -> None:
+    cells: Cells = {
+        "A1": "=_xlfn.LAMBDA(_xlpm.x,_xlop.y,IF(_xlfn.ISOMITTED(_xlop.y),_xlpm.x,_xlpm.x+_xlop.y))(3)",
+        "A2": "=_xlfn.LAMBDA(_xlpm.x,_xlop.y,IF(_xlfn.ISOMITTED(_xlop.y),_xlpm.x,_xlpm.x+_xlop.y))(3,4)",
+        "A3": "=_xlfn.LAMBDA(_xlpm.x,_xlop.y,IF(_xlfn.ISOMITTED(_xlop.y),_xlpm.x,_xlpm.x+_xlop.y))(3,)",
+    }
+    assert values(calculated(cells)) == {"A1": 3.0, "A2": 7.0, "A3": 3.0}
+
+
+def test_a_function_of_the_application_is_handed_over_by_its_name() -> None:
+    cells: Cells = {"A1": 1.0, "A2": 4.0, "B1": 2.0, "B2": 3.0, "C1": "=SUM(BYROW(A1:B2,_xleta.MAX))"}
+    assert values(calculated({**cells, "C2": "=SUM(MAP(A1:A2,_xleta.SQRT))"})) == {"C1": 6.0, "C2": 3.0}
+
+
+def test_indirect_reads_rows_and_columns_by_number() -> None:
+    cells: Cells = {
+        "A1": 1.0, "A2": 2.0, "B1": 10.0, "B2": 20.0,
+        "D2": '=INDIRECT("R2C2",FALSE)', "E2": '=INDIRECT("RC[-3]",FALSE)',
+        "F2": '=SUM(INDIRECT("R[-1]C1:R2C2",FALSE))',
+        "G2": '=SUM(INDIRECT("S!C1",FALSE))', "H2": '=INDIRECT("R[-5]C1",FALSE)',
+    }  # fmt: skip
+    assert values(calculated(cells)) == {"D2": 20.0, "E2": 20.0, "F2": 33.0, "G2": 3.0, "H2": "#REF!"}

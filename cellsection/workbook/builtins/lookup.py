@@ -5,6 +5,7 @@ from __future__ import annotations
 from typing import Any
 
 from cellsection.workbook.builtins.patterns import compiled
+from cellsection.workbook.builtins.r1c1 import from_r1c1
 from cellsection.workbook.builtins.registry import Context, ErrorResult, builtin
 from cellsection.workbook.builtins.traits import array_of, cells_of, matcher, whole
 from cellsection.workbook.coercion import NA, REF, VALUE, compared, equal, text_of
@@ -264,7 +265,10 @@ def offset(
 @builtin("INDIRECT", "context text logical?")
 def indirect(context: Context, text: str, a1: bool = True) -> Any:
     if not a1:
-        context.unsupported("INDIRECT in R1C1 notation")
+        found = from_r1c1(text.strip(), context.row, context.column)
+        if found is None:
+            return REF
+        text = found
     return context.reference(text, context.sheet_name)
 
 
