@@ -109,7 +109,7 @@ def form(
         return {typed: kind, f"{o}:date-value": day, **said(kind)}, paragraphs(day.replace("T", " "), names)
     if kind == "time":
         time = duration_text(value)
-        return {typed: kind, f"{o}:time-value": time, **said(kind)}, paragraphs(time, names)
+        return {typed: kind, f"{o}:time-value": time, **said(kind)}, paragraphs(clock_text(value), names)
     kind = "float" if kind == "date" else kind
     text = number_text(value)
     held = {typed: kind, f"{o}:value": text}
@@ -156,6 +156,17 @@ def duration_text(value: float) -> str:
     part = part.rstrip("0")
     sign = "-" if value < 0 else ""
     return f"{sign}PT{int(hours):02}H{int(minutes):02}M{whole:0>2}{'.' + part if part else ''}S"
+
+
+def clock_text(value: float) -> str:
+    """Days as hours, minutes and seconds, as a clock shows them.
+
+    >>> clock_text(1 / 3), clock_text(-1.25)
+    ('08:00:00', '-30:00:00')
+    """
+    minutes, seconds = divmod(round(abs(value) * 86400, 3), 60)
+    hours, minutes = divmod(int(minutes), 60)
+    return f"{'-' if value < 0 else ''}{hours:02}:{minutes:02}:{f'{seconds:06.3f}'.removesuffix('.000')}"
 
 
 def paragraphs(text: str, names: Names) -> bytes:
