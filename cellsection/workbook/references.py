@@ -262,10 +262,12 @@ def name_code(compiler: Compiler, node: Name, spread: bool) -> Code:
             slot = scope[key]
             return lambda k: slot[-1]
     machine = compiler.machine
-    if node.book is not None and node.book not in ("0", ""):
-        raise FormulaError(f"name {node.text} of another book", construct="name of another book")
     own = (node.sheet or machine.names[compiler.sheet]).upper()
     scope_name = own if (own, key) in machine.book.names else ""
+    if node.book is not None and node.book not in ("0", ""):
+        scope_name = f"[{node.book}]"
+        if (scope_name, key) not in machine.book.names:
+            raise FormulaError(f"name {node.text} of another book", construct="name of another book")
     defined = machine.book.names.get((scope_name, key))
     if defined is None and key in machine.book.tables:
         return structured_code(compiler, Structured(node.text, (), None, None))

@@ -151,6 +151,11 @@ def read_external_references(root: Element, relations: dict[str, Relationship], 
             if 0 <= number(data.get("sheetId")) < len(sheets):
                 read_external_cells(data, sheets[number(data.get("sheetId"))])
         book.externals[str(place)] = (file, sheets)
+        for named in link.along("externalBook", "definedNames", "definedName"):
+            sheet, mark, cells = named.get("refersTo").removeprefix("=").rpartition("!")
+            if mark and "[" not in sheet:  # a name for cells of that book; its formulas are not ours to compute
+                text = f"'[{place}]{sheet.removeprefix(chr(39)).removesuffix(chr(39))}'!{cells}"
+                book.names[f"[{place}]", named.get("name").upper()] = Formula(text, 1, 1)
 
 
 def read_external_cells(data: Element, sheet: Sheet) -> None:

@@ -10,6 +10,7 @@ from cellsection.errors import WorkbookError
 from cellsection.workbook.book import Book, Limits
 from cellsection.workbook.literals import read_date
 from cellsection.workbook.reader import read_book
+from cellsection.workbook.recalculate import recalculated
 from cellsection.workbook.values import ErrorValue
 from tests.workbook.small import MAIN, RELATIONS, Cell, parts_of, saved, zipped
 
@@ -90,6 +91,21 @@ def test_the_saved_values_of_another_book_are_read(tmp_path: Path) -> None:
     settings = '<externalReferences><externalReference r:id="x0"/></externalReferences>'
     book = related(tmp_path, "", {"link1.xml": (f"{RELATIONS}/externalLink", link)}, settings)
     assert book.externals["1"][1][0].values == {(1, 1): 5.0, (2, 2): "kN"}
+
+
+def test_a_name_of_another_book_reads_the_saved_cells_that_it_names(tmp_path: Path) -> None:
+    link = (
+        f'<externalLink xmlns="{MAIN}"><externalBook><sheetNames><sheetName val="Wind loads"/></sheetNames>'
+        '<definedNames><definedName name="gust" refersTo="=\'Wind loads\'!$A$1:$A$2"/></definedNames>'
+        '<sheetDataSet><sheetData sheetId="0"><row r="1"><cell r="A1"><v>5</v></cell></row><row r="2"><cell r="A2">'
+        "<v>7</v></cell></row></sheetData></sheetDataSet></externalBook></externalLink>"
+    )
+    settings = '<externalReferences><externalReference r:id="x0"/></externalReferences>'
+    row = '<row r="1"><c r="A1"><f>SUM([1]!gust)</f></c><c r="B1"><f>[1]!calm</f></c></row>'
+    found = recalculated(related(tmp_path, row, {"link1.xml": (f"{RELATIONS}/externalLink", link)}, settings)).cells
+    assert found[0].value == 12.0
+    assert "saved values of another book" in found[0].notes[0]
+    assert found[1].reason == "name of another book"
 
 
 def test_what_the_book_says_of_its_calculation_is_noted(tmp_path: Path) -> None:
