@@ -5,7 +5,7 @@ from __future__ import annotations
 import os
 from collections import deque
 from functools import partial
-from itertools import islice
+from itertools import chain, islice
 from pathlib import Path
 from typing import TYPE_CHECKING, Literal
 
@@ -14,10 +14,11 @@ from cellsection.check.examine import check_book
 from cellsection.check.findings import Report
 
 if TYPE_CHECKING:
-    from collections.abc import Callable, Generator, Iterable, Iterator
+    from collections.abc import Generator, Iterable, Iterator
     from concurrent.futures import Executor, Future
     from datetime import datetime
 
+    from cellsection.check.pool import Borrowed, Crew
     from cellsection.workbook.book import Limits
 
 __all__ = ["BOOKS", "books_in", "check_books"]
@@ -66,78 +67,49 @@ def check_books(
     ahead : how many books are handed to it at a time; 0 for 256
     trace : let an internal fault of cellsection come out as a Python traceback
     """
-    met = (Path(path) for path in paths)
     tolerance = tolerance or Tolerance()
+    coming: Iterator[Path] = map(Path, paths)
     check = partial(_checked, tolerance=tolerance, limits=limits, clock=clock, seed=seed, trace=trace)
+    crew: Crew | Borrowed
     if executor is not None:
+        from cellsection.check.pool import Borrowed
 
-        def taken(path: Path, coming: Future[Report]) -> Report:
-            try:
-                return coming.result()
-            except Exception as fault:  # whatever an executor raises where a worker dies; it is for this book only
-                if trace:
-                    raise
-                reason = f"its worker did not come back ({type(fault).__name__}). Check this book alone."
-                return Report(str(path), tolerance, clock=clock, seed=seed, unreadable=reason)
+        crew, ahead = Borrowed(executor, trace), ahead or AHEAD_OF_EXECUTOR
+    else:
+        first = list(islice(coming, LOOKED_AT))
+        coming = chain(first, coming)
+        workers = min(jobs or _worthwhile(first, memory), len(first))
+        if workers <= 1 and memory is None:
+            yield from map(check, coming)
+            return
+        from cellsection.check.pool import Crew
+        from cellsection.workbook.book import Limits
 
-        yield from _in_order(met, ahead or AHEAD_OF_EXECUTOR, lambda path: executor.submit(check, path), taken)
-        return
-    first = list(islice(met, LOOKED_AT))
-    workers = jobs or (_worthwhile(first) if memory is None else os.cpu_count() or 1)
-    if len(first) < LOOKED_AT:
-        workers = min(workers, len(first))
-    if workers <= 1 and memory is None:
-        for path in _chained(first, met):
-            yield check(path)
-        return
-    from cellsection.check.pool import Crew
-    from cellsection.workbook.book import Limits
-
-    crew = Crew(max(workers, 1), memory, (limits or Limits()).seconds)
-
-    def died(path: Path) -> Report:
-        return Report(str(path), tolerance, clock=clock, seed=seed, unreadable=crew.obituary)
-
-    try:
-        yield from _in_order(
-            _chained(first, met),
-            crew.workers * AHEAD,
-            lambda path: crew.submit(check, path),
-            lambda path, coming: crew.result(coming, check, path) or died(path),
-        )
-    finally:
-        crew.close()
-
-
-def _in_order(
-    paths: Iterator[Path],
-    ahead: int,
-    submit: Callable[[Path], Future[Report]],
-    result: Callable[[Path, Future[Report]], Report],
-) -> Iterator[Report]:
-    """The reports in the order of the books, of which no more than `ahead` are handed out and not yet taken back."""
+        crew = Crew(max(workers, 1), memory, (limits or Limits()).seconds)
+        ahead = crew.workers * AHEAD
     handed: deque[tuple[Path, Future[Report]]] = deque()
     try:
         while True:
-            for path in islice(paths, ahead - len(handed)):
-                handed.append((path, submit(path)))
+            for path in islice(coming, ahead - len(handed)):
+                handed.append((path, crew.submit(check, path)))
             if not handed:
                 return
-            path, coming = handed.popleft()
-            yield result(path, coming)
+            path, future = handed.popleft()
+            found = crew.result(future, check, path)
+            if isinstance(found, str):
+                found = Report(str(path), tolerance, unreadable=found, clock=clock, seed=seed)
+            yield found
     finally:
-        for _, coming in handed:
-            coming.cancel()
+        crew.close(future for _, future in handed)
 
 
-def _chained(first: list[Path], rest: Iterator[Path]) -> Iterator[Path]:
-    yield from first
-    yield from rest
-
-
-def _worthwhile(first: list[Path]) -> int:
-    """How many processes pay for these books, the first of perhaps many more."""
-    many = len(first) == LOOKED_AT or sum(path.stat().st_size for path in first if path.is_file()) > WORTH_PROCESSES
+def _worthwhile(first: list[Path], memory: int | None) -> int:
+    """How many processes pay for these books, the first of perhaps many more; a bound on memory needs them anyway."""
+    many = (
+        memory is not None
+        or len(first) == LOOKED_AT
+        or sum(path.stat().st_size for path in first if path.is_file()) > WORTH_PROCESSES
+    )
     return os.cpu_count() or 1 if many else 1
 
 

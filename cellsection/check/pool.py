@@ -9,9 +9,11 @@ from concurrent.futures import CancelledError, ProcessPoolExecutor
 from concurrent.futures.process import BrokenProcessPool
 from typing import TYPE_CHECKING, Any, TypeAlias
 
+from cellsection.errors import CellsectionError
+
 if TYPE_CHECKING:
-    from collections.abc import Callable
-    from concurrent.futures import Future
+    from collections.abc import Callable, Iterable
+    from concurrent.futures import Executor, Future
     from multiprocessing.process import BaseProcess
     from pathlib import Path
 
@@ -19,7 +21,7 @@ if TYPE_CHECKING:
 
     Check: TypeAlias = Callable[[Path], Report]
 
-__all__ = ["Crew"]
+__all__ = ["Borrowed", "Crew"]
 
 PATIENCE = 1.25  # a book that keeps its worker busy for so much longer than its time limit is given up with the worker
 MARGIN = 10.0  # seconds, likewise; for reading and reporting, which the time limit does not count
@@ -35,7 +37,7 @@ class Pool:
         self.executor = ProcessPoolExecutor(workers, context, initializer=_begin, initargs=(memory,))
         self.processes: set[BaseProcess] = set()
 
-    def submit(self, *call: Any) -> Future[Report]:
+    def submit(self, *call: Any) -> Future[Any]:
         """Hand out a call. Raises BrokenProcessPool where a worker has died."""
         before = set(multiprocessing.active_children())
         try:
@@ -76,33 +78,65 @@ class Crew:
             self.pool = Pool(self.workers, self.memory)
             return self.pool.submit(_within, self.patience, check, path)
 
-    def result(self, coming: Future[Report], check: Check, path: Path) -> Report | None:
-        """The report on a book that was handed out; None where it takes its worker down with it."""
+    def result(self, coming: Future[Report], check: Check, path: Path) -> Report | str:
+        """The report on a book that was handed out, or why there is none: it takes its worker down with it."""
         try:
             return coming.result()
         except (BrokenProcessPool, CancelledError):
             pass
         self.apart = self.apart or Pool(1, self.memory)
         try:
-            return self.apart.submit(_within, self.patience, check, path).result()
+            report: Report = self.apart.submit(_within, self.patience, check, path).result()
+            return report
         except BrokenProcessPool:
             self.apart.close()
-            self.apart = None
-            return None
+            self.apart = Pool(1, self.memory)
+            self._blame_no_book(self.apart)
+            return (
+                "the process that checked it ended abruptly: it was out of memory, was ended from outside, or did not "
+                f"come back within {self.patience:,.0f} s. Check this book alone."
+            )
 
-    @property
-    def obituary(self) -> str:
-        """Why there is no report on such a book, and what to do."""
-        return (
-            "the process that checked it ended abruptly: it was out of memory, was ended from outside, or did not come "
-            f"back within {self.patience:,.0f} s. Check this book alone."
-        )
+    def _blame_no_book(self, fresh: Pool) -> None:
+        """Raise where a worker dies that has been given no book yet."""
+        try:
+            fresh.submit(os.getpid).result()
+        except BrokenProcessPool:
+            raise CellsectionError(
+                "processes for checking books cannot be started here. Check the books one at a time (jobs=1, no bound "
+                'on memory), allow more memory, or call from a file, below if __name__ == "__main__".'
+            ) from None
 
-    def close(self) -> None:
-        """End all workers."""
+    def close(self, handed: Iterable[Future[Report]] = ()) -> None:  # noqa: ARG002 - they end with their workers
+        """End all workers, and with them what they have in hand."""
         self.pool.close()
         if self.apart is not None:
             self.apart.close()
+
+
+class Borrowed:
+    """Somebody else's executor, with the face of a Crew. Whatever it raises for a book spoils that book only."""
+
+    def __init__(self, executor: Executor, trace: bool) -> None:
+        self.executor, self.trace = executor, trace
+
+    def submit(self, check: Check, path: Path) -> Future[Report]:
+        """Hand out a book."""
+        return self.executor.submit(check, path)
+
+    def result(self, coming: Future[Report], check: Check, path: Path) -> Report | str:  # noqa: ARG002 - as a Crew
+        """The report on a book that was handed out, or why there is none."""
+        try:
+            return coming.result()
+        except Exception as fault:
+            if self.trace:
+                raise
+            return f"its worker did not come back ({type(fault).__name__}). Check this book alone."
+
+    def close(self, handed: Iterable[Future[Report]]) -> None:
+        """Give back the executor without the books it has not begun."""
+        for each in handed:
+            each.cancel()
 
 
 def _within(seconds: float, check: Check, path: Path) -> Report:
