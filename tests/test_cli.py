@@ -172,6 +172,22 @@ def test_cells_that_read_another_book_are_counted_and_its_saved_values_named(tmp
     assert made["reading other books"] == 2
 
 
+def test_a_book_that_asks_for_iteration_is_told_to(tmp_path: Path) -> None:
+    # x = (x + 2)/2 has the one solution 2
+    cells = {"A1": ("(B1+2)/2", 2.0), "B1": ("A1", 2.0)}
+    path = write_book(tmp_path / "circle.xlsx", cells, settings='<calcPr iterate="1"/>')
+    calm = run("check", path)
+    assert calm.exit_code == 0
+    cells["C1"] = ("A1*3", 7.0)  # 6, so that the report is laid out
+    laid_out = run("check", write_book(path, cells, settings='<calcPr iterate="1"/>'))
+    (made,) = json.loads(run("check", path, "--json").output)["books"]
+    for told in (calm.output, laid_out.output, " ".join(note["text"] for note in made["notes"])):
+        assert "the book asks for" in told
+        assert "100 rounds at most" in told
+    assert "Cells that do not hold (1)" in laid_out.output
+    assert run("check", write_book(path, cells)).output.count("Circular references (1)") == 1
+
+
 def test_what_depends_on_the_date_is_verified_for_a_given_moment(tmp_path: Path) -> None:
     # 46357 is 2026-12-01 in the 1900 date system: 2026-01-01 is 46023, and 334 days later it is December
     path = write_book(tmp_path / "today.xlsx", {"A1": ("TODAY()", 46357.0), "A2": ("A1+1", 46358.0)})
@@ -181,6 +197,19 @@ def test_what_depends_on_the_date_is_verified_for_a_given_moment(tmp_path: Path)
     unknown = run("check", path, "--clock", "saved")
     assert unknown.exit_code == 3
     assert "does not say when it was saved" in unknown.output
+
+
+def test_a_run_that_cannot_start_its_processes_is_refused_in_one_line(good: Path) -> None:
+    code = "from cellsection.cli import main; main()"  # from no file, so that no process can begin by importing it
+    done = subprocess.run(
+        [sys.executable, "-", "check", good, good, "--jobs", "2"],
+        input=code,
+        capture_output=True,
+        text=True,
+        check=False,
+    )
+    assert done.returncode == 4
+    assert "cellsection: processes for checking books cannot be started here." in done.stderr
 
 
 def test_random_numbers_come_out_the_same_for_a_seed(tmp_path: Path) -> None:

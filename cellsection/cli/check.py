@@ -12,6 +12,7 @@ import click
 from cellsection.cli.options import host_options
 from cellsection.cli.progress import Progress
 from cellsection.cli.refusal import Refusal
+from cellsection.errors import CellsectionError
 
 if TYPE_CHECKING:
     from collections.abc import Iterator, Mapping, Sequence
@@ -112,17 +113,20 @@ def check(
     )
     kept: list[Report] = []  # only where all must be there before anything can be printed
     counts: Counter[Verdict] = Counter()
-    with closing(reports), Progress(paths) as progress:
-        for report in reports:
-            progress.withdraw()
-            if as_json:
-                kept.append(report)
-            elif as_lines:
-                _show_line(report)
-            else:
-                _show(report, every=every, first=not counts)
-            counts[report.verdict] += 1
-            progress.advance()
+    try:
+        with closing(reports), Progress(paths) as progress:
+            for report in reports:
+                progress.withdraw()
+                if as_json:
+                    kept.append(report)
+                elif as_lines:
+                    _show_line(report)
+                else:
+                    _show(report, every=every, first=not counts)
+                counts[report.verdict] += 1
+                progress.advance()
+    except CellsectionError as failure:  # what is wrong with a book is in its report; this is about the run
+        raise Refusal(str(failure)) from failure
     if as_json:
         _show_json(kept)
     elif not as_lines:

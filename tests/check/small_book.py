@@ -16,11 +16,12 @@ OFFICE = "http://schemas.openxmlformats.org/officeDocument/2006/relationships"
 TYPES = "application/vnd.openxmlformats-officedocument.spreadsheetml"
 
 
-def write_book(path: Path, cells: Mapping[str, object], sheet: str = "Girder") -> Path:
+def write_book(path: Path, cells: Mapping[str, object], sheet: str = "Girder", settings: str = "") -> Path:
     """A book of one sheet.
 
     cells : address -> a constant, or (formula without "=", saved value); a saved None: the file stores
         none. Texts that begin with # are stored as errors.
+    settings : what the workbook part says beside its sheets
     """
     rows: dict[int, list[str]] = {}
     for address, content in cells.items():
@@ -34,7 +35,7 @@ def write_book(path: Path, cells: Mapping[str, object], sheet: str = "Girder") -
         "_rels/.rels": f'<Relationships xmlns="{PACKAGE}/relationships">'
         f'<Relationship Id="rId1" Type="{OFFICE}/officeDocument" Target="xl/workbook.xml"/></Relationships>',
         "xl/workbook.xml": f'<workbook xmlns="{MAIN}" xmlns:r="{OFFICE}"><sheets>'
-        f'<sheet name="{escape(sheet)}" sheetId="1" r:id="rId1"/></sheets></workbook>',
+        f'<sheet name="{escape(sheet)}" sheetId="1" r:id="rId1"/></sheets>{settings}</workbook>',
         "xl/_rels/workbook.xml.rels": f'<Relationships xmlns="{PACKAGE}/relationships">'
         f'<Relationship Id="rId1" Type="{OFFICE}/worksheet" Target="worksheets/sheet1.xml"/></Relationships>',
         "xl/worksheets/sheet1.xml": f'<worksheet xmlns="{MAIN}"><sheetData>{data}</sheetData></worksheet>',
