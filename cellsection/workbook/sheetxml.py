@@ -16,14 +16,12 @@ from cellsection.errors import WorkbookError
 from cellsection.workbook.addresses import address, read_ref
 from cellsection.workbook.book import Bounds, Position, column_letters
 from cellsection.workbook.markup import feed, new_parser
+from cellsection.workbook.plaincells import with_plain_values
 from cellsection.workbook.splice import Edit, Span, as_utf8, name_of, opened, replaced, with_attribute, without
-from cellsection.workbook.values import ErrorValue, Scalar
+from cellsection.workbook.values import Scalar
+from cellsection.workbook.xlsxvalues import saved_form
 
 __all__ = ["Sheet", "sheet_with_values"]
-
-ESCAPE = re.compile("[\x00-\x08\x0b-\x1f\ud800-\udfff\ufffe\uffff]|_(?=x[0-9A-Fa-f]{4}_)")
-# The errors that the file format can hold; newer ones are saved as #VALUE! beside a richer value in another part.
-KNOWN_ERRORS = frozenset(("#NULL!", "#DIV/0!", "#VALUE!", "#REF!", "#NAME?", "#NUM!", "#N/A", "#GETTING_DATA"))
 
 
 @dataclass(frozen=True, slots=True)
@@ -53,6 +51,12 @@ class CellSpan(Span):
 def sheet_with_values(data: bytes, sheet: Sheet, where: str) -> bytes:
     """A sheet part with new values in some of its cells. Raises WorkbookError where they have no place in it."""
     data = as_utf8(data, where)
+    plain = with_plain_values(data, sheet.values, sheet.rich)
+    return plain if plain is not None else with_values_anywhere(data, sheet, where)
+
+
+def with_values_anywhere(data: bytes, sheet: Sheet, where: str) -> bytes:
+    """The same for a sheet that is not plain: cells may be missing, and be spelt in any way that XML allows."""
     found = Locator(data, sheet)
     feed(found.parser, [data], where)
     if found.sheet_data is None:
@@ -228,23 +232,3 @@ def filled_in(data: bytes, parent: Span, made: list[tuple[int, bytes]], there: l
         place = next((start for other, start in there if other > number), parent.closed)
         edits.append((place, place, xml))
     return edits
-
-
-def saved_form(value: Scalar, prefix: bytes, rich: Mapping[str, str]) -> tuple[bytes, bytes]:
-    """The t attribute (and vm) and the <v> that hold a value, each with its markup."""
-    kind, text, space = b"", "", b""
-    if value is None:
-        return b"", b""
-    if isinstance(value, bool):
-        kind, text = b' t="b"', str(int(value))
-    elif isinstance(value, ErrorValue):
-        kind, text = b' t="e"', value.code if value.code in KNOWN_ERRORS else "#VALUE!"
-        if value.code in rich and value.code not in KNOWN_ERRORS:
-            kind += b' vm="%b"' % rich[value.code].encode()
-    elif isinstance(value, str):
-        kind, text = b' t="str"', ESCAPE.sub(lambda m: f"_x{ord(m[0]):04X}_", value)
-        text = text.replace("&", "&amp;").replace("<", "&lt;").replace(">", "&gt;")
-        space = b' xml:space="preserve"' if text != text.strip() else b""
-    else:
-        text = repr(int(value)) if value == int(value) and abs(value) < 1e15 else repr(value)
-    return kind, b"<%bv%b>%b</%bv>" % (prefix, space, text.encode(), prefix)
