@@ -22,6 +22,14 @@ PREFIXES = re.compile(
     re.IGNORECASE,
 )
 
+# Functions that OpenFormula spells otherwise, or means otherwise, than the application does under the same letters
+# (ODF 1.3 part 4: 6.18.16 CHISQDIST, 6.18.17 CHISQINV, 6.18.23 FDIST, 6.18.25 FINV take the left tail; FORMULA 6.13.9,
+# SKEWP 6.18.69). The right tails are its LEGACY.FDIST and so on. Section numbers from memory.
+OPENFORMULA_NAMES = {
+    "CHISQDIST": "CHISQ.DIST", "CHISQINV": "CHISQ.INV", "FDIST": "F.DIST", "FINV": "F.INV", "FORMULA": "FORMULATEXT",
+    "SKEWP": "SKEW.P",
+}  # fmt: skip
+
 
 class Token(NamedTuple):
     """kind: operand, call, "(" ")" "," or op; text: the sign or function name; node: the finished operand."""
@@ -100,6 +108,8 @@ def tokens(text: str, row: int, column: int, language: str = "excel") -> list[To
             token = Token("operand", node=structured, spaced=spaced, reference=True)
         elif kind == "call":
             name = PREFIXES.sub("", lexeme[:-1]).upper()
+            if language == "openformula" and len(name) == len(lexeme) - 1:
+                name = OPENFORMULA_NAMES.get(name, name)
             token = Token("call", name, spaced=spaced, reference=True)
         elif kind in ("cell", "rows", "columns", "bracket"):
             reference = bracket(lexeme, row, column) if kind == "bracket" else area(lexeme, row, column, prefix)

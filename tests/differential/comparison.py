@@ -65,7 +65,9 @@ def agree(ours: Scalar, theirs: Scalar) -> bool:
     if isinstance(ours, ErrorValue) or isinstance(theirs, ErrorValue):
         return ours == theirs
     if isinstance(ours, str) or isinstance(theirs, str):
-        return (ours or "") == (theirs or "") if not isinstance(ours, float) and not isinstance(theirs, float) else False
+        return (
+            (ours or "") == (theirs or "") if not isinstance(ours, float) and not isinstance(theirs, float) else False
+        )
     a, b = float(ours or 0.0), float(theirs or 0.0)
     return abs(a - b) <= max(RELATIVE * max(abs(a), abs(b)), ABSOLUTE)
 

@@ -20,7 +20,7 @@ PREFIXED = frozenset(
 )
 # Functions that LibreOffice 7.4 answers with #NAME? in every spelling a file gives them.
 ABSENT = frozenset(
-    """ARRAYTOTEXT BINOM.DIST.RANGE CHOOSECOLS CHOOSEROWS DROP EXPAND FILTER HSTACK PERCENTOF RANDARRAY REGEXEXTRACT
+    """MULTIPLE.OPERATIONS ARRAYTOTEXT BINOM.DIST.RANGE CHOOSECOLS CHOOSEROWS DROP EXPAND FILTER HSTACK PERCENTOF RANDARRAY REGEXEXTRACT
     REGEXREPLACE REGEXTEST SEQUENCE SORT SORTBY TAKE TEXTAFTER TEXTBEFORE TEXTSPLIT TOCOL TOROW UNIQUE VALUETOTEXT
     VSTACK WRAPCOLS WRAPROWS XLOOKUP XMATCH LET""".split()
 )
@@ -67,6 +67,11 @@ CHISQ.DIST positive small yes
 CHISQ.INV fraction small
 CHIINV fraction small
 CHISQ.INV.RT fraction small
+COMBIN count small
+COMBINA count small
+PERMUT count small
+PERMUTATIONA count small
+DELTA number number?
 COMPLEX number number letter?
 CONFIDENCE fraction positive count
 CONFIDENCE.NORM fraction positive count
@@ -229,6 +234,7 @@ RANK.AVG number numbers yes?
 RANK.EQ number numbers yes?
 RATE count money money money? zeroone?
 RECEIVED day later money rate basis?
+REPT text small
 ROMAN count four?
 ROUND number small?
 ROUNDDOWN number small?
@@ -255,7 +261,10 @@ TBILLEQ day soon rate
 TBILLPRICE day soon rate
 TBILLYIELD day soon money
 TEXT any pattern
-TEXTJOIN text yes mixed text?
+TEXTJOIN text yes words text?
+CONCAT words text? words?
+FLOOR number number
+CEILING number number
 TIMEVALUE timetext
 TREND numbers numbers? numbers? yes?
 TRIMMEAN numbers fraction

@@ -14,7 +14,7 @@ from typing import TYPE_CHECKING
 from cellsection.workbook.values import Array, ErrorValue, Scalar
 from tests.differential.expressions import Piece
 from tests.differential.functions import PREFIXED, arguments_of, names
-from tests.differential.values import AREAS, ERRORS, ODD, WORDS, number, typical
+from tests.differential.values import AREAS, ERRORS, MILD, ODD, WORDS, number, typical
 from tests.differential.written import ArrayText, FormulaText, Sheets, WrittenTable, letters
 
 if TYPE_CHECKING:
@@ -25,6 +25,8 @@ __all__ = ["Case", "GeneratedBook", "generate"]
 ROWS = 20
 OPERATORS = ("+", "-", "*", "/", "^", "&", "=", "<>", "<", ">", "<=", ">=")
 NAMED = {"Steel": "Data!$B$1:$B$20", "Factor": "Data!$C$1", "Half": "1/2", "Twice": "Data!$G$2*2"}
+WIDE = ("number", "any", "text", "yes")  # words that very large numbers may stand under
+NESTED = ("number", "any", "text", "yes")  # words that calls may stand under
 FIELDS = ("mark", "grade", "length", "mass")
 
 
@@ -166,7 +168,9 @@ class Writer:
         odd = chance.random() < 0.3  # one odd argument in about a third of the calls
         which = chance.randrange(len(words)) if words and odd else -1
         arguments = tuple(
-            self.odd(lone=len(words) < 2) if k == which else self.argument(word.rstrip("?"), depth)
+            self.odd(lone=len(words) < 2, wide=word.rstrip("?") in WIDE)
+            if k == which
+            else self.argument(word.rstrip("?"), depth)
             for k, word in enumerate(words)
         )
         prefix = "_xlfn." if name in PREFIXED else ""
@@ -187,7 +191,11 @@ class Writer:
     def operand(self, depth: int) -> Piece:
         """An operand, in brackets where it is an operation itself."""
         chance = self.chance
-        piece = self.odd(lone=True) if chance.random() < 0.25 else self.argument(chance.choice(("any", "number")), depth)
+        piece = (
+            self.odd(lone=True, wide=True)
+            if chance.random() < 0.25
+            else self.argument(chance.choice(("any", "number")), depth)
+        )
         if piece.form == "operator" or (piece.form == "typed" and piece.text.startswith("-")):
             return Piece(piece.form, f"({piece.text})", piece.head, piece.arguments, piece.value)
         return piece
@@ -199,10 +207,10 @@ class Writer:
         chance = self.chance
         if word in AREAS or word in ("block", "square", "base", "criteria", "reference"):
             return self.area(word)
-        if depth and chance.random() < 0.6:
+        if depth and word in NESTED and chance.random() < 0.7:
             if chance.random() < 0.2:
                 return self.operation(depth - 1)
-            return self.call(chance.choice(INNER.get(word, INNER["any"])), depth - 1)
+            return self.call(chance.choice(INNER[word]), depth - 1)
         if word in ("number", "any", "text", "positive", "fraction", "yes") and chance.random() < 0.35:
             return self.reference(word)
         if word == "number" and chance.random() < 0.04:
@@ -223,7 +231,9 @@ class Writer:
 
     def reference(self, word: str) -> Piece:
         """A cell of a column that suits the word."""
-        columns = {"number": "ABCH", "any": "ABCDEFIJ", "text": "DDJ", "positive": "B", "fraction": "G", "yes": "I"}[word]
+        columns = {"number": "ABCH", "any": "ABCDEFIJ", "text": "DDJ", "positive": "B", "fraction": "G", "yes": "I"}[
+            word
+        ]
         column, row = self.chance.choice(columns), self.chance.randint(1, ROWS)
         return Piece("cell", f"Data!{self.dollars(column, row)}", value=self.cell("Data", row, ord(column) - 64))
 
@@ -250,11 +260,17 @@ class Writer:
             first = min(top, ROWS - size + 1)
             return self.rectangle("A", size, first, first + size - 1)
         if word == "block":
-            return self.rectangle(chance.choice("ACL"), chance.choice((1, 2, 3)) if chance.random() < 0.7 else 1, top, bottom)
+            return self.rectangle(
+                chance.choice("ACL"), chance.choice((1, 2, 3)) if chance.random() < 0.7 else 1, top, bottom
+            )
         pick = chance.random()
         column = chance.choice(AREAS[word])
         if pick < 0.08:
-            return Piece("column", f"Data!{column}:{column}", value=self.array("Data", 1, ord(column) - 64, ROWS, ord(column) - 64))
+            return Piece(
+                "column",
+                f"Data!{column}:{column}",
+                value=self.array("Data", 1, ord(column) - 64, ROWS, ord(column) - 64),
+            )
         if pick < 0.16:
             values = tuple((self.cell("Data", row, ord(column) - 64),) for row in range(top, min(bottom, top + 5) + 1))
             return constant(values)
@@ -272,12 +288,12 @@ class Writer:
         text = f"Data!{self.dollars(column, top)}:{self.dollars(last, bottom)}"
         return Piece("range", text, value=self.array("Data", top, left, bottom, left + width - 1))
 
-    def odd(self, lone: bool) -> Piece:
+    def odd(self, *, lone: bool, wide: bool) -> Piece:
         """An argument of another kind than the typical; a lone one is never left empty."""
         chance = self.chance
         pick = chance.random()
         if pick < 0.42:
-            return typed(chance.choice(ODD))
+            return typed(chance.choice(ODD if wide else MILD))
         if pick < 0.54:
             return Piece("cell", f"Data!M{chance.randint(1, 40)}", value=None)
         if pick < 0.74:

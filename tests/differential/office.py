@@ -32,7 +32,7 @@ def calculated(soffice: str, books: Sequence[Path], folder: Path) -> list[Path]:
     out = folder / "calculated"
     command = [soffice, f"-env:UserInstallation={profile.as_uri()}", "--headless", "--norestore"]
     command += ["--convert-to", "ods", "--outdir", str(out), *map(str, books)]
-    done = subprocess.run(command, check=True, capture_output=True, timeout=1800, text=True)
+    done = subprocess.run(command, check=True, capture_output=True, timeout=60 + 30 * len(books), text=True)
     made = [out / f"{book.stem}.ods" for book in books]
     if missing := [path.name for path in made if not path.exists()]:
         raise RuntimeError(f"LibreOffice wrote no {', '.join(missing)}: {done.stderr.strip()[-300:]}")

@@ -7,7 +7,7 @@ from typing import Any
 
 from cellsection.workbook.builtins.mathematics import fail, total
 from cellsection.workbook.builtins.registry import ErrorResult, builtin
-from cellsection.workbook.builtins.traits import array_of, criterion
+from cellsection.workbook.builtins.traits import array_of, criterion, stop_at
 from cellsection.workbook.coercion import DIV0, VALUE
 from cellsection.workbook.values import ErrorValue, Scalar
 
@@ -33,8 +33,12 @@ def cell_at(array: Any, row: int, column: int) -> Scalar:
 
 
 def places(pairs: tuple[Any, ...]) -> Iterator[tuple[int, int]]:
-    """Row and column, from 0, of the places at which every range meets its criterion."""
+    """Row and column, from 0, of the places at which every range meets its criterion; an error in place of a range is
+    passed on: COUNTIF(#REF!,1) is #REF!.
+    """
     ranges, wanted = pairs[0::2], pairs[1::2]
+    for each in ranges:
+        stop_at(each)
     shape = extent(ranges[0])
     if any(extent(each) != shape for each in ranges[1:]):
         raise ErrorResult(VALUE)

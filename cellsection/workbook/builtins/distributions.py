@@ -266,7 +266,7 @@ def betadist(x: float, a: float, b: float, low: float = 0.0, high: float = 1.0) 
 
 @builtin("BETA.INV BETAINV", "number number number number? number?")
 def beta_inv(p: float, a: float, b: float, low: float = 0.0, high: float = 1.0) -> float:
-    if a <= 0 or b <= 0 or not 0 < p < 1:
+    if a <= 0 or b <= 0 or not 0 < p < 1 or low >= high:
         return fail(NUM)
     return low + (high - low) * finite(stats().beta.ppf(p, a, b))
 
@@ -377,7 +377,12 @@ def prob(values: Array, chances: Array, low: float, high: float | None = None) -
     return math.fsum(p for x, p in pairs if low <= x <= (low if high is None else high))
 
 
-@builtin("ERF ERF.PRECISE", "measure measure?")
+@builtin("ERF.PRECISE", "measure")
+def erf_precise(x: float) -> float:
+    return math.erf(x)
+
+
+@builtin("ERF", "measure measure?")
 def erf(low: float, high: float | None = None) -> float:
     return math.erf(low) if high is None else math.erf(high) - math.erf(low)
 

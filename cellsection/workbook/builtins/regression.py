@@ -136,10 +136,11 @@ def logest(y: Array, x: Array | None = None, constant: Scalar = None, statistics
 
 def plain_number(cell: Scalar) -> float:
     """A cell that must be a number."""
-    number = number_of(cell)
-    if isinstance(number, ErrorValue):
+    if isinstance(cell, ErrorValue):
+        raise ErrorResult(cell)
+    if cell.__class__ is not float:
         raise ErrorResult(VALUE)
-    return number
+    return cell  # type: ignore[return-value]
 
 
 def predicted(y: Array, x: Array | None, new: Array | None, constant: bool) -> list[float]:

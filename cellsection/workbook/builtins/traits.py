@@ -11,7 +11,7 @@ from cellsection.workbook.coercion import VALUE, compared, number_of, text_numbe
 from cellsection.workbook.values import Array, ErrorValue, Scalar
 
 __all__ = [
-    "array_of", "cells_of", "criterion", "flat", "is_area", "matcher", "numbers", "numbers_a", "whole", "wildcard",
+    "array_of", "cells_of", "criterion", "flat", "is_area", "matcher", "numbers", "numbers_a", "stop_at", "whole", "wildcard",
 ]  # fmt: skip
 
 
