@@ -219,6 +219,10 @@ def test_random_numbers_come_out_the_same_for_a_seed(tmp_path: Path) -> None:
     assert result.output.splitlines()[-1].endswith("Random numbers begin from 7.")
 
 
+def test_a_very_long_time_limit_is_no_obstacle(good: Path, bad: Path) -> None:
+    assert process("check", good, bad, "--jobs", 2, "--limit", "seconds=1e300").returncode == 1
+
+
 def test_a_limit_refuses_a_book_that_asks_for_more(good: Path) -> None:
     result = run("check", good, "--limit", "parts=2", "--limit", "cells=1_000")
     assert result.exit_code == 3

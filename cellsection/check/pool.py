@@ -24,6 +24,7 @@ if TYPE_CHECKING:
 __all__ = ["Borrowed", "Crew"]
 
 PATIENCE = 1.25  # a book that keeps its worker busy for so much longer than its time limit is given up with the worker
+LONGEST = threading.TIMEOUT_MAX / 2  # what an alarm can be set to; at least three weeks on any platform
 MARGIN = 10.0  # seconds, likewise; for reading and reporting, which the time limit does not count
 
 
@@ -65,7 +66,7 @@ class Crew:
 
     def __init__(self, workers: int, memory: int | None, seconds: float) -> None:
         self.workers, self.memory = workers, memory
-        self.patience = seconds * PATIENCE + MARGIN
+        self.patience = min(seconds * PATIENCE + MARGIN, LONGEST)
         self.pool = Pool(workers, memory)
         self.apart: Pool | None = None
 
