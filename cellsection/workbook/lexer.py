@@ -133,6 +133,8 @@ def tokens(text: str, row: int, column: int, language: str = "excel") -> list[To
             token = Token("(" if lexeme == "(" else ")", spaced=spaced, reference=True)
         elif lexeme in ",;":
             token = Token(",", spaced=spaced)
+        elif kind == "mark":
+            raise FormulaError(f'"{lexeme}" at position {match.start() + 1} belongs to no array constant')
         else:
             token = Token("op", {"!": " "}.get(lexeme, lexeme), spaced=spaced)
         found.append(token)

@@ -8,7 +8,7 @@ from collections.abc import Iterator
 from contextlib import contextmanager
 from datetime import datetime
 from pathlib import Path
-from typing import Literal
+from typing import Any, Literal
 
 from cellsection.errors import FormulaError
 from cellsection.workbook.areas import CellArea, intersected, is_union
@@ -195,26 +195,29 @@ class Driver:
         self.count += 1
         if not self.count % 256:
             machine.check_time()
-        compiled = self.by_formula[index].get(formula) or self.compiled(formula, index)
         try:
+            compiled = self.by_formula[index].get(formula) or self.compiled(formula, index)
             value = compiled.run(key)
+            if value.__class__ is float and machine.taint is None and formula.kind == "cell":
+                machine.stores[index][key] = value
+            else:
+                self.take(index, key, formula, value)
         except Unsupported as finding:
             machine.settle_saved(index, key, Taint(Status.UNSUPPORTED, finding.construct))
-            return
         except RecursionError:
             machine.settle_saved(index, key, Taint(Status.UNSUPPORTED, "formula nested too deeply"))
-            return
+        except MemoryError:
+            machine.settle_saved(index, key, Taint(Status.UNSUPPORTED, "formula that needs more memory than there is"))
         except (ArithmeticError, ValueError, TypeError, LookupError, AttributeError) as fault:
             # A fault of this program spoils its own cell and what depends on it, not the whole book; it is reported.
             what = f"this formula, at which the program fails ({type(fault).__name__}: {fault})"
             machine.settle_saved(index, key, Taint(Status.UNSUPPORTED, what))
-            return
-        taint = machine.taint
+
+    def take(self, index: int, key: int, formula: Formula, value: Any) -> None:
+        """Put away what a formula gives, where that is more than a plain number."""
+        machine, taint = self.machine, self.machine.taint
         if taint is SETTLING:
             self.circles.members[index, key] = None
-        if value.__class__ is float and taint is None and formula.kind == "cell":
-            machine.stores[index][key] = value
-            return
         if taint is not None and taint.status is not Status.VOLATILE:
             machine.settle_saved(index, key, taint)
             return

@@ -61,9 +61,9 @@ def relative_key(text: str, row: int, column: int, language: str) -> Key:
         letters = part.rstrip(DIGITS)
         known = COLUMNS[letters]
         if known is None:
-            if part[-1] == "!" and parts[k - 1] == ":":  # the first sheet of several is a name, whatever it looks like
+            if part[-1:] == "!" and parts[k - 1] == ":":  # the first sheet of several is a name, whatever it looks like
                 parts[k - 2] = PATTERN[language].split(text)[k - 2]
-            elif letters == "" and beside(parts[k - 1], parts[k + 1]):
+            elif part and letters == "" and beside(parts[k - 1], parts[k + 1]):
                 parts[k] = f"row {int(part) - row}"
             continue
         kind, number = known
@@ -113,9 +113,9 @@ def moved_text(text: str, down: int, across: int, language: str) -> str:
         known, digits = COLUMNS[letters], part[len(letters) :]
         line = beside(given[k - 1], given[k + 1])
         if known is None:
-            if part[-1] == "!" and given[k - 1] == ":":
+            if part[-1:] == "!" and given[k - 1] == ":":
                 parts[k - 2] = given[k - 2]
-            elif letters == "" and line:
+            elif digits and letters == "" and line:
                 parts[k] = str(int(digits) + down)
         elif (digits and int(digits) <= LAST_ROW) or (not digits and line):
             kind, number = known
