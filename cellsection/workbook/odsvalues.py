@@ -7,7 +7,7 @@ cell: applications show a cell by its value and format, not by them.
 from __future__ import annotations
 
 import re
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from datetime import datetime, timedelta
 from decimal import Decimal
 
@@ -17,13 +17,14 @@ from cellsection.workbook.splice import ATTRIBUTE
 from cellsection.workbook.tablecells import CALCEXT, OFFICE, SHOWN_ERROR
 from cellsection.workbook.values import ErrorValue, Scalar
 
-__all__ = ["CALCEXT", "Names", "form"]
+__all__ = ["CALCEXT", "WORDS", "Names", "form", "number_text"]
 
 HELD = ("value", "value-type", "date-value", "time-value", "boolean-value", "string-value", "currency")
 KINDS = frozenset(("float", "percentage", "currency", "date", "time"))  # of numbers
+WORDS = (b"TRUE", b"FALSE")  # by which a number is shown that is a truth
 NO_SIGN = re.compile("[\x00-\x08\x0b\x0c\x0e-\x1f\ud800-\udfff\ufffe\uffff]")  # that XML cannot hold
 SPACES = re.compile(r"^ +|(?<= ) +|\t")
-QUOTED = {"&": "&amp;", "<": "&lt;", '"': "&quot;", "\n": "&#10;", "\r": "&#13;", "\t": "&#9;"}
+QUOTED = str.maketrans({"&": "&amp;", "<": "&lt;", '"': "&quot;", "\n": "&#10;", "\r": "&#13;", "\t": "&#9;"})
 CLOSE = 1e-10  # of a day, to which a date can be written
 
 
@@ -35,6 +36,16 @@ class Names:
     table: str
     text: str
     calcext: str
+    held: frozenset[bytes] = field(init=False)  # the attributes that hold a value
+
+    def __post_init__(self) -> None:
+        held = [f"{self.office}:{each}" for each in HELD] + [f"{self.calcext}:value-type"]
+        object.__setattr__(self, "held", frozenset(each.encode() for each in held))
+
+    @property
+    def value_opened(self) -> bytes:
+        """The attribute of a number, up to the number."""
+        return f' {self.office}:value="'.encode()
 
     @property
     def rows_repeated(self) -> bytes:
@@ -48,13 +59,10 @@ class Names:
 
     def with_value(self, tag: bytes, attributes: dict[str, str]) -> bytes:
         """A start tag with the attributes that hold its value replaced where they stand, all others kept."""
-        held = {f"{self.office}:{each}".encode() for each in HELD}
-        if self.calcext:
-            held.add(f"{self.calcext}:value-type".encode())
         new = b"".join(b' %b="%b"' % (name.encode(), quoted(text)) for name, text in attributes.items())
         pieces, done, placed = [], 0, False
         for met in ATTRIBUTE.finditer(tag):
-            if met[1] in held:
+            if met[1] in self.held:
                 pieces += [tag[done : met.start()], b"" if placed else new]
                 done, placed = met.end(), True
         rest = tag[done:]
@@ -66,7 +74,7 @@ class Names:
 
 def quoted(text: str) -> bytes:
     """A text as the value of an attribute."""
-    return "".join(QUOTED.get(sign, sign) for sign in text).encode()
+    return text.translate(QUOTED).encode()
 
 
 def form(
@@ -77,7 +85,7 @@ def form(
     old, shown : what the cell held before, its attributes and its text
     """
     o, kind = names.office, old.get(OFFICE + "value-type", "")
-    truth = kind == "float" and shown in (b"TRUE", b"FALSE")  # how the application saves what a comparison gave
+    truth = kind == "float" and shown in WORDS  # how the application saves what a comparison gave
     typed = f"{o}:value-type"
 
     def said(kind: str) -> dict[str, str]:

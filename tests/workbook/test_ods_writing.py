@@ -89,17 +89,23 @@ def test_a_cell_that_was_never_computed_gets_its_value() -> None:
 
 def test_a_comment_in_a_cell_is_kept() -> None:
     note = "<office:annotation><text:p>a plate</text:p></office:annotation>"
-    before = row(f'<{CELL} {F} office:value-type="float" office:value="1">{note}<text:p>1</text:p></{CELL}>')
+    before = row(f"<{CELL} {F} {held('float', '1', '1').replace('><', f'>{note}<', 1)}</{CELL}>")
     after = row(f"<{CELL} {F} {held('float', '2', '2').replace('><', f'>{note}<', 1)}</{CELL}>")
     assert written(content(before), {(1, 1): 2.0}) == content(after)
 
 
+def test_a_number_is_set_between_other_attributes_and_in_its_own_paragraph() -> None:
+    cell = '<{0} {1} office:value-type="float" office:value="{2}" x="1"><text:p y="2">{2}</text:p></{0}>'
+    assert written(content(row(cell.format(CELL, F, "1"))), {(1, 1): 2.5}) == content(row(cell.format(CELL, F, "2.5")))
+
+
 def test_a_formula_that_speaks_of_values_is_no_value() -> None:
-    tricky = """table:formula="of:=&quot; office:value='7' &quot;&amp;1" """
-    before = row(f'<{CELL} {tricky}office:value-type="string"><text:p>x</text:p></{CELL}>')
-    new = written(content(before), {(1, 1): "y"})
-    assert tricky in new
-    assert new.count("<text:p>y</text:p>") == 1
+    tricky = """table:formula='of:=&quot; office:value="7" &quot;&amp;1' """
+    for kind, old, value, shown in (("string", "", "y", "y"), ("float", 'office:value="1"', 2.0, "2")):
+        before = f'<{CELL} {tricky}office:value-type="{kind}" {old}><text:p>x</text:p></{CELL}>'
+        new = written(content(row(before)), {(1, 1): value})
+        assert tricky in new
+        assert new.count(f"<text:p>{shown}</text:p>") == 1
 
 
 REPEATED = f'<{CELL} {F} table:number-columns-repeated="4" office:value-type="float" office:value="1"/>'
