@@ -15,7 +15,7 @@ from dataclasses import dataclass
 from typing import Any
 
 from cellsection.errors import FormulaError
-from cellsection.workbook.areas import CellArea, narrowed
+from cellsection.workbook.areas import CellArea, narrowed, plain
 from cellsection.workbook.book import Formula
 from cellsection.workbook.builtins import BUILTINS
 from cellsection.workbook.calls import builtin_call, host_call
@@ -142,7 +142,7 @@ class Compiler:
         def whole(k: int) -> Any:
             result = code(k)
             if result.__class__ is not CellArea:
-                return result
+                return plain(result)
             # A name or a function that comes to one cell is that cell, as where the cell itself is written.
             return result.value(1, 1) if result.single else result.whole()
 

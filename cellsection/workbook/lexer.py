@@ -220,30 +220,40 @@ def array_constant(text: str, place: int, language: str) -> tuple[ArrayConstant,
     """An array constant, from behind its "{"."""
     pattern = EXCEL if language == "excel" else OPENFORMULA
     rows: list[list[Scalar]] = [[]]
-    sign = 1.0
+    signs, expects_value = "", True
     while True:
         match = pattern.match(text, place)
         if match is None:
             raise FormulaError("an array constant is not closed")
         lexeme, kind, place = match[0], match.lastgroup, match.end()
+        if kind == "space":
+            continue
+        if lexeme in ("-", "+") and expects_value:
+            signs += lexeme
+            continue
+        if (kind == "mark") is expects_value or (signs and kind != "number"):
+            raise FormulaError(f'"{lexeme}" is out of place in an array constant')
+        expects_value = kind == "mark"
         if lexeme == "}":
             break
         if lexeme == "|" or (lexeme == ";" and language == "excel"):
             rows.append([])
-        elif lexeme in ",;" or kind == "space":
+        elif lexeme in (",", ";"):
             continue
-        elif lexeme in ("-", "+"):
-            sign = -sign if lexeme == "-" else sign
         elif kind == "number":
-            rows[-1].append(sign * float(lexeme))
-            sign = 1.0
+            number = literal(lexeme)
+            rows[-1].append(-number if signs.count("-") % 2 else number)  # type: ignore[operator]
+            signs = ""
         elif kind == "text":
             rows[-1].append(literal(lexeme))
         elif kind == "error":
             rows[-1].append(ErrorValue(lexeme))
         elif lexeme.upper().rstrip("(") in ("TRUE", "FALSE"):
             rows[-1].append(lexeme.upper().startswith("TRUE"))
-            place += 1 if lexeme.endswith("(") else 0
+            if lexeme.endswith("("):
+                if text[place : place + 1] != ")":
+                    raise FormulaError(f'"{lexeme}" is out of place in an array constant')
+                place += 1
         else:
             raise FormulaError(f'"{lexeme}" cannot stand in an array constant')
     if len({len(each) for each in rows}) != 1 or not rows[0]:
