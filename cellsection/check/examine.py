@@ -62,7 +62,8 @@ def check_book(
     path : an .xlsx, .xlsm or .ods file
     relative, absolute : the tolerance for numbers, see `Tolerance`; both zero or more
     limits : how much a book may ask for before it is refused
-    clock : the moment that TODAY and NOW give, "saved" for the one at which the book was saved; else the present
+    clock : the moment that TODAY and NOW give, "saved" for the one at which the book was saved, where it says so; else
+        the present
     seed : makes random numbers come out the same again
 
     A file that cannot be read is a report too: its verdict is UNREADABLE, `unreadable` says why and what to do.
@@ -71,7 +72,14 @@ def check_book(
 
     tolerance = Tolerance(relative, absolute)
     try:
-        report = examine(recalculate(path, limits=limits, clock=clock, seed=seed), tolerance)
+        try:
+            report = examine(recalculate(path, limits=limits, clock=clock, seed=seed), tolerance)
+        except WorkbookError as undated:
+            if clock != "saved":
+                raise
+            report = examine(recalculate(path, limits=limits, seed=seed), tolerance)  # raises where that was not it
+            note = Note(f"{undated.fault}, so that what depends on the day is compared by kind only")
+            report = replace(report, notes=(note, *report.notes))
     except WorkbookError as unreadable:
         report = Report(str(path), tolerance, unreadable=str(unreadable))
     except OSError as failure:

@@ -17,6 +17,7 @@ from typing import TYPE_CHECKING, Any
 import pytest
 
 from cellsection.check import Report, Tolerance, Verdict, check_books
+from cellsection.check.findings import Unsupported
 from cellsection.check.pool import Crew
 from cellsection.workbook.book import Limits
 from tests.check.deadly import check_or_die
@@ -134,14 +135,27 @@ def test_ctrl_c_ends_the_run_without_a_traceback_and_leaves_no_process(books: li
 
 
 @pytest.mark.skipif(sys.platform == "win32", reason="address space cannot be bounded there, as docs/checking.md says")
-def test_a_book_that_wants_more_memory_than_it_may_have_is_told_so(tmp_path: Path) -> None:
+def test_the_memory_of_a_worker_is_bounded_and_a_cell_that_wants_more_is_told(tmp_path: Path) -> None:
     cells = {f"A{row}": ("SUM(SEQUENCE(1400,1400)*2)", 1.0) for row in range(1, 3)}
     greedy = write_book(tmp_path / "greedy.xlsx", cells)
     small = write_book(tmp_path / "small.xlsx", {"B1": ("1+1", 2.0)})
     first, second = check_books([greedy, small], jobs=1, memory=256_000_000)
-    assert first.verdict is Verdict.UNREADABLE
-    assert "memory" in first.unreadable
+    (found,) = first.findings
+    assert isinstance(found, Unsupported)
+    assert "memory" in found.construct
     assert second.verdict is Verdict.HOLDS
+
+
+def test_a_book_that_cannot_be_read_for_want_of_memory_is_told_so(
+    books: list[Path], monkeypatch: pytest.MonkeyPatch
+) -> None:
+    def greedy(*_: object, **__: object) -> Report:
+        raise MemoryError
+
+    monkeypatch.setattr("cellsection.check.many.check_book", greedy)
+    (report,) = check_books(books[:1])
+    assert report.verdict is Verdict.UNREADABLE
+    assert "more memory than there is" in report.unreadable
 
 
 def test_limits_clock_and_seed_reach_every_worker(tmp_path: Path) -> None:
