@@ -143,7 +143,7 @@ def _reasons(held: list[FormulaCell], *, every: bool) -> Iterator[str]:
 
     said = {
         Status.UNSUPPORTED: "not supported: {}",
-        Status.CYCLE: "circular: {}",
+        Status.CYCLE: "{}",
         Status.NOT_VERIFIED: "not verified, {}",
     }
     groups: dict[str, list[tuple[str, str]]] = {}

@@ -165,6 +165,43 @@ def test_the_copy_has_the_rights_of_any_new_file(tmp_path: Path) -> None:
     assert stat.S_IMODE(out.stat().st_mode) == stat.S_IMODE(new.stat().st_mode)
 
 
+def test_a_file_that_is_replaced_keeps_its_rights_and_its_links(tmp_path: Path) -> None:
+    path, link = saved(tmp_path, {"S": {"A1": "=1"}}), tmp_path / "link.xlsx"
+    path.chmod(0o640)
+    link.symlink_to(path)
+    with pytest.raises(WorkbookError, match="replace itself"):
+        write_values(path, new_values(path, {"A1": 5.0}), link)
+    write_values(path, new_values(path, {"A1": 5.0}), link, replace=True)
+    assert link.is_symlink()
+    assert stat.S_IMODE(path.stat().st_mode) == 0o640
+    assert read_book(path, Limits()).sheets[0].values == {(1, 1): 5.0}
+
+
+def test_a_link_that_leads_nowhere_is_in_the_way(tmp_path: Path) -> None:
+    path, link = saved(tmp_path, {"S": {"A1": "=1"}}), tmp_path / "link.xlsx"
+    link.symlink_to(tmp_path / "nowhere.xlsx")
+    with pytest.raises(WorkbookError, match="there already"):
+        write_values(path, new_values(path, {"A1": 5.0}), link)
+
+
+@pytest.mark.parametrize("sign", ["<!-- -->", "<?note?>"])
+def test_a_sheet_with_a_note_in_it_is_written_the_careful_way(sign: str) -> None:
+    false = '<c r="A1"><f>B1</f><v>1</v></c>'
+    note = sign.replace(" ", false).replace("note", f"note {false}")
+    rows = f'{note}<row r="1">{false}</row>'
+    assert written(sheet(rows), {(1, 1): 2.0}) == sheet(f'{note}<row r="1">{false.replace(">1<", ">2<")}</row>')
+
+
+def test_texts_keep_the_letters_of_a_part_in_another_encoding() -> None:
+    xml = '<?xml version="1.0" encoding="ISO-8859-1"?>' + sheet(
+        f'<row r="1"><c r="A1">{F}</c><c r="B1" t="str"><v>é</v></c></row>'
+    )
+    new = sheet_with_values(xml.encode("latin-1"), Sheet({(1, 1): "Ø ő"}), "book.xlsx").decode("utf-8")
+    assert ">é<" in new
+    assert ">Ø ő<" in new
+    assert "8859" not in new
+
+
 def test_a_file_that_is_there_stays_whole_where_the_copy_fails(tmp_path: Path) -> None:
     path, out = saved(tmp_path, {"S": {"A1": "=1"}}), tmp_path / "out.xlsx"
     out.write_bytes(b"what was there")
