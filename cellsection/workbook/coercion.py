@@ -5,6 +5,7 @@ from __future__ import annotations
 import re
 from datetime import date
 from math import isfinite
+from unicodedata import combining, normalize
 
 from cellsection.workbook.values import ErrorValue, Scalar
 
@@ -169,6 +170,11 @@ def rank(value: Scalar) -> int:
     return 2 if isinstance(value, bool) else 1 if isinstance(value, str) else 0
 
 
+def unaccented(text: str) -> str:
+    """A text without its accents: words are put in order by their letters first."""
+    return "".join(c for c in normalize("NFD", text) if not combining(c))
+
+
 def compared(a: Scalar, b: Scalar) -> int:
     """-1, 0 or 1 as a comes before, with or after b; neither is an error value."""
     if a is None:
@@ -179,6 +185,8 @@ def compared(a: Scalar, b: Scalar) -> int:
         return -1 if rank_a < rank_b else 1
     if isinstance(a, str) and isinstance(b, str):
         x, y = a.casefold(), b.casefold()
+        if x != y and not (x.isascii() and y.isascii()):  # an accent decides only between words alike without it
+            x, y = (unaccented(x), x), (unaccented(y), y)  # type: ignore[assignment]
         return (x > y) - (x < y)
     if isinstance(a, float) and isinstance(b, float) and near(a, b):
         return 0

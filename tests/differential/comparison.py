@@ -7,6 +7,7 @@ from collections.abc import Iterator
 from dataclasses import dataclass, field, replace
 from typing import TYPE_CHECKING
 
+from cellsection.workbook.builtins import BUILTINS
 from cellsection.workbook.recalculate import recalculate
 from cellsection.workbook.results import FormulaCell, Status
 from cellsection.workbook.values import ErrorValue, Scalar
@@ -72,6 +73,23 @@ def agree(ours: Scalar, theirs: Scalar) -> bool:
     return abs(a - b) <= max(RELATIVE * max(abs(a), abs(b)), ABSOLUTE)
 
 
+COMPLEX = frozenset(name for name in (*BUILTINS, "COMPLEX") if name.startswith("IM") or name == "COMPLEX")
+
+
+def complex_of(value: Scalar) -> complex | None:
+    """The complex number that a result in text spells."""
+    try:
+        return complex(str(value).lower().replace("i", "j")) if isinstance(value, str) else None
+    except ValueError:
+        return None
+
+
+def alike(ours: Scalar, theirs: Scalar) -> bool:
+    """Whether two complex numbers written as text are the same to 1e-9 of their size, whatever digits they show."""
+    a, b = complex_of(ours), complex_of(theirs)
+    return a is not None and b is not None and abs(a - b) <= max(RELATIVE * max(abs(a), abs(b)), ABSOLUTE)
+
+
 def shown(value: Scalar) -> str:
     """An error as LibreOffice shows it."""
     return value.message.removeprefix("saved as ") if isinstance(value, ErrorValue) else ""
@@ -114,7 +132,7 @@ def compared(book: GeneratedBook, ours: Cells, theirs: Cells, path: str) -> Outc
                 if mine.status is not Status.RECALCULATED:
                     outcome.unsupported[f"{mine.status.value}: {mine.reason}"] += 1
                     bad = True
-                elif agree(mine.value, other):
+                elif agree(mine.value, other) or (piece.head in COMPLEX and alike(mine.value, other)):
                     outcome.equal += 1
                 elif any(differs[id(each)] for each in piece.calls()):
                     outcome.follows += 1

@@ -23,6 +23,10 @@ if TYPE_CHECKING:
 __all__ = ["Case", "GeneratedBook", "generate"]
 
 ROWS = 20
+REFERENCES = frozenset(  # functions whose areas the application accepts as references only
+    """COUNTIF COUNTIFS SUMIF SUMIFS AVERAGEIF AVERAGEIFS MAXIFS MINIFS RANK RANK.EQ RANK.AVG SUBTOTAL COUNTBLANK OFFSET
+    ISFORMULA FORMULATEXT AREAS SHEETS""".split()
+)
 OPERATORS = ("+", "-", "*", "/", "^", "&", "=", "<>", "<", ">", "<=", ">=")
 NAMED = {"Steel": "Data!$B$1:$B$20", "Factor": "Data!$C$1", "Half": "1/2", "Twice": "Data!$G$2*2"}
 WIDE = ("number", "any", "text", "yes")  # words that very large numbers may stand under
@@ -140,6 +144,7 @@ class Writer:
         self.chance, self.sheets = chance, sheets
         self.top, self.bottom = 1, ROWS
         self.day = 40_000.0
+        self.plain = False  # whether areas are references only
 
     def cell(self, sheet: str, row: int, column: int) -> Scalar:
         """A constant."""
@@ -167,8 +172,9 @@ class Writer:
             words = words[: chance.randint(least, len(words))]
         odd = chance.random() < 0.3  # one odd argument in about a third of the calls
         which = chance.randrange(len(words)) if words and odd else -1
+        self.plain = name in REFERENCES
         arguments = tuple(
-            self.odd(lone=len(words) < 2, wide=word.rstrip("?") in WIDE)
+            self.unusual(word.rstrip("?"), lone=len(words) < 2)
             if k == which
             else self.argument(word.rstrip("?"), depth)
             for k, word in enumerate(words)
@@ -246,8 +252,7 @@ class Writer:
         chance = self.chance
         top, bottom = self.top, self.bottom
         if word == "base":
-            text = chance.choice(("Base!A1:D13", "Base!$A$1:$D$13", "Stock[#All]"))
-            return Piece("range", text, value=self.array("Base", 1, 1, 13, 4))
+            return Piece("range", chance.choice(("Base!A1:D13", "Base!$A$1:$D$13")), value=self.array("Base", 1, 1, 13, 4))
         if word == "criteria":
             right, last = chance.choice((6, 7)), chance.choice((2, 2, 3))
             return Piece("range", f"Base!F1:{letters(right)}{last}", value=self.array("Base", 1, 6, last, right))
@@ -271,7 +276,7 @@ class Writer:
                 f"Data!{column}:{column}",
                 value=self.array("Data", 1, ord(column) - 64, ROWS, ord(column) - 64),
             )
-        if pick < 0.16:
+        if pick < 0.16 and not self.plain:
             values = tuple((self.cell("Data", row, ord(column) - 64),) for row in range(top, min(bottom, top + 5) + 1))
             return constant(values)
         if pick < 0.19 and word in ("numbers", "positives"):
@@ -287,6 +292,14 @@ class Writer:
         last = letters(left + width - 1)
         text = f"Data!{self.dollars(column, top)}:{self.dollars(last, bottom)}"
         return Piece("range", text, value=self.array("Data", top, left, bottom, left + width - 1))
+
+    def unusual(self, word: str, *, lone: bool) -> Piece:
+        """An argument of another kind than the typical; where an area belongs, another area or cell."""
+        if word in AREAS or word in ("block", "square", "base", "criteria", "reference"):
+            if self.chance.random() < 0.5:
+                return self.rectangle(self.chance.choice("DEHIJK"), 1, self.top, self.bottom)
+            return self.reference("any")
+        return self.odd(lone=lone, wide=word in WIDE)
 
     def odd(self, *, lone: bool, wide: bool) -> Piece:
         """An argument of another kind than the typical; a lone one is never left empty."""

@@ -212,7 +212,8 @@ def yield_(
         return fail(NUM)
     coupons = Coupons(context, settlement, maturity, frequency, basis)
     if coupons.number > 1:
-        return solved(lambda y: price_of(coupons, rate, y, redemption) - paid, max(rate, 0.05))
+        times = coupons.frequency  # solved a period: a yield may lie below -1 a year, but not below -1 a period
+        return times * solved(lambda y: price_of(coupons, rate, y * times, redemption) - paid, max(rate, 0.05) / times)
     coupon, gone = rate / coupons.frequency, coupons.gone / coupons.length
     base = paid / 100 + gone * coupon
     if not coupons.left or not base:

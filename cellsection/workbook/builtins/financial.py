@@ -73,7 +73,7 @@ def solved(f: Callable[[float], float], guess: float) -> float:
         if new <= -1:
             new = (x - 1) / 2
         if abs(new - x) <= 1e-15 * max(abs(new), 1e-2):
-            return new
+            return new if new > -1 + 1e-9 else fail(NUM)  # creeping up to the pole at -1 is no root
         x = new
     y = f(x)
     return x if math.isfinite(y) and abs(y) < 1e-7 else fail(NUM)
@@ -174,7 +174,7 @@ def mirr(area: Any, finance: float, reinvest: float) -> float:
         return fail(DIV0)
     gains = sum(max(f, 0.0) / power(1 + reinvest, k) for k, f in enumerate(flows))
     losses = sum(f / power(1 + finance, k) for k, f in enumerate(flows) if f < 0)
-    if not losses or n < 2:
+    if not losses or not gains or n < 2:  # "at least one positive value and one negative value"
         return fail(DIV0)
     return power(-gains * power(1 + reinvest, n - 1) / losses, 1 / (n - 1)) - 1
 

@@ -97,11 +97,15 @@ def sumxmy2(a: Array, b: Array) -> float:
 @builtin("SERIESSUM", "measure measure measure array")
 def seriessum(x: float, n: float, m: float, coefficients: Array) -> float:
     result = 0.0
-    for k, a in enumerate(numbers((coefficients,))):
+    for k, cell in enumerate(cells_of(coefficients)):
+        if isinstance(cell, ErrorValue):
+            return fail(cell)
+        if not (cell is None or cell.__class__ is float):  # text and logicals: "any argument nonnumeric" is #VALUE!
+            return fail(VALUE)
         exponent = n + k * m
-        if x == 0 and exponent <= 0:
+        if (x == 0 and exponent <= 0) or (x < 0 and exponent != int(exponent)):
             return fail(NUM)
-        result += a * x**exponent
+        result += (cell or 0.0) * x**exponent  # type: ignore[operator]
     return result
 
 
@@ -336,34 +340,39 @@ def inverse(x: float) -> float:
     return 1.0 / x if x else fail(DIV0)
 
 
+def within(x: float) -> float:
+    """An argument of the functions from COT to COTH; from 2^27 on it is #NUM!, as the application's reference says."""
+    return x if abs(x) < 2**27 else fail(NUM)
+
+
 @builtin("CSC", "number")
 def csc(x: float) -> float:
-    return inverse(math.sin(x))
+    return inverse(math.sin(within(x)))
 
 
 @builtin("SEC", "number")
 def sec(x: float) -> float:
-    return inverse(math.cos(x))
+    return inverse(math.cos(within(x)))
 
 
 @builtin("COT", "number")
 def cot(x: float) -> float:
-    return inverse(math.tan(x))
+    return inverse(math.tan(within(x)))
 
 
 @builtin("CSCH", "number")
 def csch(x: float) -> float:
-    return inverse(math.sinh(x))
+    return inverse(math.sinh(x)) if abs(within(x)) < 710 else math.copysign(2.0, x) * math.exp(-abs(x))
 
 
 @builtin("SECH", "number")
 def sech(x: float) -> float:
-    return inverse(math.cosh(x))
+    return inverse(math.cosh(x)) if abs(within(x)) < 710 else 2.0 * math.exp(-abs(x))
 
 
 @builtin("COTH", "number")
 def coth(x: float) -> float:
-    return inverse(math.tanh(x))
+    return inverse(math.tanh(within(x)))
 
 
 @builtin("ASIN", "number")

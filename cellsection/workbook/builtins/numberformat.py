@@ -7,7 +7,7 @@ import re
 from cellsection.workbook.builtins.calendar import LAST, clock_of, day_of
 from cellsection.workbook.builtins.mathematics import rounded
 from cellsection.workbook.builtins.registry import ErrorResult
-from cellsection.workbook.coercion import VALUE
+from cellsection.workbook.coercion import VALUE, text_of
 from cellsection.workbook.values import Scalar
 
 __all__ = ["formatted"]
@@ -41,6 +41,8 @@ def formatted(value: Scalar, pattern: str, date1904: bool) -> str | None:
     section, number = chosen(sections, number)
     if section is None:
         return "#"
+    if section.strip() == "@":  # the text format shows a number as it is joined to text
+        return str(text_of(value))
     return number_section(section, number, date1904)
 
 
