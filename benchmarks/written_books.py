@@ -33,6 +33,7 @@ from cellsection.workbook.write import WRITTEN, write_values
 if TYPE_CHECKING:
     from collections.abc import Mapping
 
+    from cellsection.workbook.results import Recalculation
     from cellsection.workbook.values import Scalar
 
 __all__ = ["run"]
@@ -40,6 +41,8 @@ __all__ = ["run"]
 CONTENT = "content.xml"
 FORMULA = "{urn:oasis:names:tc:opendocument:xmlns:table:1.0}formula"
 HELD = ("value", "value-type", "date-value", "time-value", "boolean-value", "string-value", "currency")
+PROGRAMS = ("openpyxl", "LibreOffice")
+COPY, BOOK = "", " in the book itself"
 WRONG = 123456.789  # what no cell of a book comes to
 BESIDE = {  # what a book may hold beside cells: a pattern of part names, or of what stands in certain parts
     "charts": (r"xl/charts/chart\d*\.xml|Object \d+/content\.xml", r""),
@@ -61,7 +64,7 @@ class Shown:
     same: int  # parts with the same bytes
     faults: list[str]
     equal: int  # cells whose values agree with the recalculated ones, as this library reads them
-    opened: dict[str, tuple[int, int]]  # by other programs: cells that agree, cells read
+    opened: dict[tuple[str, str], tuple[int, int]]  # by other programs: cells that agree, cells read
 
 
 def run(folder: Path, parts: bool) -> int:
@@ -77,7 +80,9 @@ def run(folder: Path, parts: bool) -> int:
                 print(f"{path.name}: refused: {refusal}")
                 wrong += 1
                 continue
-            opened = ", ".join(f"{name} {equal:,} of {read:,}" for name, (equal, read) in shown.opened.items())
+            opened = ", ".join(
+                f"{program} {equal:,} of {read:,}{file}" for (program, file), (equal, read) in shown.opened.items()
+            )
             print(
                 f"{path.name}: parts {shown.same} + {len(shown.changed)}; {shown.cells:,}, {shown.kept:,} kept; "
                 f"equal {shown.equal:,}; {opened}; {beside(path)}"
@@ -99,7 +104,32 @@ def written_twice(path: Path, place: Path, soffice: str | None) -> Shown:
     write_values(path, replace(truth, cells=wrong), spoiled)
     again = recalculate(spoiled, seed=1)
     write_values(spoiled, again, out)
-    before, after = contents(path), contents(out)
+    before = contents(path)
+    changed, faults = compared(path, before, contents(out), truth)
+    expected = {(c.sheet, c.address): c.value for c in truth.cells if c.status in WRITTEN}
+    copy = {s.name: s.values for s in read_book(out, Limits()).sheets}
+    moving = {(c.sheet, c.address) for c in truth.cells if c.status.value == "volatile"}
+    equal = sum(
+        key in moving
+        or any(agree(copy[key[0]].get(place_of(key[1])), v, Tolerance()) for v in (value, as_saved(value)))
+        for key, value in expected.items()
+    )
+    if equal != len(expected):
+        faults.append(f"{len(expected) - equal:,} values are not the recalculated ones")
+    checked = {key: value for key, value in expected.items() if key not in moving}
+    opened = as_others_read(path, out, checked, soffice, place)
+    for name in PROGRAMS:
+        if (name, BOOK) in opened and opened[name, COPY][0] < opened[name, BOOK][0]:
+            faults.append(f"{name} does not read all values")
+    return Shown(
+        len(truth.cells), len(truth.cells) - len(expected), changed, len(before) - len(changed), faults, equal, opened
+    )
+
+
+def compared(
+    path: Path, before: Mapping[str, bytes], after: Mapping[str, bytes], truth: Recalculation
+) -> tuple[dict[str, tuple[int, int]], list[str]]:
+    """The parts that differ, as `Shown.changed` has them, and what is wrong with any part."""
     faults = []
     if list(before) != list(after):
         faults.append(f"parts are missing, new or in another order: {sorted(set(before) ^ set(after))}")
@@ -115,29 +145,28 @@ def written_twice(path: Path, place: Path, soffice: str | None) -> Shown:
             if name not in sheets:
                 faults.append(f"{name} differs")
             elif name in after and without_values(before[name], formulas) != without_values(after[name], formulas):
-                faults.append(f"{name} differs in more than values")
-    expected = {(c.sheet, c.address): c.value for c in truth.cells if c.status in WRITTEN}
-    copy = {s.name: s.values for s in read_book(out, Limits()).sheets}
-    moving = {(c.sheet, c.address) for c in truth.cells if c.status.value == "volatile"}
-    equal = sum(
-        (key in moving) or agree(copy[key[0]].get(place_of(key[1])), as_saved(value), Tolerance())
-        for key, value in expected.items()
-    )
-    if equal != len(expected):
-        faults.append(f"{len(expected) - equal:,} values are not the recalculated ones")
+                faults.append(f"{name} differs in more than values, or a spill fills other cells")
+    return changed, faults
+
+
+def as_others_read(
+    book: Path, copy: Path, expected: Mapping[tuple[str, str], Scalar], soffice: str | None, place: Path
+) -> dict[tuple[str, str], tuple[int, int]]:
+    """The cells that openpyxl and LibreOffice read as expected, by program and file.
+
+    They are asked for the book itself where they read other values in the copy: LibreOffice recalculates some cells as
+    it opens a book, and openpyxl leaves control characters escaped.
+    """
     opened = {}
-    checked = {key: value for key, value in expected.items() if key not in moving}
-    if path.suffix.lower() != ".ods":
-        opened["openpyxl"] = as_read(out, checked)
-    if soffice:
-        opened["LibreOffice"] = read = as_libreoffice_reads(soffice, out, checked, place / "copy")
-        if read[0] < read[1]:  # it recalculates some cells as it opens a book, so that they differ in the book, too
-            opened["LibreOffice the book itself"] = own = as_libreoffice_reads(soffice, path, checked, place / "book")
-            if read[0] < own[0]:
-                faults.append("LibreOffice does not read all values")
-    return Shown(
-        len(truth.cells), len(truth.cells) - len(expected), changed, len(before) - len(changed), faults, equal, opened
-    )
+    for program in PROGRAMS:
+        for file, path in ((COPY, copy), (BOOK, book)):
+            if program == "openpyxl" and path.suffix.lower() != ".ods":
+                opened[program, file] = as_read(path, expected)
+            elif program == "LibreOffice" and soffice:
+                opened[program, file] = as_libreoffice_reads(soffice, path, expected, place / (file.strip() or "copy"))
+            if opened.get((program, file), (0, 0))[0] == len(expected):
+                break
+    return opened
 
 
 def contents(path: Path) -> dict[str, bytes]:
