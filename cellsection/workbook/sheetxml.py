@@ -21,7 +21,7 @@ from cellsection.workbook.splice import Edit, Span, as_utf8, name_of, opened, re
 from cellsection.workbook.values import Scalar
 from cellsection.workbook.xlsxvalues import saved_form
 
-__all__ = ["Sheet", "sheet_with_values"]
+__all__ = ["Sheet", "sheet_with_values", "with_values_anywhere"]
 
 
 @dataclass(frozen=True, slots=True)

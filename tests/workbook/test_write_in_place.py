@@ -5,19 +5,24 @@ from __future__ import annotations
 import stat
 import zipfile
 from pathlib import Path
+from tempfile import TemporaryDirectory
 
 import pytest
+from hypothesis import given
+from hypothesis import strategies as some
 
 from cellsection.errors import WorkbookError
-from cellsection.workbook.book import Limits, Position
+from cellsection.workbook.book import Limits, Position, column_letters
 from cellsection.workbook.package import Package
+from cellsection.workbook.plaincells import with_plain_values
 from cellsection.workbook.reader import read_book
 from cellsection.workbook.recalculate import recalculate
 from cellsection.workbook.results import FormulaCell, Recalculation, Status
-from cellsection.workbook.sheetxml import Sheet, sheet_with_values
+from cellsection.workbook.sheetxml import Sheet, sheet_with_values, with_values_anywhere
 from cellsection.workbook.values import ErrorValue, Scalar
 from cellsection.workbook.write import Written, write_values
-from tests.workbook.small import MAIN, parts_of, saved, zipped
+from cellsection.workbook.xlsxvalues import saved_form
+from tests.workbook.small import MAIN, Cell, parts_of, saved, zipped
 
 SHEET = "xl/worksheets/sheet1.xml"
 
@@ -49,12 +54,48 @@ F = "<f>A1</f>"
         (f'<c r="B7">{F}<v>1</v></c>', "\r_x0041_", f'<c r="B7" t="str">{F}<v>_x000D__x005F_x0041_</v></c>'),
         (f'<c r="B7">{F}<v>1</v></c>', None, f'<c r="B7">{F}</c>'),
         (f'<c r="B7">{F}<v>1</v><extLst/></c>', 2.0, f'<c r="B7">{F}<v>2</v><extLst/></c>'),
+        (f'<c r="B7" t="s">{F}<v>3</v></c>', "web", f'<c r="B7" t="str">{F}<v>web</v></c>'),
+        (f'<c r="B7" t="d">{F}<v>2024-03-01</v></c>', 45353.0, f'<c r="B7">{F}<v>45353</v></c>'),
+        ('<c r="B7"><f t="shared" si="0"/><v>1</v></c>', 2.0, '<c r="B7"><f t="shared" si="0"/><v>2</v></c>'),
+        (f'<c r="B7">{F}<v>1</v></c>', 0.1 + 0.2, f'<c r="B7">{F}<v>0.30000000000000004</v></c>'),
+        (f'<c r="B7">{F}<v>1</v></c>', 123456789012345680.0, f'<c r="B7">{F}<v>1.2345678901234568e+17</v></c>'),
+        (f'<c r="B7" t="str">{F}<v xml:space="preserve"> a</v></c>', "", f'<c r="B7" t="str">{F}<v></v></c>'),
         ('<c r="B7" t="inlineStr"><f/><is><t>a</t></is></c>', "b", '<c r="B7" t="str"><f/><v>b</v></c>'),
     ],
 )
-def test_only_the_value_and_its_kind_change_in_a_cell(before: str, value: Scalar, after: str) -> None:
-    around = '<row r="7" ht="12.8"><c r="A7" s="1"><v>1</v></c><!-- a note -->{}<c r="C7"/></row>\n<row r="9"/>'
+@pytest.mark.parametrize("note", ["", "<!-- a note -->"], ids=["plain", "careful"])
+def test_only_the_value_and_its_kind_change_in_a_cell(before: str, value: Scalar, after: str, note: str) -> None:
+    around = f'<row r="7" ht="12.8"><c r="A7" s="1"><v>1</v></c>{note}{{}}<c r="C7"/></row>\n<row r="9"/>'
     assert written(sheet(around.format(before)), {(7, 2): value}) == sheet(around.format(after))
+
+
+SCALARS = some.one_of(
+    some.floats(allow_nan=False, allow_infinity=False),
+    some.text(max_size=12),
+    some.booleans(),
+    some.sampled_from([ErrorValue("#N/A"), ErrorValue("#CALC!"), None]),
+)
+
+
+@given(some.lists(some.tuples(some.booleans(), SCALARS, SCALARS), min_size=1, max_size=6))
+def test_the_fast_and_the_careful_way_write_the_same_and_it_is_read_back(
+    cells: list[tuple[bool, Scalar, Scalar]],
+) -> None:
+    values: dict[Position, Scalar] = {(1, k): new for k, (wanted, _, new) in enumerate(cells, start=1) if wanted}
+    rows = ""
+    for k, (_, old, _) in enumerate(cells, start=1):
+        kind, v = saved_form("" if old is None else old, b"", {})
+        rows += f'<c r="{column_letters(k)}1"{kind.decode()}>{F}{v.decode()}</c>'
+    data = sheet(f'<row r="1">{rows}</row>').encode()
+    plain = with_plain_values(data, values, {"#CALC!": "1"})
+    assert plain is not None
+    assert plain == with_values_anywhere(data, Sheet(values, rich={"#CALC!": "1"}), "book.xlsx")
+    with TemporaryDirectory() as folder:
+        parts = {**parts_of({"S": {}}, {}), SHEET: plain.decode()}
+        read = read_book(zipped(Path(folder, "book.xlsx"), parts), Limits()).sheets[0].values
+    for place, value in values.items():
+        richer = value == ErrorValue("#CALC!")  # which another part would hold
+        assert read.get(place) == (ErrorValue("#VALUE!") if richer else value)
 
 
 AREA = '<f t="array" ref="B2:C4">A1</f>'
@@ -103,6 +144,17 @@ def test_a_value_without_room_in_the_file_is_refused() -> None:
     rows = '<row r="1"><c r="A1" cm="1"><f t="array" ref="A1:A2">B1</f></c></row>'
     with pytest.raises(WorkbookError, match="outgrown"):
         written(sheet(rows), {(3, 1): 1.0})
+
+
+def test_the_cells_of_a_data_table_are_written(tmp_path: Path) -> None:
+    cells: dict[str, Cell] = {
+        "A1": 1.0, "B1": "<f>A1*10</f><v>0</v>", "A2": 2.0, "A3": 3.0,
+        "B2": '<f t="dataTable" ref="B2:B3" dt2D="0" dtr="0" r1="A1"/><v>0</v>', "B3": "<v>0</v>",
+    }  # fmt: skip
+    path, out = saved(tmp_path, {"S": cells}), tmp_path / "out.xlsx"
+    write_values(path, recalculate(path), out)
+    values = read_book(out, Limits()).sheets[0].values
+    assert [values[place] for place in ((1, 2), (2, 2), (3, 2))] == [10, 20, 30]  # ten times 1, 2 and 3
 
 
 def new_values(path: Path, values: dict[str, Scalar], sheet_name: str = "S") -> Recalculation:
