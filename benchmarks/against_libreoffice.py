@@ -16,7 +16,7 @@ from typing import TYPE_CHECKING
 if TYPE_CHECKING:
     from collections.abc import Sequence
 
-__all__ = ["run"]
+__all__ = ["Measurement", "measured", "run"]
 
 
 @dataclass(frozen=True, slots=True)
@@ -42,24 +42,24 @@ def run(books: Sequence[Path], rounds: int) -> int:
         checking = [sys.executable, "-m", "cellsection", "check"]
         print(f"{'book':32} {'':10} {'median s':>9} {'fastest s':>10} {'peak MB':>8}   ({rounds} rounds each, in turn)")
         for book in books:
-            measured: dict[str, list[Measurement]] = {"check": [], "LibreOffice": []}
-            _measure([*checking, str(book)])
-            _measure([*converting, str(book)])
+            found: dict[str, list[Measurement]] = {"check": [], "LibreOffice": []}
+            measured([*checking, str(book)])
+            measured([*converting, str(book)])
             for _ in range(rounds):
-                measured["check"].append(_measure([*checking, str(book)]))
-                measured["LibreOffice"].append(_measure([*converting, str(book)]))
-            for name, met in measured.items():
+                found["check"].append(measured([*checking, str(book)]))
+                found["LibreOffice"].append(measured([*converting, str(book)]))
+            for name, met in found.items():
                 times = [each.seconds for each in met]
                 peak = max(each.megabytes for each in met)
                 print(f"{book.name:32} {name:10} {statistics.median(times):9.3f} {min(times):10.3f} {peak:8.0f}")
-            codes = {name: sorted({each.code for each in met}) for name, met in measured.items()}
+            codes = {name: sorted({each.code for each in met}) for name, met in found.items()}
             failed |= codes["LibreOffice"] != [0] or 3 in codes["check"]
-            check, office = (statistics.median(each.seconds for each in met) for met in measured.values())
+            check, office = (statistics.median(each.seconds for each in met) for met in found.values())
             print(f"{'':32} check takes {check / office:.2f} of LibreOffice's time; exit codes {codes}")
     return int(failed)
 
 
-def _measure(command: Sequence[str]) -> Measurement:
+def measured(command: Sequence[str]) -> Measurement:
     """Run a command to its end. wait4 tells the memory of this process alone, not the peak of all before it.
 
     Python keeps its compiled modules, as it does where it is not told otherwise: the first, unmeasured run makes them.

@@ -92,20 +92,10 @@ def check_book(
 def examine(book: Recalculation, tolerance: Tolerance = STANDARD) -> Report:
     """The report on a recalculated book."""
     examination = _Examination(tolerance)
-    alike = 0
-    for cell in book.cells:
-        # Nearly every cell of a sound book: recalculated to the very value saved, and nothing else to say of it.
-        if (
-            cell.value == cell.saved
-            and cell.value.__class__ is cell.saved.__class__ is not ErrorValue
-            and cell.status is Status.RECALCULATED
-            and cell.has_saved
-            and not cell.notes
-            and cell.call[:3].upper() != "CS_"
-        ):
-            alike += 1
-        else:
-            examination.take(cell)
+    apart = book.apart()
+    alike = len(book.cells) - len(apart)  # nearly all of a sound book
+    for cell in apart:
+        examination.take(cell)
     examination.tally.cells += alike
     examination.tally.hold += alike
     return Report(
@@ -218,7 +208,7 @@ class _Examination:
     def _error_findings(self, book: Recalculation) -> list[Finding]:
         if not self.errors:
             return []
-        formulas = {key: cell for cell in book.cells if (key := (cell.sheet, cell.address)) in self.errors}
+        formulas = {key: cell for cell in book.apart() if (key := (cell.sheet, cell.address)) in self.errors}
         by_cause: dict[tuple[str, object], list[tuple[str, str]]] = defaultdict(list)
         for origin, met in self.errors.items():
             value = met[0][0].value

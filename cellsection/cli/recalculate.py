@@ -81,7 +81,7 @@ def recalculate(
         click.get_current_context().exit(UNREADABLE)
     except OSError as failure:
         raise Refusal(f"{out} cannot be written ({failure.strerror or failure}). Check the folder.") from None
-    held = [cell for cell in recalculated.cells if not _computed(cell)]
+    held = [cell for cell in recalculated.apart() if not _computed(cell)]
     state = click.style("recalculated in part" if held else "recalculated", fg=None if held else "green", bold=True)
     click.echo(f"{out}: {state}")
     for line in _lines(recalculated, held, written, every=every):
@@ -108,7 +108,8 @@ def _lines(recalculated: Recalculation, held: list[FormulaCell], written: Writte
     from cellsection.workbook.write import differs
 
     cells = recalculated.cells
-    changed = [cell for cell in cells if _computed(cell) and differs(cell)]
+    apart = recalculated.apart()
+    changed = [cell for cell in apart if _computed(cell) and differs(cell)]
     same = len(cells) - len(held) - len(changed)
     tally = [f"{len(changed):,} changed" if changed else "none changed"]
     if same and changed:
@@ -125,7 +126,7 @@ def _lines(recalculated: Recalculation, held: list[FormulaCell], written: Writte
     if fresh:
         yield f"{counted(len(fresh), 'cell')} had no saved value: {places_in_words(fresh, every=every)}"
     yield from _reasons(held, every=every)
-    moving = [(cell.sheet, cell.address) for cell in cells if cell.status is Status.VOLATILE]
+    moving = [(cell.sheet, cell.address) for cell in apart if cell.status is Status.VOLATILE]
     if moving:
         what = counted(len(moving), "cell changes", "cells change")
         where = places_in_words(moving, every=every)

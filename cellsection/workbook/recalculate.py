@@ -32,7 +32,7 @@ from cellsection.workbook.machine import (
     TimeUp,
     Unsupported,
 )
-from cellsection.workbook.outcome import formula_cells
+from cellsection.workbook.outcome import FormulaCells
 from cellsection.workbook.relative import Key, Pattern, relative_key
 from cellsection.workbook.results import Recalculation, Status
 from cellsection.workbook.values import ErrorValue
@@ -90,8 +90,7 @@ def recalculated(
             if not driver.grown:
                 break
             spills |= driver.grown  # cells there may have been read as blank before: begin again, knowing better
-        cells = [cell for index in range(len(book.sheets)) for cell in formula_cells(driver, index)]
-    return Recalculation(book.path, tuple(sheet.name for sheet in book.sheets), cells, list(book.notes))
+    return Recalculation(book.path, tuple(sheet.name for sheet in book.sheets), FormulaCells(driver), list(book.notes))
 
 
 @contextmanager

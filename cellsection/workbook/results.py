@@ -7,7 +7,7 @@ from enum import Enum
 from typing import TYPE_CHECKING
 
 if TYPE_CHECKING:
-    from collections.abc import Callable
+    from collections.abc import Callable, Sequence
 
     from cellsection.workbook.book import Bounds
     from cellsection.workbook.values import Array, Scalar
@@ -64,5 +64,14 @@ class Recalculation:
 
     path: str
     sheets: tuple[str, ...]
-    cells: list[FormulaCell]
+    cells: Sequence[FormulaCell]
     notes: list[str] = field(default_factory=list)  # about the book: iterative calculation asked for, signature, ...
+
+    def apart(self) -> Sequence[FormulaCell]:
+        """The cells without those that are recalculated to the very value saved and have nothing else to be said of.
+
+        All others are among them: errors, cells without a saved value, of array formulas, with a note, and acceptance
+        checks. Of a large sound book they are few, and the rest need not be made.
+        """
+        made = getattr(self.cells, "apart", None)
+        return self.cells if made is None else made()

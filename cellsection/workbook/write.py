@@ -159,7 +159,7 @@ def values_by_sheet(
     """The values to be written, and what each array formula fills, both by sheet and cell."""
     values: dict[str, dict[Position, Scalar]] = defaultdict(dict)
     areas: dict[str, dict[Position, Bounds]] = defaultdict(dict)
-    for cell in recalculation.cells:
+    for cell in recalculation.apart():
         if cell.status in WRITTEN:
             if differs(cell):
                 values[cell.sheet][position_of(cell.address)] = cell.value
