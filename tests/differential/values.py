@@ -11,7 +11,7 @@ if TYPE_CHECKING:
 
 __all__ = ["AREAS", "MILD", "ODD", "number", "typical"]
 
-WORDS = ("bolt", "Plate", "weld", "HEB 200", "girder", "flange", "web", "a", "", "  two  blanks ", "Ärmel", "5", "it's")
+WORDS = ("bolt", "Plate", "weld", "HEB 200", "girder", "flange", "web", "a", "  two  blanks ", "Ärmel", "5", "it's")
 ERRORS = tuple(ErrorValue(code) for code in ("#DIV/0!", "#N/A", "#VALUE!", "#NUM!", "#REF!", "#NAME?", "#NULL!"))
 CHOICES: dict[str, tuple[Scalar, ...]] = {
     "small": (0.0, 1.0, 1.0, 2.0, 2.0, 3.0, 3.0, 4.0, 5.0, 7.0, 10.0, -1.0, -2.0, 1.5, 2.9),

@@ -287,6 +287,8 @@ def networkdays(context: Context, start: float, end: float, holidays: Any = None
 
 @builtin("NETWORKDAYS.INTL", "context number number value? range?")
 def networkdays_intl(context: Context, start: float, end: float, weekend: Any = None, holidays: Any = None) -> float:
+    if weekend == "1111111":  # "using 1111111 will always return 0"; WORKDAY.INTL refuses it
+        return 0.0
     free = free_days(weekend)
     return float(work_days(math.floor(start), math.floor(end), free, holidays_of(holidays), context.date1904))
 

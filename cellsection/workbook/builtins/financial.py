@@ -73,10 +73,11 @@ def solved(f: Callable[[float], float], guess: float) -> float:
         if new <= -1:
             new = (x - 1) / 2
         if abs(new - x) <= 1e-15 * max(abs(new), 1e-2):
-            return new if new > -1 + 1e-9 else fail(NUM)  # creeping up to the pole at -1 is no root
+            # Creeping up to the pole at -1, or away to where the flows are worth nothing, is no root.
+            return new if -1 + 1e-9 < new < 1e9 else fail(NUM)
         x = new
     y = f(x)
-    return x if math.isfinite(y) and abs(y) < 1e-7 else fail(NUM)
+    return x if abs(x) < 1e9 and math.isfinite(y) and abs(y) < 1e-7 else fail(NUM)
 
 
 @builtin("RATE", "number number number number? number? number?")

@@ -7,7 +7,7 @@ from typing import Any
 
 from cellsection.workbook.builtins.mathematics import fail
 from cellsection.workbook.builtins.registry import Context, builtin
-from cellsection.workbook.builtins.traits import cells_of, numbers
+from cellsection.workbook.builtins.traits import cells_of, is_area, numbers
 from cellsection.workbook.coercion import NUM, VALUE
 from cellsection.workbook.values import Scalar
 
@@ -19,7 +19,9 @@ ROMAN = (
 
 
 def naturals(arguments: Any) -> list[int]:
-    """Arguments as whole numbers from 0."""
+    """Arguments as whole numbers from 0; text in a cell is #VALUE!, as the application's reference says."""
+    if any(isinstance(cell, str) for argument in arguments if is_area(argument) for cell in cells_of(argument)):
+        fail(VALUE)
     found = [int(x) for x in numbers(arguments)]
     if any(x < 0 for x in found):
         fail(NUM)
@@ -133,7 +135,7 @@ def from_base(text: str, radix: int) -> float:
 def to_base(n: float, radix: int, places: float | None) -> str:
     """A whole number in another base, negative ones as complements of ten digits."""
     bits = {2: 10, 8: 30, 16: 40}[radix]
-    value = int(n) if n >= 0 else math.floor(n)
+    value = int(n)  # "if number is not an integer, it is truncated"
     if not -(2 ** (bits - 1)) <= value < 2 ** (bits - 1):
         fail(NUM)
     text = format(value % 2**bits, {2: "b", 8: "o", 16: "X"}[radix])
