@@ -188,7 +188,7 @@ class Writer:
         pick = chance.random()
         left = self.operand(depth)
         if pick < 0.1:
-            return Piece("operator", f"-{left.text}", "unary -", (left,))
+            return Piece("operator", f"-{left.text}", "negation", (left,))
         if pick < 0.2:
             return Piece("operator", f"{left.text}%", "%", (left,))
         sign, right = chance.choice(OPERATORS), self.operand(depth)

@@ -99,11 +99,11 @@ def countif(area: Any, wanted: Scalar) -> float:
     return found
 
 
-@builtin("COUNTIFS", "range any range*")
+@builtin("COUNTIFS", "range any range* any*")
 def countifs(area: Any, wanted: Scalar, *rest: Any) -> float:
     if len(rest) % 2:
         return fail(VALUE)
-    pairs = (area, wanted, *criteria(rest, 0))
+    pairs = (area, wanted, *rest)
     found = float(sum(1 for _ in places(pairs)))
     if all(criterion(each)(None) for each in pairs[1::2]):
         rows, columns = extent(area)
@@ -112,30 +112,22 @@ def countifs(area: Any, wanted: Scalar, *rest: Any) -> float:
     return found
 
 
-def criteria(arguments: tuple[Any, ...], first: int) -> list[Any]:
-    """Arguments with every second one, the criteria, read as a single value."""
-    return [
-        each.value(1, 1) if k % 2 != first and hasattr(each, "value") and hasattr(each, "shape") else each
-        for k, each in enumerate(arguments)
-    ]
-
-
-@builtin("SUMIFS", "range range any range*")
+@builtin("SUMIFS", "range range any range* any*")
 def sumifs(values: Any, area: Any, wanted: Scalar, *rest: Any) -> float:
-    return total(checked(values, (area, wanted, *criteria(rest, 0))))
+    return total(checked(values, (area, wanted, *rest)))
 
 
-@builtin("AVERAGEIFS", "range range any range*")
+@builtin("AVERAGEIFS", "range range any range* any*")
 def averageifs(values: Any, area: Any, wanted: Scalar, *rest: Any) -> float:
-    found = list(checked(values, (area, wanted, *criteria(rest, 0))))
+    found = list(checked(values, (area, wanted, *rest)))
     return total(found) / len(found) if found else fail(DIV0)
 
 
-@builtin("MAXIFS", "range range any range*")
+@builtin("MAXIFS", "range range any range* any*")
 def maxifs(values: Any, area: Any, wanted: Scalar, *rest: Any) -> float:
-    return max(checked(values, (area, wanted, *criteria(rest, 0))), default=0.0)
+    return max(checked(values, (area, wanted, *rest)), default=0.0)
 
 
-@builtin("MINIFS", "range range any range*")
+@builtin("MINIFS", "range range any range* any*")
 def minifs(values: Any, area: Any, wanted: Scalar, *rest: Any) -> float:
-    return min(checked(values, (area, wanted, *criteria(rest, 0))), default=0.0)
+    return min(checked(values, (area, wanted, *rest)), default=0.0)

@@ -313,6 +313,8 @@ def t_test(a: Array, b: Array, tails: float, kind: float) -> float:
 @builtin("F.TEST FTEST", "array array")
 def f_test(a: Array, b: Array) -> float:
     x, y = list(numbers((a,))), list(numbers((b,)))
+    if not variance(x, True) or not variance(y, True):  # "if the variance of array1 or array2 is zero" (the reference)
+        return fail(DIV0)
     upper = stats().f.sf(variance(x, True) / variance(y, True), len(x) - 1, len(y) - 1)
     return finite(2 * min(upper, 1 - upper))
 

@@ -4,7 +4,7 @@
     def round_(x: float, digits: float) -> float: ...
 
 The words, one an argument (a `?` behind one: may be left out; the last may carry `*`, any number of them, or `+`, at
-least one):
+least one; the last two may both carry `*`, any number of such pairs):
 
     number text logical   a scalar, coerced as the application does; an error value is passed on without a call
     measure               a number, but a logical is #VALUE!: functions that once were the application's add-in
@@ -123,10 +123,12 @@ class Builtin:
     most: int | None  # None: any number
     context: bool = False
     volatile: Volatility = ""
+    repeats: int = 1  # how many of the last kinds take turns where there are more arguments than kinds
 
     def kind(self, index: int) -> str:
         """How argument number index, counted from 0, is taken."""
-        return self.kinds[min(index, len(self.kinds) - 1)]
+        last = len(self.kinds)
+        return self.kinds[index if index < last else last - self.repeats + (index - last) % self.repeats]
 
 
 BUILTINS: dict[str, Builtin] = {}
@@ -143,6 +145,7 @@ def builtin(name: str, arguments: str = "", *, volatile: Volatility = "") -> Cal
     least = sum(not word.endswith(("?", "*")) for word in words)
     most = None if words and words[-1].endswith(("*", "+")) else len(words)
     kinds = tuple(word.rstrip("?*+") for word in words)
+    repeats = max(1, sum(word.endswith("*") for word in words))
     if unknown := set(kinds) - KINDS:
         raise ValueError(f"{name}: no argument kind {sorted(unknown)}; choose from {sorted(KINDS)}")
 
@@ -150,7 +153,7 @@ def builtin(name: str, arguments: str = "", *, volatile: Volatility = "") -> Cal
         for each in name.split():
             if each in BUILTINS:
                 raise ValueError(f"{each} is declared twice")
-            BUILTINS[each] = Builtin(each, call, kinds, least, most, context, volatile)
+            BUILTINS[each] = Builtin(each, call, kinds, least, most, context, volatile, repeats)
         return call
 
     return declare

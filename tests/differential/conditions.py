@@ -1,0 +1,97 @@
+"""The conditions that records of known differences are made of: kinds of argument, and kinds of outcome."""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING
+
+from cellsection.workbook.values import ErrorValue, Scalar
+from tests.differential.expressions import Piece, kind_of, kinds_in
+from tests.differential.known import Condition
+
+if TYPE_CHECKING:
+    from collections.abc import Iterator
+
+    from tests.differential.comparison import Difference
+
+__all__ = [
+    "DIGITS", "EARLY", "ERROR_CONSTANT", "FRACTION", "LEFT_OUT", "MANY", "NUMBERS", "OURS_ONLY", "TEXTS",
+    "THEIRS_ONLY", "UNSORTED", "WORD", "has",
+]  # fmt: skip
+
+
+def has(*kinds: str) -> Condition:
+    """Some argument is of a kind, or an area or array among them holds one."""
+    wanted = frozenset(kinds)
+    return Condition(
+        f"an argument is or holds {' or '.join(kinds)}",
+        lambda d: any(kinds_in(each.value) & wanted for each in d.piece.arguments if each.form != "missing"),
+    )
+
+
+def scalars(difference: Difference) -> Iterator[Scalar]:
+    """The single values among the arguments, those of areas and arrays too."""
+    for each in difference.piece.arguments:
+        if isinstance(each.value, tuple):
+            yield from (cell for row in each.value for cell in row)
+        else:
+            yield each.value
+
+
+def numeric(value: Scalar) -> bool:
+    """Whether a value counts as a number (LibreOffice's logicals are numbers)."""
+    return not isinstance(value, str | ErrorValue)
+
+
+def ascending(piece: Piece) -> bool:
+    """Whether an area or array is sorted upwards and of nothing but numbers."""
+    values = [cell for row in piece.value for cell in row] if isinstance(piece.value, tuple) else []
+    return all(isinstance(a, float) and isinstance(b, float) and a <= b for a, b in zip(values, values[1:], strict=False))
+
+
+LEFT_OUT = Condition(
+    "an argument is written but empty, or a blank cell",
+    lambda d: any(each.form == "missing" or each.value is None for each in d.piece.arguments),
+)
+ERROR_CONSTANT = Condition(
+    "an array constant holds an error value, which LibreOffice refuses as Err:539",
+    lambda d: d.shown == "Err:539",
+)
+WORD = Condition(
+    'ours is #VALUE! and an argument is the text "TRUE" or another that spells no number',
+    lambda d: (
+        isinstance(d.ours, ErrorValue)
+        and d.ours.code == "#VALUE!"
+        and any(kind_of(each) == "text" for each in scalars(d))
+    ),
+)
+NUMBERS = Condition("both sides give a number", lambda d: numeric(d.ours) and numeric(d.theirs))
+DIGITS = Condition(
+    "the two numbers agree to 1 part in 10,000",
+    lambda d: (
+        numeric(d.ours)
+        and numeric(d.theirs)
+        and abs(float(d.ours or 0) - float(d.theirs or 0)) < 1e-4 * abs(float(d.theirs or 0))  # type: ignore[arg-type]
+    ),
+)
+TEXTS = Condition("both sides give text", lambda d: isinstance(d.ours, str) and isinstance(d.theirs, str))
+OURS_ONLY = Condition(
+    "LibreOffice gives an error, ours a value",
+    lambda d: isinstance(d.theirs, ErrorValue) and not isinstance(d.ours, ErrorValue),
+)
+THEIRS_ONLY = Condition(
+    "ours is an error, LibreOffice gives a value",
+    lambda d: isinstance(d.ours, ErrorValue) and not isinstance(d.theirs, ErrorValue),
+)
+EARLY = Condition(
+    "a day before 1 March 1900 (a serial number below 61, none or a negative one among them)",
+    lambda d: any(value is None or (isinstance(value, float) and value < 61) for value in scalars(d)),
+)
+FRACTION = Condition(
+    "an argument that is taken as whole has a fraction",
+    lambda d: any(isinstance(value, float) and value != int(value) for value in scalars(d)),
+)
+MANY = Condition("an array formula of more than one row", lambda d: d.array)
+UNSORTED = Condition(
+    "the area searched is not sorted upwards, or holds blanks",
+    lambda d: any(isinstance(each.value, tuple) and not ascending(each) for each in d.piece.arguments),
+)
