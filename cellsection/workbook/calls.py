@@ -132,7 +132,11 @@ def protected(machine: Machine, declared: Builtin, kinds: list[str]) -> Callable
         except (ArithmeticError, ValueError, TypeError, LookupError, AttributeError) as problem:
             # A fault of the builtin, not of the book: reported as what it is, never as a value.
             raise Unsupported(f"function {name} with these arguments ({problem})") from problem
-        return result if result.__class__ is bool or result.__class__ is str else given_back(result)
+        if result.__class__ is bool or result.__class__ is str:
+            return result
+        if result.__class__ is tuple and len(result) > 1 and result[0].__class__ is tuple:
+            machine.check_size(len(result) * len(result[0]))
+        return given_back(result)
 
     return work
 

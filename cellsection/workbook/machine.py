@@ -64,7 +64,7 @@ class Unsupported(Exception):  # noqa: N818 - a finding, not a fault of the prog
         self.construct = construct
 
 
-class TimeUp(Exception):  # noqa: N818 - a finding, not a fault of the program
+class TimeUp(BaseException):  # so that no function takes it for a fault of its own
     """The time allowed for a book is used up."""
 
 

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import gc
 import sys
+import time
 from collections.abc import Iterator
 from contextlib import contextmanager
 from datetime import datetime
@@ -35,6 +36,7 @@ from cellsection.workbook.machine import (
 from cellsection.workbook.outcome import FormulaCells
 from cellsection.workbook.relative import Key, Pattern, relative_key
 from cellsection.workbook.results import Recalculation, Status
+from cellsection.workbook.timelimit import time_limit
 from cellsection.workbook.values import ErrorValue
 from cellsection.workbook.whatif import data_table
 
@@ -83,9 +85,11 @@ def recalculated(
     """Recalculate a book that is already read; see recalculate."""
     limits = limits or Limits()
     spills: dict[Place, Bounds] = {}
+    deadline = time.monotonic() + limits.seconds
     with deep_stack(), uncollected():
         for _ in range(ROUNDS):
             driver = Driver(Machine(book, resolve, limits, spills, moment))
+            driver.machine.deadline = deadline
             driver.run()
             if not driver.grown:
                 break
@@ -133,18 +137,23 @@ class Driver:
 
     def run(self) -> None:
         """Compute all formula cells."""
-        machine = self.machine
         try:
-            for index in range(len(machine.book.sheets)):
-                store, formulas = machine.stores[index], machine.formulas[index]
-                for key, formula in formulas.items():
-                    if store[key] is PENDING:
-                        try:
-                            self.compute(index, key, formula)
-                        except Pending as hold:
-                            self.settle((index, key), hold)
+            with time_limit(self.machine.deadline):
+                self.compute_all()
         except TimeUp:
             self.give_up()
+
+    def compute_all(self) -> None:
+        """Compute the formula cells sheet by sheet, each with what it waits for."""
+        machine = self.machine
+        for index in range(len(machine.book.sheets)):
+            store, formulas = machine.stores[index], machine.formulas[index]
+            for key, formula in formulas.items():
+                if store[key] is PENDING:
+                    try:
+                        self.compute(index, key, formula)
+                    except Pending as hold:
+                        self.settle((index, key), hold)
 
     def settle(self, place: Place, hold: Pending) -> None:
         """Compute all that one cell waits for, and the cell itself."""
@@ -183,9 +192,11 @@ class Driver:
         for index, key in (*self.circles.heads, *self.circles.members):
             machine.settle_saved(index, key, Taint(Status.NOT_VERIFIED, reason))
         for index, formulas in enumerate(machine.formulas):
-            for key in formulas:
-                if machine.stores[index][key] is PENDING:
-                    machine.settle_saved(index, key, Taint(Status.NOT_VERIFIED, reason))
+            waiting = [key for key in formulas if machine.stores[index][key] is PENDING]
+            filled = machine.owners[index].items()  # an area may be filled in part
+            waiting += [owner for each, owner in filled if machine.stores[index].get(each) is PENDING]
+            for key in waiting:
+                machine.settle_saved(index, key, Taint(Status.NOT_VERIFIED, reason))
 
     def compute(self, index: int, key: int, formula: Formula) -> None:
         """Run one formula and keep what it gives. Raises Pending where it needs cells not computed yet."""

@@ -10,7 +10,7 @@ from typing import Any
 from cellsection.workbook.builtins.mathematics import rounded
 from cellsection.workbook.builtins.numberformat import formatted
 from cellsection.workbook.builtins.registry import Context, ErrorResult, builtin
-from cellsection.workbook.builtins.traits import cells_of, wildcard
+from cellsection.workbook.builtins.traits import Wildcard, cells_of
 from cellsection.workbook.coercion import CALC, NA, NUM, VALUE, number_of, text_number, text_of
 from cellsection.workbook.values import Array, ErrorValue, Scalar
 
@@ -166,8 +166,8 @@ def find(wanted: str, text: str, start: float = 1.0) -> Any:
 def search(wanted: str, text: str, start: float = 1.0) -> Any:
     if not 1 <= int(start) <= len(text) + 1:
         return VALUE
-    found = wildcard(wanted).search(text, int(start) - 1)
-    return float(found.start() + 1) if found else VALUE
+    place = Wildcard(wanted).place(text, int(start) - 1)
+    return VALUE if place is None else float(place + 1)
 
 
 @builtin("SUBSTITUTE", "text text text number?")
@@ -175,7 +175,9 @@ def substitute(text: str, old: str, new: str, number: float | None = None) -> st
     if not old:
         return text
     if number is None:
-        return checked(text.replace(old, new))
+        if len(text) + text.count(old) * (len(new) - len(old)) > LONGEST:
+            return fail_text(VALUE)
+        return text.replace(old, new)
     if number < 1:
         return fail_text(VALUE)
     place = -1

@@ -11,7 +11,8 @@ from cellsection.workbook.coercion import VALUE, compared, number_of, text_numbe
 from cellsection.workbook.values import Array, ErrorValue, Scalar
 
 __all__ = [
-    "array_of", "cells_of", "criterion", "flat", "is_area", "matcher", "numbers", "numbers_a", "stop_at", "whole", "wildcard",
+    "Wildcard", "array_of", "cells_of", "criterion", "flat", "is_area", "matcher", "numbers", "numbers_a",
+    "stop_at", "whole",
 ]  # fmt: skip
 
 
@@ -87,26 +88,53 @@ def numbers_a(arguments: Iterable[Any]) -> Iterator[float]:
             yield from numbers((argument,))
 
 
-def wildcard(pattern: str) -> re.Pattern[str]:
-    """* any text, ? any character, ~ takes the next one literally."""
-    parts = []
-    k = 0
-    while k < len(pattern):
-        c = pattern[k]
-        if c == "~":  # a last ~ stands for nothing
+class Wildcard:
+    """A text to look for in which * stands for any text, ? for any character, and ~ takes the next one literally.
+
+    The pieces between the stars are looked for one after the other, each from where the one before it ends: what they
+    meet first serves as well as anything later, so that nothing is ever tried twice, however many stars there are.
+    """
+
+    def __init__(self, pattern: str) -> None:
+        pieces, k = [""], 0
+        lengths = [0]
+        while k < len(pattern):
+            c = pattern[k]
+            if c == "*":
+                pieces.append("")
+                lengths.append(0)
+            else:
+                k += c == "~"
+                literal = pattern[k : k + 1]  # a last ~ stands for nothing
+                pieces[-1] += "." if c == "?" else re.escape(literal)
+                lengths[-1] += len(literal)
             k += 1
-            parts.append(re.escape(pattern[k : k + 1]))
-        else:
-            parts.append({"*": ".*", "?": "."}.get(c) or re.escape(c))
-        k += 1
-    return re.compile("".join(parts), re.IGNORECASE | re.DOTALL)
+        self.pieces = [re.compile(piece, re.IGNORECASE | re.DOTALL) for piece in pieces]
+        self.last = lengths[-1]
+
+    def whole(self, text: str) -> bool:
+        """Whether it is all of a text."""
+        if len(self.pieces) == 1:
+            return self.pieces[0].fullmatch(text) is not None
+        match = self.pieces[0].match(text)
+        for piece in self.pieces[1:-1]:
+            match = match and piece.search(text, match.end())
+        at = len(text) - self.last
+        return match is not None and match.end() <= at and self.pieces[-1].match(text, at) is not None
+
+    def place(self, text: str, start: int) -> int | None:
+        """Where it first stands in a text, from a place on."""
+        first = match = self.pieces[0].search(text, start)
+        for piece in self.pieces[1:]:
+            match = match and piece.search(text, match.end())
+        return first.start() if first and match else None
 
 
 def matcher(text: str) -> Callable[[Scalar], bool]:
     """Whether a cell's text is the given one, wildcards honoured."""
     if any(c in text for c in "*?~"):
-        pattern = wildcard(text)
-        return lambda cell: isinstance(cell, str) and pattern.fullmatch(cell) is not None
+        pattern = Wildcard(text)
+        return lambda cell: isinstance(cell, str) and pattern.whole(cell)
     folded = text.casefold()
     return lambda cell: isinstance(cell, str) and cell.casefold() == folded
 

@@ -1,0 +1,50 @@
+"""The time allowed for a book, kept even within one formula that does not come to an end.
+
+Between formulas, and at each step of a LAMBDA, the machine looks at the clock itself. A single function can still be
+busy for hours, in a product of two large matrices for example, and hundreds of functions that each look at the clock
+would be hundreds of places to forget it. So a thread waits for the deadline and then has the interpreter raise TimeUp
+in the thread that calculates, between two of its steps. A single step of a library in C is finished first.
+"""
+
+from __future__ import annotations
+
+import threading
+import time
+from collections.abc import Iterator
+from contextlib import contextmanager
+
+from cellsection.workbook.machine import TimeUp
+
+__all__ = ["time_limit"]
+
+
+@contextmanager
+def time_limit(deadline: float) -> Iterator[None]:
+    """Raise TimeUp inside, in this thread, once time.monotonic() passes the deadline; never after it."""
+    here, over, lock = threading.get_ident(), threading.Event(), threading.Lock()
+    raised = False
+
+    def wait() -> None:
+        nonlocal raised
+        if over.wait(min(max(deadline - time.monotonic(), 0.0), threading.TIMEOUT_MAX)):
+            return
+        with lock:
+            if not over.is_set():
+                raised = True
+                raise_in(here, TimeUp)
+
+    threading.Thread(target=wait, daemon=True, name="time limit of a book").start()
+    try:
+        yield
+    finally:
+        with lock:
+            over.set()
+        if raised:  # perhaps too late to have come out yet
+            raise_in(here, None)
+
+
+def raise_in(thread: int, what: type[BaseException] | None) -> None:
+    """Have an exception raised in a thread at its next step; None takes one back that is still to come."""
+    import ctypes  # needed by few books, and slow to load
+
+    ctypes.pythonapi.PyThreadState_SetAsyncExc(ctypes.c_ulong(thread), ctypes.py_object(what) if what else None)
