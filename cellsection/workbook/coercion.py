@@ -34,12 +34,13 @@ NULL, DIV0, VALUE, REF, NAME, NUM, NA = (
 )
 SPILL, CALC = ErrorValue("#SPILL!"), ErrorValue("#CALC!")
 
-PLAIN = re.compile(r"[+-]?(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?")
+# Possessive where digits or blanks follow one another, so that no text of any length is gone through again and again.
+PLAIN = re.compile(r"[+-]?(?:\d++\.?\d*+|\.\d++)(?:[eE][+-]?\d++)?")
 GROUPED = re.compile(
-    r"(?P<open>\()?(?P<sign>[+-])?\$?(?P<number>\d{1,3}(?:,\d{3})+(?:\.\d*)?|\d+\.?\d*(?:[eE][+-]?\d+)?|\.\d+)(?P<percent>%?)(?(open)\))"
+    r"(?P<open>\()?(?P<sign>[+-])?\$?(?P<number>\d{1,3}(?:,\d{3})+(?:\.\d*)?|\d++\.?\d*+(?:[eE][+-]?\d++)?|\.\d++)(?P<percent>%?)(?(open)\))"
 )
-ISO_DATE = re.compile(r"(\d{4})[-/](\d{1,2})[-/](\d{1,2})(?:[ T]+(.+))?")
-US_DATE = re.compile(r"(\d{1,2})/(\d{1,2})/(\d{4}|\d{2})(?:\s+(.+))?")
+ISO_DATE = re.compile(r"(\d{4})[-/](\d{1,2})[-/](\d{1,2})(?:[ T]++(.+))?")
+US_DATE = re.compile(r"(\d{1,2})/(\d{1,2})/(\d{4}|\d{2})(?:\s++(.+))?")
 WORD_DATE = re.compile(r"(\d{1,2})[- ]([A-Za-z]{3,9})[- ](\d{4}|\d{2})|([A-Za-z]{3,9}) (\d{1,2}), ?(\d{4})")
 CLOCK = re.compile(r"(\d{1,4}):(\d{1,2})(?::(\d{1,2}(?:\.\d*)?))?(?:\s*([AaPp])\.?[Mm]\.?)?")
 MONTHS = ("jan", "feb", "mar", "apr", "may", "jun", "jul", "aug", "sep", "oct", "nov", "dec")
@@ -65,20 +66,16 @@ def text_number(text: str) -> float | None:
     match = GROUPED.fullmatch(text)
     if match:
         number = float(match["number"].replace(",", "")) / (100 if match["percent"] else 1)
+        if not isfinite(number):
+            return None
         return -number if (match["sign"] == "-") != bool(match["open"]) else number
     return date_number(text)
 
 
 def date_number(text: str) -> float | None:
     """The serial number of a date, a time or both written as text."""
-    match = CLOCK.fullmatch(text)
-    if match:
-        hours, minutes, seconds = int(match[1]), int(match[2]), float(match[3] or 0)
-        if match[4]:
-            if not 1 <= hours <= 12:
-                return None
-            hours = hours % 12 + (12 if match[4] in "Pp" else 0)
-        return None if minutes > 59 or seconds >= 60 else (hours * 3600 + minutes * 60 + seconds) / 86400
+    if CLOCK.fullmatch(text):
+        return clock_number(text)
     if match := ISO_DATE.fullmatch(text):
         parts, clock = (int(match[1]), int(match[2]), int(match[3])), match[4]
     elif match := US_DATE.fullmatch(text):
@@ -91,8 +88,21 @@ def date_number(text: str) -> float | None:
     else:
         return None
     days = serial(*parts)
-    time = date_number(clock) if clock else 0.0
+    time = clock_number(clock) if clock else 0.0
     return None if days is None or time is None else days + time
+
+
+def clock_number(text: str) -> float | None:
+    """The part of a day that a time of day spells."""
+    match = CLOCK.fullmatch(text)
+    if match is None:
+        return None
+    hours, minutes, seconds = int(match[1]), int(match[2]), float(match[3] or 0)
+    if match[4]:
+        if not 1 <= hours <= 12:
+            return None
+        hours = hours % 12 + (12 if match[4] in "Pp" else 0)
+    return None if minutes > 59 or seconds >= 60 else (hours * 3600 + minutes * 60 + seconds) / 86400
 
 
 def full_year(text: str) -> int:

@@ -13,7 +13,7 @@ from cellsection.workbook.builtins.traits import cells_of
 from cellsection.workbook.coercion import DIV0, NUM, VALUE, number_text, text_of
 from cellsection.workbook.values import ErrorValue, Scalar
 
-DIGITS = r"(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?"
+DIGITS = r"(?:\d++\.?\d*+|\.\d++)(?:[eE][+-]?\d++)?"  # possessive: no digit is gone through twice
 IMAGINARY = re.compile(rf"(?P<imaginary>[+-]?(?:{DIGITS})?)(?P<unit>[ij])")
 FULL = re.compile(rf"(?P<real>[+-]?{DIGITS})(?:(?P<imaginary>[+-](?:{DIGITS})?)(?P<unit>[ij]))?")
 
