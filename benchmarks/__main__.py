@@ -4,6 +4,7 @@
     python -m benchmarks recalculation [--rounds N] [--most CELLS]
     python -m benchmarks books FOLDER
     python -m benchmarks written-books FOLDER [--parts]
+    python -m benchmarks differential [--cells N] [--seed N]
     python -m benchmarks fuzz [--minutes N] [--seed S] [--kept FOLDER]
 
 The first times `cellsection check` against a headless LibreOffice conversion of the same book, whole processes, in turn
@@ -48,7 +49,14 @@ def main() -> int:
     fuzz.add_argument("--minutes", type=float, default=1.0, help="how long (default 1)")
     fuzz.add_argument("--seed", type=int, default=1, help="what the trials are drawn from (default 1)")
     fuzz.add_argument("--kept", metavar="FOLDER", type=Path, default=Path("fuzz-cases"), help="where failing cases go")
+    against_each_other = commands.add_parser("differential", help="random workbooks here and in LibreOffice")
+    against_each_other.add_argument("--cells", type=int, default=20_000, help="formula cells compared (default 20,000)")
+    against_each_other.add_argument("--seed", type=int, default=1, help="of the first book (default 1)")
     chosen = parser.parse_args()
+    if chosen.command == "differential":
+        from benchmarks import differential
+
+        return differential.run(chosen.cells, chosen.seed)
     if chosen.command == "fuzz":
         from benchmarks import fuzz as trials
 

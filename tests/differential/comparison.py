@@ -12,7 +12,7 @@ from cellsection.workbook.recalculate import recalculate
 from cellsection.workbook.results import FormulaCell, Status
 from cellsection.workbook.values import ErrorValue, Scalar
 from tests.differential.expressions import Piece, shape
-from tests.differential.generator import Case, GeneratedBook, generate
+from tests.differential.generator import GeneratedBook, generate
 from tests.differential.office import calculated
 from tests.differential.written import letters, write_book
 
@@ -62,7 +62,7 @@ class Outcome:
 
 
 def agree(ours: Scalar, theirs: Scalar) -> bool:
-    """Whether two values are the same: numbers to 1e-9, errors by kind; LibreOffice's logicals are the numbers 1 and 0."""
+    """Whether two values are the same: numbers to 1e-9, errors by code; a logical is also the number 1 or 0."""
     if isinstance(ours, ErrorValue) or isinstance(theirs, ErrorValue):
         return ours == theirs
     if isinstance(ours, str) or isinstance(theirs, str):

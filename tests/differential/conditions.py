@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from itertools import pairwise
 from typing import TYPE_CHECKING
 
 from cellsection.workbook.values import ErrorValue, Scalar
@@ -14,8 +15,8 @@ if TYPE_CHECKING:
     from tests.differential.comparison import Difference
 
 __all__ = [
-    "DIGITS", "EARLY", "ERROR_CONSTANT", "FRACTION", "LEFT_OUT", "MANY", "NUMBERS", "OURS_ONLY", "TEXTS",
-    "THEIRS_ONLY", "UNSORTED", "WORD", "has",
+    "DIGITS", "EARLY", "ERROR_CONSTANT", "FRACTION", "LEFT_OUT", "MANY", "NUMBERS", "OURS_ONLY", "PASSED_ON",
+    "SEVERAL", "TEXTS", "THEIRS_ONLY", "UNSORTED", "WORD", "has",
 ]  # fmt: skip
 
 
@@ -45,7 +46,7 @@ def numeric(value: Scalar) -> bool:
 def ascending(piece: Piece) -> bool:
     """Whether an area or array is sorted upwards and of nothing but numbers."""
     values = [cell for row in piece.value for cell in row] if isinstance(piece.value, tuple) else []
-    return all(isinstance(a, float) and isinstance(b, float) and a <= b for a, b in zip(values, values[1:], strict=False))
+    return all(isinstance(a, float) and isinstance(b, float) and a <= b for a, b in pairwise(values))
 
 
 LEFT_OUT = Condition(
@@ -94,4 +95,27 @@ MANY = Condition("an array formula of more than one row", lambda d: d.array)
 UNSORTED = Condition(
     "the area searched is not sorted upwards, or holds blanks",
     lambda d: any(isinstance(each.value, tuple) and not ascending(each) for each in d.piece.arguments),
+)
+
+
+def unusable(piece: Piece) -> bool:
+    """Whether an argument holds an error, or text (which may stand where a number is wanted)."""
+    return bool(kinds_in(piece.value) & {"error", "text", "empty text"})
+
+
+SEVERAL = Condition(
+    "both sides give an error, and several arguments, or cells of one, are errors or text: another one is met first",
+    lambda d: (
+        isinstance(d.ours, ErrorValue)
+        and isinstance(d.theirs, ErrorValue)
+        and (
+            sum(unusable(each) for each in d.piece.arguments) > 1
+            or any(isinstance(each.value, tuple) and unusable(each) for each in d.piece.arguments)
+            or any(each.head for each in d.piece.arguments)
+        )
+    ),
+)
+PASSED_ON = Condition(
+    "an argument is or holds an error that one side passes on and the other counts, matches or skips",
+    lambda d: any("error" in kinds_in(each.value) for each in d.piece.arguments),
 )

@@ -13,7 +13,7 @@ from typing import TYPE_CHECKING
 
 from cellsection.workbook.values import Array, ErrorValue, Scalar
 from tests.differential.expressions import Piece
-from tests.differential.functions import PREFIXED, arguments_of, names
+from tests.differential.functions import PREFIXED, arguments_of, names, words_of
 from tests.differential.values import AREAS, ERRORS, MILD, ODD, WORDS, number, typical
 from tests.differential.written import ArrayText, FormulaText, Sheets, WrittenTable, letters
 
@@ -23,9 +23,12 @@ if TYPE_CHECKING:
 __all__ = ["Case", "GeneratedBook", "generate"]
 
 ROWS = 20
-REFERENCES = frozenset(  # functions whose areas the application accepts as references only
-    """COUNTIF COUNTIFS SUMIF SUMIFS AVERAGEIF AVERAGEIFS MAXIFS MINIFS RANK RANK.EQ RANK.AVG SUBTOTAL COUNTBLANK OFFSET
-    ISFORMULA FORMULATEXT AREAS SHEETS""".split()
+# Functions whose areas the application accepts as references only.
+REFERENCES = words_of(
+    """
+    COUNTIF COUNTIFS SUMIF SUMIFS AVERAGEIF AVERAGEIFS MAXIFS MINIFS RANK RANK.EQ RANK.AVG SUBTOTAL COUNTBLANK
+    OFFSET ISFORMULA FORMULATEXT AREAS SHEETS
+    """
 )
 OPERATORS = ("+", "-", "*", "/", "^", "&", "=", "<>", "<", ">", "<=", ">=")
 NAMED = {"Steel": "Data!$B$1:$B$20", "Factor": "Data!$C$1", "Half": "1/2", "Twice": "Data!$G$2*2"}
@@ -100,24 +103,26 @@ def place(book: GeneratedBook, piece: Piece, array: bool) -> int:
 
 
 def constants(chance: Random) -> dict[tuple[int, int], Scalar]:
-    """The columns of Data: numbers, positive, whole, words, mixed, dates, fractions, gaps, logicals, digits, errors, sorted."""
+    """The columns of Data: numbers, positive and whole ones, words, mixed, dates, fractions, with gaps, logicals,
+    numbers as text, with errors, sorted.
+    """
     ascending = sorted(round(chance.uniform(-50, 150), 1) for _ in range(ROWS))
     mixed: tuple[Callable[[], Scalar], ...] = (
         lambda: number(chance), lambda: chance.choice(WORDS), lambda: None, lambda: chance.random() < 0.5,
         lambda: number(chance),
     )  # fmt: skip
     columns: tuple[Callable[[int], Scalar], ...] = (
-        lambda row: number(chance),
-        lambda row: typical("positive", chance),
-        lambda row: float(chance.randint(0, 9)),
-        lambda row: chance.choice(WORDS),
-        lambda row: chance.choice(mixed)(),
-        lambda row: float(chance.randint(36_526, 47_000)),
-        lambda row: typical("fraction", chance),
-        lambda row: number(chance) if chance.random() < 0.7 else None,
-        lambda row: chance.random() < 0.5,
-        lambda row: chance.choice(("1", "2.5", "-3", "10%", "1e2", "12/25/2023", "x")),
-        lambda row: chance.choice(ERRORS) if chance.random() < 0.3 else number(chance),
+        lambda _: number(chance),
+        lambda _: typical("positive", chance),
+        lambda _: float(chance.randint(0, 9)),
+        lambda _: chance.choice(WORDS),
+        lambda _: chance.choice(mixed)(),
+        lambda _: float(chance.randint(36_526, 47_000)),
+        lambda _: typical("fraction", chance),
+        lambda _: number(chance) if chance.random() < 0.7 else None,
+        lambda _: chance.random() < 0.5,
+        lambda _: chance.choice(("1", "2.5", "-3", "10%", "1e2", "12/25/2023", "x")),
+        lambda _: chance.choice(ERRORS) if chance.random() < 0.3 else number(chance),
         lambda row: ascending[row - 1],
     )
     return {(row, k): make(row) for row in range(1, ROWS + 1) for k, make in enumerate(columns, start=1)}
@@ -252,7 +257,9 @@ class Writer:
         chance = self.chance
         top, bottom = self.top, self.bottom
         if word == "base":
-            return Piece("range", chance.choice(("Base!A1:D13", "Base!$A$1:$D$13")), value=self.array("Base", 1, 1, 13, 4))
+            return Piece(
+                "range", chance.choice(("Base!A1:D13", "Base!$A$1:$D$13")), value=self.array("Base", 1, 1, 13, 4)
+            )
         if word == "criteria":
             right, last = chance.choice((6, 7)), chance.choice((2, 2, 3))
             return Piece("range", f"Base!F1:{letters(right)}{last}", value=self.array("Base", 1, 6, last, right))
@@ -322,10 +329,12 @@ class Writer:
 
 
 INNER = {
-    "number": ("ABS", "SUM", "ROUND", "MAX", "MOD", "SQRT", "INT", "INDEX", "IF", "VLOOKUP", "POWER", "AVERAGE", "LEN", "SIGN"),
+    "number": ("ABS", "SUM", "ROUND", "MAX", "MOD", "SQRT", "INT", "INDEX", "IF", "VLOOKUP", "POWER", "AVERAGE", "LEN",
+               "SIGN"),
     "text": ("LEFT", "MID", "UPPER", "TEXT", "CONCATENATE", "TRIM", "SUBSTITUTE", "T", "RIGHT", "REPT", "FIXED", "IF"),
     "yes": ("AND", "OR", "NOT", "ISNUMBER", "ISTEXT", "ISERROR", "ISBLANK", "EXACT"),
-    "any": ("IF", "IFERROR", "CHOOSE", "INDEX", "VLOOKUP", "LEFT", "SUM", "ROUND", "LOOKUP", "MIN", "VALUE", "AND", "COUNTIF"),
+    "any": ("IF", "IFERROR", "CHOOSE", "INDEX", "VLOOKUP", "LEFT", "SUM", "ROUND", "LOOKUP", "MIN", "VALUE", "AND",
+            "COUNTIF"),
 }  # fmt: skip
 
 

@@ -7,6 +7,7 @@ explained that no record meets. docs/differences.md is written from the records.
 from __future__ import annotations
 
 from dataclasses import dataclass
+from functools import cache
 from typing import TYPE_CHECKING, Literal, TypeAlias
 
 if TYPE_CHECKING:
@@ -14,7 +15,7 @@ if TYPE_CHECKING:
 
     from tests.differential.comparison import Difference
 
-__all__ = ["Condition", "Known", "Side", "explanation", "records"]
+__all__ = ["Condition", "Known", "Side", "explanation", "record", "records"]
 
 Side: TypeAlias = Literal["ours", "LibreOffice", "both", "neither", "silent", "unknown"]
 
@@ -38,7 +39,7 @@ class Known:
     """One kind of difference.
 
     key : short name, unique
-    heads : the functions and operators concerned, separated by blanks
+    heads : the functions and operators concerned; none where the condition names a construct that any may meet
     standard, excel : the side that does as OpenFormula says ("silent" where it leaves it open), and as Excel does
     """
 
@@ -51,7 +52,12 @@ class Known:
 
     def explains(self, difference: Difference) -> bool:
         """Whether it is of this kind."""
-        return difference.piece.head in self.heads and self.when.holds(difference)
+        return (not self.heads or difference.piece.head in self.heads) and self.when.holds(difference)
+
+
+def record(key: str, heads: str, when: Condition, reason: str, *, standard: Side, excel: Side) -> Known:
+    """A record, its functions separated by blanks."""
+    return Known(key, frozenset(heads.split()), when, reason, standard, excel)
 
 
 def explanation(difference: Difference) -> Known | None:
@@ -59,9 +65,11 @@ def explanation(difference: Difference) -> Known | None:
     return next((record for record in records() if record.explains(difference)), None)
 
 
+@cache
 def records() -> tuple[Known, ...]:
-    """All records, those on values before those on error codes."""
+    """All records, those on kinds of argument before those on single functions and those on error codes."""
     from tests.differential.known_codes import CODES
-    from tests.differential.known_values import VALUES
+    from tests.differential.known_functions import FUNCTIONS
+    from tests.differential.known_values import KINDS
 
-    return VALUES + CODES
+    return KINDS + FUNCTIONS + CODES

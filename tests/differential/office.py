@@ -1,4 +1,4 @@
-"""LibreOffice calculates books anew: one process converts a batch of .xlsx files to .ods, which then carry its values."""
+"""LibreOffice calculates books anew: one process converts .xlsx files to .ods, which then carry its values."""
 
 from __future__ import annotations
 
