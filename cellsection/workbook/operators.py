@@ -3,16 +3,19 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Sequence
+from contextvars import ContextVar
 from math import isfinite
 from typing import TypeAlias
 
 from cellsection.workbook.coercion import DIV0, NA, NUM, VALUE, compared, number_of, text_of
+from cellsection.workbook.machine import Unsupported
 from cellsection.workbook.values import Array, ErrorValue, Scalar
 
-__all__ = ["BINARY", "LONGEST_TEXT", "element", "negative", "per_cent", "snapped", "spread", "width_height"]
+__all__ = ["BINARY", "LARGEST", "LONGEST_TEXT", "element", "negative", "per_cent", "snapped", "spread", "width_height"]
 
 Result: TypeAlias = Scalar | Array
 LONGEST_TEXT = 32_767  # characters in a cell
+LARGEST: ContextVar[int] = ContextVar("cells of an array", default=2_000_000)  # set for each recalculation
 
 
 def arithmetic(work: Callable[[float, float], Scalar]) -> Callable[[Scalar, Scalar], Scalar]:
@@ -129,6 +132,8 @@ def spread(call: Callable[..., Scalar], operands: Sequence[Result]) -> Array:
     """
     shapes = [width_height(operand) for operand in operands if isinstance(operand, tuple)]
     rows, columns = max(shape[0] for shape in shapes), max(shape[1] for shape in shapes)
+    if rows * columns > LARGEST.get():  # a row meets a column: two arrays of allowed size make one that is not
+        raise Unsupported(f"an array of {rows * columns:,} cells (more than {LARGEST.get():,})")
     lines = zip(*(stretched(operand, rows, columns) for operand in operands), strict=True)
     result: list[tuple[Scalar, ...]] = []
     before: tuple[Sequence[Scalar], ...] = ()

@@ -33,6 +33,7 @@ from cellsection.workbook.machine import (
     TimeUp,
     Unsupported,
 )
+from cellsection.workbook.operators import LARGEST
 from cellsection.workbook.outcome import FormulaCells
 from cellsection.workbook.relative import Key, Pattern, relative_key
 from cellsection.workbook.results import Recalculation, Status
@@ -86,7 +87,7 @@ def recalculated(
     limits = limits or Limits()
     spills: dict[Place, Bounds] = {}
     deadline = time.monotonic() + limits.seconds
-    with deep_stack(), uncollected():
+    with deep_stack(), uncollected(), largest(limits.array_cells):
         for _ in range(ROUNDS):
             driver = Driver(Machine(book, resolve, limits, spills, moment))
             driver.machine.deadline = deadline
@@ -106,6 +107,16 @@ def deep_stack() -> Iterator[None]:
         yield
     finally:
         sys.setrecursionlimit(before)
+
+
+@contextmanager
+def largest(cells: int) -> Iterator[None]:
+    """The operators' own cap on the size of an array."""
+    before = LARGEST.set(cells)
+    try:
+        yield
+    finally:
+        LARGEST.reset(before)
 
 
 @contextmanager
