@@ -121,4 +121,5 @@ class FormulaCells(Sequence[FormulaCell]):
                 partial(shown_text, formula, place if owner == key else position(owner)),
                 machine.whole.get((index, key)),
                 filled.get((index, key)) if filled else None,
+                place,
             )

@@ -9,7 +9,7 @@ from typing import TYPE_CHECKING
 if TYPE_CHECKING:
     from collections.abc import Callable, Sequence
 
-    from cellsection.workbook.book import Bounds
+    from cellsection.workbook.book import Bounds, Position
     from cellsection.workbook.values import Array, Scalar
 
 __all__ = ["FormulaCell", "Recalculation", "Status"]
@@ -51,6 +51,7 @@ class FormulaCell:
         default=None, repr=False
     )  # all that the formula gave, where it gave more than one value
     fills: Bounds | None = None
+    place: Position | None = None  # row and column that the address names, where they are known
 
     @property
     def formula(self) -> str:

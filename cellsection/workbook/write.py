@@ -162,7 +162,7 @@ def values_by_sheet(
     for cell in recalculation.apart():
         if cell.status in WRITTEN:
             if differs(cell):
-                values[cell.sheet][position_of(cell.address)] = cell.value
+                values[cell.sheet][cell.place or position_of(cell.address)] = cell.value
             if cell.fills is not None:
                 areas[cell.sheet][position_of(cell.address)] = cell.fills
     return values, areas
