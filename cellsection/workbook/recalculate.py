@@ -229,7 +229,9 @@ class Driver:
             machine.settle_saved(index, key, Taint(Status.UNSUPPORTED, "formula nested too deeply"))
         except MemoryError:
             machine.settle_saved(index, key, Taint(Status.UNSUPPORTED, "formula that needs more memory than there is"))
-        except (ArithmeticError, ValueError, TypeError, LookupError, AttributeError) as fault:
+        except Pending:
+            raise
+        except Exception as fault:
             # A fault of this program spoils its own cell and what depends on it, not the whole book; it is reported.
             what = f"this formula, at which the program fails ({type(fault).__name__}: {fault})"
             machine.settle_saved(index, key, Taint(Status.UNSUPPORTED, what))

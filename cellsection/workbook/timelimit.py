@@ -8,6 +8,7 @@ in the thread that calculates, between two of its steps. A single step of a libr
 
 from __future__ import annotations
 
+import sys
 import threading
 import time
 from collections.abc import Iterator
@@ -26,12 +27,14 @@ def time_limit(deadline: float) -> Iterator[None]:
 
     def wait() -> None:
         nonlocal raised
-        if over.wait(min(max(deadline - time.monotonic(), 0.0), threading.TIMEOUT_MAX)):
-            return
-        with lock:
-            if not over.is_set():
-                raised = True
-                raise_in(here, TimeUp)
+        patience = min(max(deadline - time.monotonic(), 0.0), threading.TIMEOUT_MAX)
+        while not over.wait(patience):
+            with lock:
+                if not over.is_set() and not importing(here):
+                    raised = True
+                    raise_in(here, TimeUp)
+                    return
+            patience = 0.02
 
     threading.Thread(target=wait, daemon=True, name="time limit of a book").start()
     try:
@@ -41,6 +44,16 @@ def time_limit(deadline: float) -> Iterator[None]:
             over.set()
         if raised:  # perhaps too late to have come out yet
             raise_in(here, None)
+
+
+def importing(thread: int) -> bool:
+    """Whether a thread is loading a module: broken off there, it would be left half loaded for every book to come."""
+    frame = sys._current_frames().get(thread)
+    while frame is not None:
+        if frame.f_code.co_filename.startswith("<frozen importlib"):
+            return True
+        frame = frame.f_back
+    return False
 
 
 def raise_in(thread: int, what: type[BaseException] | None) -> None:
