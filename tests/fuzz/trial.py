@@ -30,7 +30,7 @@ from tests.fuzz.formulas import Spelling, formula
 from tests.fuzz.originals import book_of, ods_parts, xlsx_parts
 from tests.fuzz.watch import watched
 
-__all__ = ["KINDS", "LIMITS", "OWN_FAULTS", "file_trial", "formula_trial", "trial"]
+__all__ = ["KINDS", "LIMITS", "OWN_FAULTS", "file_trial", "formula_trial", "trial", "undamaged"]
 
 LIMITS = Limits(unzipped_bytes=50_000_000, cells=300_000, array_cells=200_000, seconds=3.0)
 OWN_FAULTS = ("at which the program fails", "with these arguments (")  # how a report tells of a fault in a builtin
@@ -84,8 +84,13 @@ def xml_cases(rng: Random, folder: Path) -> Counter[str]:
     for _ in range(rng.choice((1, 1, 2))):
         name = likely if rng.random() < 0.5 else rng.choice(list(parts))
         parts[name] = damaged_markup(rng, parts[name], spelling)
-    data = packed(rng, parts) if rng.random() < 0.3 else packed(Calm(), parts)
+    data = packed(rng, parts) if rng.random() < 0.3 else undamaged(parts)
     return file_trial(data, ".ods" if ods else ".xlsx", folder)
+
+
+def undamaged(parts: dict[str, bytes]) -> bytes:
+    """The parts in a sound zip file."""
+    return packed(Calm(), parts)
 
 
 class Calm(Random):
