@@ -15,9 +15,31 @@ if TYPE_CHECKING:
     from tests.differential.comparison import Difference
 
 __all__ = [
-    "DIGITS", "EARLY", "ERROR_CONSTANT", "FRACTION", "LEFT_OUT", "MANY", "NUMBERS", "OURS_ONLY", "PASSED_ON",
-    "SEVERAL", "TEXTS", "THEIRS_ONLY", "UNSORTED", "WORD", "has",
+    "DIGITS",
+    "EARLY",
+    "EARLY_TERM",
+    "ERROR_CONSTANT",
+    "EXPONENT",
+    "FRACTION",
+    "LEFT_OUT",
+    "LOGICAL_RESULT",
+    "MANY",
+    "NEGATIVE",
+    "NUMBERS",
+    "OURS_ONLY",
+    "PASSED_ON",
+    "SEVERAL",
+    "SINGLE_RESULT",
+    "TEXTS",
+    "THEIRS_ONLY",
+    "TINY",
+    "UNSORTED",
+    "WORD",
+    "has",
 ]  # fmt: skip
+
+
+QUESTIONS = ("ISNUMBER", "ISTEXT", "ISERROR", "ISBLANK", "<", ">", "<=", ">=", "=", "<>")
 
 
 def has(*kinds: str) -> Condition:
@@ -87,6 +109,15 @@ EARLY = Condition(
     "a day before 1 March 1900 (a serial number below 61, none or a negative one among them)",
     lambda d: any(value is None or (isinstance(value, float) and value < 61) for value in scalars(d)),
 )
+EARLY_TERM = Condition(
+    "one of the first two arguments, which are days, lies before 1 March 1900",
+    lambda d: any(
+        each.value is None or (isinstance(each.value, float) and each.value < 61) for each in d.piece.arguments[:2]
+    ),
+)
+NEGATIVE = Condition(
+    "an argument is negative", lambda d: any(isinstance(value, float) and value < 0 for value in scalars(d))
+)
 FRACTION = Condition(
     "an argument that is taken as whole has a fraction",
     lambda d: any(isinstance(value, float) and value != int(value) for value in scalars(d)),
@@ -118,4 +149,19 @@ SEVERAL = Condition(
 PASSED_ON = Condition(
     "an argument is or holds an error that one side passes on and the other counts, matches or skips",
     lambda d: any("error" in kinds_in(each.value) for each in d.piece.arguments),
+)
+EXPONENT = Condition(
+    "a number of 1E+21 or more, or below 1E-9, becomes text",
+    lambda d: any(isinstance(value, float) and value and not 1e-9 <= abs(value) < 1e21 for value in scalars(d)),
+)
+TINY = Condition(
+    "a number below 1E-100", lambda d: any(isinstance(value, float) and 0 < abs(value) < 1e-100 for value in scalars(d))
+)
+SINGLE_RESULT = Condition(
+    "the third argument is a single value",
+    lambda d: len(d.piece.arguments) > 2 and not isinstance(d.piece.arguments[2].value, tuple),
+)
+LOGICAL_RESULT = Condition(
+    "the value searched for is the result of a function that gives a logical",
+    lambda d: d.path == "ods" and d.piece.arguments[0].head in ("AND", "OR", "NOT", "EXACT", *QUESTIONS),
 )

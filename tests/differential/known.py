@@ -10,6 +10,8 @@ from dataclasses import dataclass
 from functools import cache
 from typing import TYPE_CHECKING, Literal, TypeAlias
 
+from cellsection.workbook.values import ErrorValue
+
 if TYPE_CHECKING:
     from collections.abc import Callable
 
@@ -49,15 +51,21 @@ class Known:
     reason: str
     standard: Side
     excel: Side
+    errors: bool | None = False  # whether both sides give errors; None: whether or not
 
     def explains(self, difference: Difference) -> bool:
         """Whether it is of this kind."""
+        both = isinstance(difference.ours, ErrorValue) and isinstance(difference.theirs, ErrorValue)
+        if self.errors is not None and self.errors != both:
+            return False
         return (not self.heads or difference.piece.head in self.heads) and self.when.holds(difference)
 
 
-def record(key: str, heads: str, when: Condition, reason: str, *, standard: Side, excel: Side) -> Known:
+def record(
+    key: str, heads: str, when: Condition, reason: str, *, standard: Side, excel: Side, errors: bool | None = False
+) -> Known:
     """A record, its functions separated by blanks."""
-    return Known(key, frozenset(heads.split()), when, reason, standard, excel)
+    return Known(key, frozenset(heads.split()), when, reason, standard, excel, errors)
 
 
 def explanation(difference: Difference) -> Known | None:

@@ -257,9 +257,10 @@ CODES: tuple[Known, ...] = (
         "Which of several faults is reported depends on the order in which arguments are looked at.",
         standard="silent",
         excel="ours",
+        errors=True,
     ),
     *(
-        record(f"{ours} as {shown}", heads, refused(ours, shown), why, standard="silent", excel="ours")
+        record(f"{ours} as {shown}", heads, refused(ours, shown), why, standard="silent", excel="ours", errors=True)
         for ours, shown, why, heads in TABLE
     ),
 )

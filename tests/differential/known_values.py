@@ -8,6 +8,7 @@ from __future__ import annotations
 from tests.differential.conditions import (
     DIGITS,
     EARLY,
+    EARLY_TERM,
     ERROR_CONSTANT,
     FRACTION,
     LEFT_OUT,
@@ -29,6 +30,7 @@ KINDS: tuple[Known, ...] = (
         ("LibreOffice 7.4 does not read an error value inside an array constant and refuses the formula."),
         standard="ours",
         excel="ours",
+        errors=None,
     ),
     record(
         "logical",
@@ -132,13 +134,26 @@ KINDS: tuple[Known, ...] = (
     record(
         "days before 1 March 1900",
         """
-        ACCRINT ACCRINTM AMORLINC COUPDAYBS COUPDAYS COUPDAYSNC COUPNCD COUPNUM COUPPCD DATE DATEDIF
-        DATEVALUE DAY DAYS DAYS360 DISC DURATION EDATE EOMONTH HOUR INTRATE ISOWEEKNUM MDURATION MINUTE
-        MONTH NETWORKDAYS NETWORKDAYS.INTL PRICE PRICEDISC PRICEMAT RECEIVED SECOND TBILLEQ TBILLPRICE
-        TBILLYIELD TEXT WEEKDAY WEEKNUM WORKDAY WORKDAY.INTL XIRR XNPV YEAR YEARFRAC YIELD YIELDDISC
-        YIELDMAT
+        DAY MONTH YEAR WEEKDAY WEEKNUM ISOWEEKNUM HOUR MINUTE SECOND EDATE EOMONTH DAYS DAYS360 YEARFRAC
+        WORKDAY NETWORKDAYS WORKDAY.INTL NETWORKDAYS.INTL TEXT DATE DATEDIF DATEVALUE
         """,
         EARLY,
+        (
+            "LibreOffice counts days from 30 December 1899 and goes on below zero; Excel has day 0, its own 29 "
+            "February 1900 as day 60, and no negative days. OpenFormula (4.3.2) leaves the epoch to the "
+            "application."
+        ),
+        standard="both",
+        excel="ours",
+    ),
+    record(
+        "terms before 1 March 1900",
+        """
+        ACCRINT ACCRINTM AMORLINC COUPDAYBS COUPDAYS COUPDAYSNC COUPNCD COUPNUM COUPPCD DISC DURATION
+        INTRATE MDURATION PRICE PRICEDISC PRICEMAT RECEIVED TBILLEQ TBILLPRICE TBILLYIELD XIRR XNPV YIELD
+        YIELDDISC YIELDMAT
+        """,
+        EARLY_TERM,
         (
             "LibreOffice counts days from 30 December 1899 and goes on below zero; Excel has day 0, its own 29 "
             "February 1900 as day 60, and no negative days. OpenFormula (4.3.2) leaves the epoch to the "

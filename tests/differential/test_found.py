@@ -28,6 +28,8 @@ FOUND = (
     ("DEC2OCT(-13.6)", "7777777763", f'{REFERENCE}, DEC2OCT: "if number is not an integer, it is truncated"'),
     ("GCD(12,A3)", "#VALUE!", f'{REFERENCE}, GCD: "any value is nonnumeric"'),
     ('NETWORKDAYS.INTL(36815,39190,"1111111")', 0.0, f'{REFERENCE}: "using 1111111 will always return 0"'),
+    ("FIXED(10.6,20)", "10.60000000000000000000", "numbers carry 15 digits; those behind are shown as zeros"),
+    ('SUBSTITUTE("a","","b",0)', "#VALUE!", f"{REFERENCE}, SUBSTITUTE: the instance counts from 1 (from memory)"),
     ('SUM(COUNTIFS(B1:B2,">0",B1:B2,{3,5}))', 2.0, "a criterion may be an array; each of its elements is counted"),
     ("F.TEST(B1:B2,{7,7})", "#DIV/0!", f'{REFERENCE}, F.TEST: "if the variance of array1 or array2 is zero"'),
     ('"weld"<"Ärmel"', False, "OpenFormula 6.4.9: text is compared by the collation of the locale"),

@@ -90,7 +90,7 @@ def typical(word: str, chance: Random) -> Scalar:
     if word == "number":
         return number(chance)
     if word == "positive":
-        return round(chance.choice((chance.uniform(0.01, 5), chance.uniform(0.5, 50), chance.randint(1, 20))), 3)
+        return float(round(chance.choice((chance.uniform(0.01, 5), chance.uniform(0.5, 50), chance.randint(1, 20))), 3))
     if word == "fraction":
         return round(chance.random(), chance.choice((1, 2, 2, 3, 5)))
     if word == "rate":

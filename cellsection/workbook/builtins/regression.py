@@ -6,7 +6,7 @@ import math
 
 from cellsection.workbook.builtins.registry import ErrorResult, builtin
 from cellsection.workbook.builtins.traits import numbers, whole
-from cellsection.workbook.coercion import NA, NUM, REF, VALUE, logical_of, number_of
+from cellsection.workbook.coercion import NA, NUM, REF, VALUE, logical_of
 from cellsection.workbook.values import Array, ErrorValue, Scalar
 
 

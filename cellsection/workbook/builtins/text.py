@@ -5,6 +5,7 @@ from __future__ import annotations
 import math
 import re
 import unicodedata
+from decimal import Decimal
 from typing import Any
 
 from cellsection.workbook.builtins.mathematics import rounded
@@ -172,14 +173,14 @@ def search(wanted: str, text: str, start: float = 1.0) -> Any:
 
 @builtin("SUBSTITUTE", "text text text number?")
 def substitute(text: str, old: str, new: str, number: float | None = None) -> str:
+    if number is not None and number < 1:
+        return fail_text(VALUE)
     if not old:
         return text
     if number is None:
         if len(text) + text.count(old) * (len(new) - len(old)) > LONGEST:
             return fail_text(VALUE)
         return text.replace(old, new)
-    if number < 1:
-        return fail_text(VALUE)
     place = -1
     for _ in range(int(number)):
         place = text.find(old, place + 1 if place < 0 else place + len(old))
@@ -229,16 +230,21 @@ def text_(context: Context, cell: Scalar, pattern: str) -> Any:
     return result
 
 
+def digits_of(x: float) -> Decimal:
+    """A number by its 15 significant digits: those behind are zeros wherever it is shown."""
+    return Decimal(f"{x:.14e}")
+
+
 @builtin("FIXED", "number number? logical?")
 def fixed(x: float, decimals: float = 2.0, no_commas: bool = False) -> str:
     y = rounded(x, decimals, "half") if decimals <= 127 else float(fail_text(VALUE))
-    return f"{y:{'' if no_commas else ','}.{max(int(decimals), 0)}f}"
+    return f"{digits_of(y):{'' if no_commas else ','}.{max(int(decimals), 0)}f}"
 
 
 @builtin("DOLLAR", "number number?")
 def dollar(x: float, decimals: float = 2.0) -> str:
     y = rounded(x, decimals, "half") if decimals <= 127 else float(fail_text(VALUE))
-    body = f"${abs(y):,.{max(int(decimals), 0)}f}"
+    body = f"${digits_of(abs(y)):,.{max(int(decimals), 0)}f}"
     return f"({body})" if y < 0 else body
 
 
