@@ -41,6 +41,7 @@ class Formula:
         formula is not in the file, or it is written in a language that is not supported, and then `text` has its prefix
     dynamic : written by an application with dynamic arrays, so that it spills instead of intersecting
     language : the spelling of references and separators
+    key : its relative form, where that is known already; see relative
     """
 
     text: str
@@ -50,6 +51,7 @@ class Formula:
     area: Bounds | None = None
     dynamic: bool = False
     language: Literal["excel", "openformula"] = "excel"
+    key: tuple[str | int, ...] | None = None
 
 
 @dataclass(slots=True)

@@ -35,7 +35,7 @@ from cellsection.workbook.machine import (
 )
 from cellsection.workbook.operators import LARGEST
 from cellsection.workbook.outcome import FormulaCells
-from cellsection.workbook.relative import Key, Pattern, relative_key
+from cellsection.workbook.relative import Key, relative_key
 from cellsection.workbook.results import Recalculation, Status
 from cellsection.workbook.timelimit import time_limit
 from cellsection.workbook.values import ErrorValue
@@ -140,7 +140,6 @@ class Driver:
         self.compiler = Compiler(machine)
         self.by_formula: list[dict[Formula, Compiled]] = [{} for _ in machine.book.sheets]
         self.by_key: dict[tuple[int, bool, str], dict[Key, Compiled]] = {}
-        self.patterns: dict[tuple[int, int, bool], tuple[Pattern, Compiled]] = {}  # the last form met in each column
         self.circles = Circles(self)
         self.open: dict[Place, None] = {}  # started and on hold, in the order they wait for one another
         self.grown: dict[Place, Bounds] = {}  # areas that turned out larger than the file says
@@ -289,11 +288,7 @@ class Driver:
         if len(formula.text) > limit:
             raise FormulaError(f"it has more than {limit:,} characters", construct="overlong formula")
         spread = formula.kind == "array" or formula.dynamic
-        column = (index, formula.column, spread)
-        pattern, last = self.patterns.get(column, (None, None))
-        if pattern is not None and last is not None and pattern.text_in(formula.row) == formula.text:
-            return last
-        key = relative_key(formula.text, formula.row, formula.column, formula.language)
+        key = formula.key or relative_key(formula.text, formula.row, formula.column, formula.language)
         forms = self.by_key.setdefault((index, spread, formula.language), {})
         known = forms.get(key)
         if known is None:
@@ -304,8 +299,6 @@ class Driver:
             except RecursionError:
                 known = Compiled(fault=FormulaError("it nests too deeply", construct="deep nesting"))
             forms[key] = known
-        if "[@" not in formula.text:
-            self.patterns[column] = (Pattern(key, formula.text, formula.row, formula.language), known)
         return known
 
 

@@ -7,6 +7,7 @@ from cellsection.workbook.addresses import address, read_ref
 from cellsection.workbook.book import Bounds, Formula, Position, Sheet
 from cellsection.workbook.metadata import Metadata
 from cellsection.workbook.package import Package
+from cellsection.workbook.relative import Columns
 from cellsection.workbook.sharedstrings import unescaped
 
 __all__ = ["SheetFormulas"]
@@ -19,6 +20,7 @@ class SheetFormulas:
         self.package, self.sheet, self.metadata, self.limits = package, sheet, metadata, package.limits
         self.shared: dict[str, Formula] = {}
         self.orphans: list[tuple[Position, str]] = []
+        self.columns = Columns("excel")
         self.array_cells = 0
 
     def read_f(self, text: str, f: dict[str, str], position: Position, cm: str | None) -> None:
@@ -50,7 +52,10 @@ class SheetFormulas:
             text = table_text(f.get("r1", ""), f.get("r2", ""), two, across)
             formula = Formula(text, *position, kind="data table", area=self.area(f, position))
         elif text:
-            formula = Formula(text, *position, dynamic=cm is not None and cm in self.metadata.dynamic)
+            if cm is not None and cm in self.metadata.dynamic:
+                formula = Formula(text, *position, dynamic=True)
+            else:
+                formula = self.columns.formula(text, *position)
         else:
             return  # an empty <f> in the area of another formula
         self.sheet.formulas[position] = formula

@@ -19,6 +19,7 @@ from cellsection.workbook.book import Bounds, Formula, Sheet
 from cellsection.workbook.literals import read_date, read_duration, read_number
 from cellsection.workbook.markup import LONGEST_TEXT, refused
 from cellsection.workbook.package import Package
+from cellsection.workbook.relative import Columns
 from cellsection.workbook.values import ErrorValue, Scalar
 
 __all__ = ["OFFICE", "TABLE", "TEXT", "TableReader", "without_prefix"]
@@ -64,6 +65,7 @@ class TableReader:
         self.cell: dict[str, str] | None = None
         self.pieces: list[str] = []  # of the text of the cell at hand
         self.length = self.paragraphs = self.array_cells = 0
+        self.columns = Columns("openformula")
         self.within = 0  # how many elements deep in a paragraph
         self.hidden: list[tuple[int, int]] = []  # first row and the row after the last
 
@@ -158,7 +160,7 @@ class TableReader:
             return Formula(body, row, column, kind="missing")
         down, across = TABLE + "number-matrix-rows-spanned", TABLE + "number-matrix-columns-spanned"
         if down not in cell and across not in cell:
-            return Formula(body, row, column, language=language)
+            return self.columns.formula(body, row, column) if language == "openformula" else Formula(body, row, column)
         rows, columns = self.count(cell, down, LAST_ROW), self.count(cell, across, LAST_COLUMN)
         self.array_cells += rows * columns
         if self.array_cells > self.limits.array_cells:

@@ -108,7 +108,8 @@ def test_formulas_share_a_form_only_where_they_mean_the_same(
 
 def test_a_pattern_tells_how_a_formula_reads_in_another_row() -> None:
     text = 'SUM(A2:B$1)*5%+$C3&"A2%"'
-    pattern = Pattern(relative_key(text, 2, 4, "excel"), text, 2, "excel")
+    pattern = Pattern(text, 2, 4, "excel")
+    assert pattern.key == relative_key(text, 2, 4, "excel")
     assert pattern.text_in(2) == text
     assert pattern.text_in(12) == 'SUM(A12:B$1)*5%+$C13&"A2%"'
 
