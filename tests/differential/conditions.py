@@ -109,6 +109,13 @@ EARLY = Condition(
     "a day before 1 March 1900 (a serial number below 61, none or a negative one among them)",
     lambda d: any(value is None or (isinstance(value, float) and value < 61) for value in scalars(d)),
 )
+LARGE = Condition(
+    "a number of 1E+9 or more", lambda d: any(isinstance(value, float) and abs(value) >= 1e9 for value in scalars(d))
+)
+LATE = Condition(
+    "a day after 31 December 9999",
+    lambda d: any(isinstance(value, float) and value >= 2958466 for value in scalars(d)),
+)
 EARLY_TERM = Condition(
     "one of the first two arguments, which are days, lies before 1 March 1900",
     lambda d: any(

@@ -105,7 +105,7 @@ def seriessum(x: float, n: float, m: float, coefficients: Array) -> float:
         exponent = n + k * m
         if (x == 0 and exponent <= 0) or (x < 0 and exponent != int(exponent)):
             return fail(NUM)
-        result += (cell or 0.0) * x**exponent  # type: ignore[operator]
+        result += (cell or 0.0) * x**exponent
     return result
 
 

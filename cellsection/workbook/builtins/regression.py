@@ -140,7 +140,7 @@ def plain_number(cell: Scalar) -> float:
         raise ErrorResult(cell)
     if cell.__class__ is not float:
         raise ErrorResult(VALUE)
-    return cell  # type: ignore[return-value]
+    return cell
 
 
 def predicted(y: Array, x: Array | None, new: Array | None, constant: bool) -> list[float]:
