@@ -5,7 +5,7 @@ from __future__ import annotations
 from itertools import pairwise
 from typing import TYPE_CHECKING
 
-from cellsection.workbook.values import ErrorValue, Scalar
+from cellsection.workbook.values import Array, ErrorValue, Scalar
 from tests.differential.expressions import Piece, kind_of, kinds_in
 from tests.differential.known import Condition
 
@@ -26,6 +26,7 @@ __all__ = [
     "MANY",
     "NEGATIVE",
     "NUMBERS",
+    "ODD_LIFE",
     "OURS_ONLY",
     "PASSED_ON",
     "SEVERAL",
@@ -35,6 +36,7 @@ __all__ = [
     "TINY",
     "UNSORTED",
     "WORD",
+    "ZERO_POWER",
     "has",
 ]  # fmt: skip
 
@@ -162,7 +164,7 @@ EXPONENT = Condition(
     lambda d: any(isinstance(value, float) and value and not 1e-9 <= abs(value) < 1e21 for value in scalars(d)),
 )
 TINY = Condition(
-    "a number below 1E-100", lambda d: any(isinstance(value, float) and 0 < abs(value) < 1e-100 for value in scalars(d))
+    "a number below 1E-50", lambda d: any(isinstance(value, float) and 0 < abs(value) < 1e-50 for value in scalars(d))
 )
 SINGLE_RESULT = Condition(
     "the third argument is a single value",
@@ -172,3 +174,21 @@ LOGICAL_RESULT = Condition(
     "the value searched for is the result of a function that gives a logical",
     lambda d: d.path == "ods" and d.piece.arguments[0].head in ("AND", "OR", "NOT", "EXACT", *QUESTIONS),
 )
+ZERO_POWER = Condition(
+    "0 to the power 0, or a result too small for a double, which is 0 here",
+    lambda d: d.ours == 0.0 or all(not each for each in scalars(d)),
+)
+ODD_LIFE = Condition(
+    "the salvage is not from 0 to the cost, the cost or the life is not positive, life or period has a fraction, or "
+    "the period lies outside the life",
+    lambda d: odd_life([each.value for each in d.piece.arguments]),
+)
+
+
+def odd_life(values: list[Scalar | Array]) -> bool:
+    """Whether cost, salvage, life and period are other than a depreciation table has them."""
+    cost, salvage, life, period = (
+        float(v) if isinstance(v, float) else 0.0 if v is None else float("nan") for v in values[:4]
+    )
+    usual = 0 <= salvage <= cost and cost > 0 and life > 0 and 1 <= period <= life
+    return not (usual and period == int(period) and life == int(life))

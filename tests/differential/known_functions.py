@@ -15,6 +15,7 @@ from tests.differential.conditions import (
     MANY,
     NEGATIVE,
     NUMBERS,
+    ODD_LIFE,
     OURS_ONLY,
     PASSED_ON,
     SINGLE_RESULT,
@@ -101,7 +102,7 @@ FUNCTIONS: tuple[Known, ...] = (
     record(
         "depreciation at odd values",
         "SYD DDB DB VDB",
-        NUMBERS | THEIRS_ONLY | OURS_ONLY,
+        ODD_LIFE,
         (
             "A salvage above the cost or below zero, or a period outside the life: LibreOffice refuses the first "
             "and works out the others; Excel the other way round. OpenFormula states constraints (6.12) but not "
@@ -225,7 +226,7 @@ FUNCTIONS: tuple[Known, ...] = (
     record(
         "remainder of large numbers",
         "MOD",
-        NUMBERS | THEIRS_ONLY | OURS_ONLY,
+        LARGE | TINY,
         (
             "Excel gives #NUM! from a quotient of 1.125E+15 on and takes the quotient at 15 digits below it; "
             "LibreOffice takes the floating-point remainder or refuses."

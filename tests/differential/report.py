@@ -92,7 +92,8 @@ its own account only where every call within its formula, repeated in a cell of 
 prints how many cells are equal and how many differ in which of the ways below, and fails at a difference that is in
 none. The page is written from `tests/differential/known*.py` by `python -m tests.differential.report`. "Standard" is
 OpenFormula (ODF 1.3 part 4) or ISO/IEC 29500-1 18.17; "silent" means that it leaves the matter open, "both" that it
-allows both, "ours" and "LibreOffice" that this side does as it says; the same words stand for Excel.
+allows both, "ours" and "LibreOffice" that this side does as it says; the same words stand for Excel. No Excel was run:
+what it does is taken from its function reference, from workbooks it saved, or from memory; "unknown" where none says.
 """
 
 
@@ -103,7 +104,7 @@ def page() -> str:
     parts += [entry(record) for record in kinds]
     parts.append(
         "## Codes of errors\n\nBoth programs refuse the same arguments, with different codes. OpenFormula asks for an "
-        "error and leaves open which; ours are those that Excel's reference documents.\n"
+        "error and leaves open which; ours are those that Excel's reference documents where it does.\n"
     )
     parts.append("| difference | functions | why |\n|---|---|---|")
     parts += [f"| {each.key} | {functions(each)} | {each.reason} |" for each in records() if each.key in codes()]
