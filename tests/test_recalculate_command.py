@@ -35,7 +35,7 @@ def test_a_copy_with_new_values_is_written_and_the_book_stays(stale: Path, tmp_p
     assert result.exit_code == 0
     assert result.output.splitlines() == [
         f"{out}: recalculated",
-        "  2 formula cells on 1 sheet: values 1 changed, 1 as they were",
+        "  2 formula cells on 1 sheet: 1 value changed, 1 as they were",
     ]
     assert (value(out, "B1"), value(out, "B2")) == (6000, 320)  # 300 * 20 and 300 + 20
     assert stale.read_bytes() == before

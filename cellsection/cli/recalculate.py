@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from functools import partial
+from itertools import starmap
 from pathlib import Path
 from typing import TYPE_CHECKING, Literal
 
@@ -81,7 +83,7 @@ def recalculate(
         click.get_current_context().exit(UNREADABLE)
     except OSError as failure:
         raise Refusal(f"{out} cannot be written ({failure.strerror or failure}). Check the folder.") from None
-    held = [cell for cell in recalculated.apart() if not _computed(cell)]
+    held = [cell for cell in recalculated.sorted_out()[1] if not _computed(cell)]
     state = click.style("recalculated in part" if held else "recalculated", fg=None if held else "green", bold=True)
     click.echo(f"{out}: {state}")
     for line in _lines(recalculated, held, written, every=every):
@@ -103,22 +105,26 @@ def _computed(cell: FormulaCell) -> bool:
 
 def _lines(recalculated: Recalculation, held: list[FormulaCell], written: Written, *, every: bool) -> Iterator[str]:
     """What there is to say of a copy that is written."""
+    from cellsection.check.compare import Tolerance, agree
     from cellsection.check.report import counted, places_in_words
     from cellsection.workbook.results import Status
     from cellsection.workbook.write import differs
 
     cells = recalculated.cells
-    apart = recalculated.apart()
+    plain, apart = recalculated.sorted_out()
+    pairs = [pair for of_sheet in plain.values() for pair in of_sheet.values()]
     changed = [cell for cell in apart if _computed(cell) and differs(cell)]
-    same = len(cells) - len(held) - len(changed)
-    tally = [f"{len(changed):,} changed" if changed else "none changed"]
-    if same and changed:
+    many = len(changed) + len(pairs)
+    same = len(cells) - len(held) - many
+    tally = [counted(many, "value changed", "values changed") if many else "no value changed"]
+    if same and many:
         tally.append(f"{same:,} as they were")
     if held:
         tally.append(f"{len(held):,} kept, as they could not be recalculated")
     book = f"{counted(len(cells), 'formula cell')} on {counted(len(recalculated.sheets), 'sheet')}"
-    yield f"{book}: values {', '.join(tally)}" if cells else f"no formula cells on {book.rpartition(' on ')[2]}"
-    rounded = sum(map(_rounding, changed))
+    yield f"{book}: {', '.join(tally)}" if cells else f"no formula cells on {book.rpartition(' on ')[2]}"
+    pairs += [(cell.saved, cell.value) for cell in changed if cell.has_saved]
+    rounded = sum(starmap(partial(agree, tolerance=Tolerance()), pairs))
     if rounded:
         are = counted(rounded, "of the changes is", "of the changes are")
         yield f"{are} a matter of rounding, below 1e-9 of the value"
@@ -155,10 +161,3 @@ def _reasons(held: list[FormulaCell], *, every: bool) -> Iterator[str]:
         yield f"{reason}: {counted(len(cells), 'cell')}, {places_in_words(cells, every=every)}"
     if len(listed) < len(groups):
         yield f"and {counted(len(groups) - len(listed), 'more reason')} (--all lists them)"
-
-
-def _rounding(cell: FormulaCell) -> bool:
-    """Whether a changed value is the saved one but for its last digits."""
-    from cellsection.check.compare import Tolerance, agree
-
-    return cell.has_saved and agree(cell.saved, cell.value, Tolerance())

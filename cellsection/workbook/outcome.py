@@ -16,12 +16,14 @@ from cellsection.workbook.keys import position
 from cellsection.workbook.machine import Special
 from cellsection.workbook.relative import shown_text
 from cellsection.workbook.results import FormulaCell, Status
-from cellsection.workbook.values import ErrorValue
 
 if TYPE_CHECKING:
     from cellsection.workbook.recalculate import Driver
+    from cellsection.workbook.results import Changes
 
 __all__ = ["FormulaCells"]
+
+PLAIN = frozenset((float, str, bool))  # classes of values of which there may be nothing to say
 
 
 class FormulaCells(Sequence[FormulaCell]):
@@ -32,6 +34,8 @@ class FormulaCells(Sequence[FormulaCell]):
         self.sheets = range(len(driver.machine.book.sheets))
         self.made: list[FormulaCell] | None = None
         self.told_apart: list[FormulaCell] | None = None
+        self.sorted: tuple[Changes, list[FormulaCell]] | None = None
+        self.parted: dict[int, tuple[list[int], set[int]]] = {}
 
     def all(self) -> list[FormulaCell]:
         """Every cell, made when first asked for."""
@@ -59,31 +63,61 @@ class FormulaCells(Sequence[FormulaCell]):
     def apart(self) -> list[FormulaCell]:
         """The cells of which there is more to say than that they hold; see Recalculation.apart."""
         if self.told_apart is None:
-            self.told_apart = [cell for index in self.sheets for cell in self.of_sheet(index, self.keys_apart(index))]
+            keys = [sorted((*self.changed(index), *self.remarkable(index))) for index in self.sheets]
+            self.told_apart = [cell for index in self.sheets for cell in self.of_sheet(index, keys[index])]
         return self.told_apart
+
+    def sorted_out(self) -> tuple[Changes, list[FormulaCell]]:
+        """The changes that need no words, and the other cells that are apart; see Recalculation.sorted_out."""
+        if self.sorted is None:
+            machine, changes = self.driver.machine, {}
+            for index in self.sheets:
+                saved, store = machine.book.sheets[index].values, machine.stores[index]
+                pairs = {place: (saved[place], store[key]) for key in self.changed(index) for place in (position(key),)}
+                if machine.book.format == "ods":
+                    pairs = {place: (before, as_shown(value, before)) for place, (before, value) in pairs.items()}
+                if pairs:
+                    changes[machine.names[index]] = pairs
+            keys = [sorted(self.remarkable(index)) for index in self.sheets]
+            self.sorted = (changes, [cell for index in self.sheets for cell in self.of_sheet(index, keys[index])])
+        return self.sorted
 
     def keys(self, index: int) -> Iterable[int]:
         """The keys of a sheet's formula cells, row by row."""
         machine = self.driver.machine
         return sorted(machine.formulas[index].keys() | machine.owners[index].keys())
 
-    def keys_apart(self, index: int) -> Iterable[int]:
-        """The keys of those that are to be told apart."""
-        machine, compiled = self.driver.machine, self.driver.by_formula[index]
-        sheet, store, formulas = machine.book.sheets[index], machine.stores[index], machine.formulas[index]
-        saved = sheet.values.get
-        plain = {formula for formula, form in compiled.items() if not form.notes and form.call[:3].upper() != "CS_"}
-        found = set(machine.owners[index])
-        found |= {key for place, key in machine.remarks if place == index}
-        found |= {key for place, key in machine.whole if place == index}
-        found |= {key for place, key in machine.filled if place == index}  # a spill may have shrunk to its own cell
-        # The positions of the book's cells and the keys of the machine's come in one order: they are made so.
-        for place, (key, formula) in zip(sheet.formulas, formulas.items(), strict=True):
-            value, before = store[key], saved(place)
-            alike = value == before and value.__class__ is before.__class__ is not ErrorValue
-            if not alike or before is None or formula not in plain:
-                found.add(key)
-        return sorted(found)
+    def changed(self, index: int) -> list[int]:
+        """The keys of cells recalculated to another value, and nothing else to be said of them."""
+        return self.divided(index)[0]
+
+    def remarkable(self, index: int) -> set[int]:
+        """The keys of cells of which there is more to say than their values."""
+        return self.divided(index)[1]
+
+    def divided(self, index: int) -> tuple[list[int], set[int]]:
+        """Both, found when first asked for."""
+        if index not in self.parted:
+            machine, compiled = self.driver.machine, self.driver.by_formula[index]
+            sheet, store, formulas = machine.book.sheets[index], machine.stores[index], machine.formulas[index]
+            saved, figures = sheet.values.get, machine.book.format == "ods"
+            plain = {formula for formula, form in compiled.items() if not form.notes and form.call[:3].upper() != "CS_"}
+            told = set(machine.owners[index])
+            told |= {key for place, key in machine.remarks if place == index}
+            told |= {key for place, key in machine.whole if place == index}
+            told |= {key for place, key in machine.filled if place == index}  # a spill may have shrunk to its own cell
+            changed: list[int] = []
+            # The positions of the book's cells and the keys of the machine's come in one order: they are made so.
+            for place, (key, formula) in zip(sheet.formulas, formulas.items(), strict=True):
+                value, before = store[key], saved(place)
+                if figures and before is not None and value.__class__ is float:
+                    value = as_shown(value, before)
+                if formula not in plain or value.__class__ not in PLAIN or before is None:
+                    told.add(key)
+                elif value != before or value.__class__ is not before.__class__:
+                    changed.append(key)
+            self.parted[index] = ([key for key in changed if key not in told] if told else changed, told)
+        return self.parted[index]
 
     def of_sheet(self, index: int, keys: Iterable[int]) -> Iterator[FormulaCell]:
         """Some of the formula cells of a sheet."""
@@ -91,7 +125,8 @@ class FormulaCells(Sequence[FormulaCell]):
         sheet, store = machine.book.sheets[index], machine.stores[index]
         owners, formulas, saved = machine.owners[index], machine.formulas[index], sheet.values
         figures = machine.book.format == "ods"
-        name, compiled, filled = sheet.name, self.driver.by_formula[index], machine.filled
+        name, compiled = sheet.name, self.driver.by_formula[index]
+        remarks, whole, filled = machine.remarks, machine.whole, machine.filled
         letters = [column_letters(column) for column in range(machine.extent[index][1] + 1)]
         for key in keys:
             place = row, column = position(key)
@@ -99,7 +134,7 @@ class FormulaCells(Sequence[FormulaCell]):
             formula = formulas[owner]
             form = compiled.get(formula)
             notes = form.notes if form else ()
-            if (remark := machine.remarks.get((index, owner))) is not None:
+            if remarks and (remark := remarks.get((index, owner))) is not None:
                 notes = (*notes, remark)
             status, reason, value = Status.RECALCULATED, "", store.get(key)
             if value.__class__ is Special:
@@ -119,7 +154,7 @@ class FormulaCells(Sequence[FormulaCell]):
                 notes,
                 place in saved,
                 partial(shown_text, formula, place if owner == key else position(owner)),
-                machine.whole.get((index, key)),
+                whole.get((index, key)) if whole else None,
                 filled.get((index, key)) if filled else None,
                 place,
             )

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass, field
 from enum import Enum
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, TypeAlias
 
 if TYPE_CHECKING:
     from collections.abc import Callable, Sequence
@@ -12,7 +12,7 @@ if TYPE_CHECKING:
     from cellsection.workbook.book import Bounds, Position
     from cellsection.workbook.values import Array, Scalar
 
-__all__ = ["FormulaCell", "Recalculation", "Status"]
+__all__ = ["Changes", "FormulaCell", "Recalculation", "Status"]
 
 
 class Status(Enum):
@@ -59,6 +59,9 @@ class FormulaCell:
         return self.text()
 
 
+Changes: TypeAlias = "dict[str, dict[Position, tuple[Scalar, Scalar]]]"
+
+
 @dataclass(slots=True)
 class Recalculation:
     """A whole book, recalculated. The cells come sheet by sheet, row by row."""
@@ -76,3 +79,11 @@ class Recalculation:
         """
         made = getattr(self.cells, "apart", None)
         return self.cells if made is None else made()
+
+    def sorted_out(self) -> tuple[Changes, Sequence[FormulaCell]]:
+        """The same cells in two parts: the changes of which there is nothing to say but the values, and the others.
+
+        A change is given by sheet and cell, with the saved and the new value.
+        """
+        made = getattr(self.cells, "sorted_out", None)
+        return ({}, self.cells) if made is None else made()

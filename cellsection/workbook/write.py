@@ -159,7 +159,10 @@ def values_by_sheet(
     """The values to be written, and what each array formula fills, both by sheet and cell."""
     values: dict[str, dict[Position, Scalar]] = defaultdict(dict)
     areas: dict[str, dict[Position, Bounds]] = defaultdict(dict)
-    for cell in recalculation.apart():
+    changes, others = recalculation.sorted_out()
+    for sheet, pairs in changes.items():
+        values[sheet] = {place: value for place, (_, value) in pairs.items()}
+    for cell in others:
         if cell.status in WRITTEN:
             if differs(cell):
                 values[cell.sheet][cell.place or position_of(cell.address)] = cell.value
