@@ -26,6 +26,7 @@ class Limits:
     unzipped_bytes: int = 1_000_000_000  # of all parts together
     ratio: int = 400  # unpacked to packed size of a part over 10 MB; real sheets reach 50
     parts: int = 20_000
+    markup_bytes: int = 500_000_000  # of the parts that are read: sheets, texts, names; not pictures
     cells: int = 4_000_000  # values and formulas; one takes about 250 bytes of memory
     array_cells: int = 2_000_000  # of one array, and of all array formulas of a sheet
     formula_length: int = 100_000

@@ -73,6 +73,7 @@ class Package:
                 f"{self.name} is not a readable workbook file ({problem})", remedy="Save it again as .xlsx or .ods"
             ) from None
         self._parts: dict[str, zipfile.ZipInfo] = {}
+        self._asked_for = 0  # bytes of the parts read so far
         infos = self._zip.infolist()
         if len(infos) > self.limits.parts:
             raise self.refused(f"it has {len(infos):,} parts, more than {self.limits.parts:,}")
@@ -115,6 +116,14 @@ class Package:
         return f"{self.name}: its part {name}"
 
     def pieces(self, name: str) -> Iterator[bytes]:
+        """The bytes of a part to be read, as they are unpacked; see `unpacked`. What is read in all has its limit."""
+        info = self._parts.get(canonical(name))
+        self._asked_for += info.file_size if info else 0
+        if self._asked_for > self.limits.markup_bytes:
+            raise self.refused(f"its sheets, texts and names unpack to more than {self.limits.markup_bytes:,} bytes")
+        return self.unpacked(name)
+
+    def unpacked(self, name: str) -> Iterator[bytes]:
         """The bytes of a part as they are unpacked. Raises WorkbookError where it is missing, damaged or too dense."""
         info = self._parts.get(canonical(name))
         if info is None:
@@ -167,7 +176,7 @@ class Package:
             )  # fmt: skip
             fresh.create_system, fresh.file_size = info.create_system, len(changed.get(key, b"")) or info.file_size
             with target.open(fresh, "w") as part:
-                for piece in [changed[key]] if key in changed else self.pieces(info.filename):
+                for piece in [changed[key]] if key in changed else self.unpacked(info.filename):
                     part.write(piece)
 
     def close(self) -> None:

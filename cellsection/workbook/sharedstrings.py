@@ -51,6 +51,8 @@ def read_sst(package: Package, part: str) -> list[str]:
                 whole += text
         elif name.endswith(" si"):
             strings.append(unescaped(whole))
+            if len(strings) > package.limits.cells:
+                raise package.refused(f"it holds more than {package.limits.cells:,} texts")
         elif depth == aloud:
             aloud = 0
         depth -= 1
