@@ -44,6 +44,7 @@ from cellsection.workbook.whatif import data_table
 __all__ = ["recalculate", "recalculated"]
 
 DEPTH = 6000  # Python frames allowed while a long formula is compiled and run
+PLAIN = frozenset((float, str, bool))  # classes of values that are kept as they are
 FILLING = ("array", "data table")  # kinds of formula that fill an area
 ROUNDS = 5  # times a book is begun again because a formula fills more cells than the file says
 
@@ -157,13 +158,34 @@ class Driver:
         """Compute the formula cells sheet by sheet, each with what it waits for."""
         machine = self.machine
         for index in range(len(machine.book.sheets)):
-            store, formulas = machine.stores[index], machine.formulas[index]
-            for key, formula in formulas.items():
-                if store[key] is PENDING:
-                    try:
+            store, known = machine.stores[index], self.by_formula[index].get
+            for number, (key, formula) in enumerate(machine.formulas[index].items()):
+                if not number % 256:
+                    machine.check_time()
+                if store[key] is not PENDING:
+                    continue
+                form = known(formula)
+                try:
+                    if form is not None and formula.kind == "cell":  # the most common case without detours
+                        machine.sheet, machine.key, machine.taint, machine.drawing = index, key, None, None
+                        value = form.run(key)
+                        if value.__class__ in PLAIN and machine.taint is None:
+                            store[key] = value
+                        else:
+                            self.take(index, key, formula, value)
+                    else:
                         self.compute(index, key, formula)
-                    except Pending as hold:
-                        self.settle((index, key), hold)
+                except Pending as hold:
+                    self.settle((index, key), hold)
+                except Exception:  # computed again on the careful way, which says what is wrong
+                    self.compute_or_settle(index, key, formula)
+
+    def compute_or_settle(self, index: int, key: int, formula: Formula) -> None:
+        """Compute one cell, with what it waits for."""
+        try:
+            self.compute(index, key, formula)
+        except Pending as hold:
+            self.settle((index, key), hold)
 
     def settle(self, place: Place, hold: Pending) -> None:
         """Compute all that one cell waits for, and the cell itself."""

@@ -12,7 +12,7 @@ import sys
 import threading
 import time
 from collections.abc import Iterator
-from contextlib import contextmanager
+from contextlib import contextmanager, suppress
 
 from cellsection.workbook.machine import TimeUp
 
@@ -36,7 +36,9 @@ def time_limit(deadline: float) -> Iterator[None]:
                     return
             patience = 0.02
 
-    threading.Thread(target=wait, daemon=True, name="time limit of a book").start()
+    # Where there are no threads (a browser's Python) the looks at the clock between formulas have to do.
+    with suppress(RuntimeError):
+        threading.Thread(target=wait, daemon=True, name="time limit of a book").start()
     try:
         yield
     finally:
