@@ -34,7 +34,6 @@ OUTSIDE = {  # packages that only some rooms may load; all others are free
     "rich": "check",
     "click": "cli",
     "openpyxl": "templates",
-    "lxml": "workbook",
     "shapely": "geometry section",
     "xlwings": "hosts",
     "pandas": "face",
