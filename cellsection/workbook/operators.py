@@ -11,7 +11,18 @@ from cellsection.workbook.coercion import DIV0, NA, NUM, VALUE, compared, number
 from cellsection.workbook.machine import Unsupported
 from cellsection.workbook.values import Array, ErrorValue, Scalar
 
-__all__ = ["BINARY", "LARGEST", "LONGEST_TEXT", "element", "negative", "per_cent", "snapped", "spread", "width_height"]
+__all__ = [
+    "BINARY",
+    "LARGEST",
+    "LONGEST_TEXT",
+    "check_array",
+    "element",
+    "negative",
+    "per_cent",
+    "snapped",
+    "spread",
+    "width_height",
+]
 
 Result: TypeAlias = Scalar | Array
 LONGEST_TEXT = 32_767  # characters in a cell
@@ -110,6 +121,12 @@ def snapped(result: Scalar, a: Scalar) -> Scalar:
     return result
 
 
+def check_array(cells: float) -> None:
+    """Report an array beyond the cap, before it is made."""
+    if cells > LARGEST.get():
+        raise Unsupported(f"an array of {cells:,.0f} cells (more than {LARGEST.get():,})")
+
+
 def width_height(value: Result) -> tuple[int, int]:
     """Rows and columns of a value or array."""
     return (len(value), len(value[0])) if isinstance(value, tuple) and value else (1, 1)
@@ -132,8 +149,7 @@ def spread(call: Callable[..., Scalar], operands: Sequence[Result]) -> Array:
     """
     shapes = [width_height(operand) for operand in operands if isinstance(operand, tuple)]
     rows, columns = max(shape[0] for shape in shapes), max(shape[1] for shape in shapes)
-    if rows * columns > LARGEST.get():  # a row meets a column: two arrays of allowed size make one that is not
-        raise Unsupported(f"an array of {rows * columns:,} cells (more than {LARGEST.get():,})")
+    check_array(rows * columns)  # a row meets a column: two arrays of allowed size make one that is not
     lines = zip(*(stretched(operand, rows, columns) for operand in operands), strict=True)
     result: list[tuple[Scalar, ...]] = []
     before: tuple[Sequence[Scalar], ...] = ()

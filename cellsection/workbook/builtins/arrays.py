@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from functools import cmp_to_key
+from math import isfinite
 from operator import itemgetter
 from typing import Any
 
@@ -11,6 +12,7 @@ from cellsection.workbook.builtins.logical import ERROR_NUMBERS
 from cellsection.workbook.builtins.registry import ErrorResult, builtin
 from cellsection.workbook.builtins.traits import array_of, whole
 from cellsection.workbook.coercion import CALC, NA, NUM, VALUE, compared, logical_of, number_of
+from cellsection.workbook.operators import check_array
 from cellsection.workbook.values import Array, ErrorValue, Scalar
 
 
@@ -35,8 +37,12 @@ def mmult(a: Array, b: Array) -> Array:
     x, y = matrix(a), matrix(b)
     if len(x[0]) != len(y):
         raise ErrorResult(VALUE)
+    check_array(len(x) * len(y[0]))
     columns = list(zip(*y, strict=True))
-    return cells([sum(p * q for p, q in zip(row, column, strict=True)) for column in columns] for row in x)
+    product = [[sum(p * q for p, q in zip(row, column, strict=True)) for column in columns] for row in x]
+    if not all(isfinite(each) for row in product for each in row):
+        raise ErrorResult(NUM)  # one error for the whole, as the application saves it
+    return cells(product)
 
 
 def given(value: Scalar, default: float) -> float:
@@ -96,8 +102,9 @@ def minverse(array: Array) -> Array:
 @builtin("MUNIT", "number")
 def munit(n: float) -> Array:
     size = int(n)
-    if not 1 <= size <= 2000:
+    if size < 1:
         raise ErrorResult(VALUE)
+    check_array(size * size)
     return cells([float(r == c) for c in range(size)] for r in range(size))
 
 
@@ -111,8 +118,7 @@ def sequence(height: Scalar, width: Scalar = None, first: Scalar = None, by: Sca
     r, c, start, step = int(given(height, 1.0)), int(given(width, 1.0)), given(first, 1.0), given(by, 1.0)
     if r < 1 or c < 1:
         raise ErrorResult(VALUE if r < 0 or c < 0 else CALC)
-    if r * c > 5_000_000:
-        raise ErrorResult(NUM)
+    check_array(r * c)
     return cells([start + (i * c + j) * step for j in range(c)] for i in range(r))
 
 
@@ -295,7 +301,8 @@ def wrapped(array: Array, count: float, pad: Scalar) -> Array:
     n, items = int(count), [cell for row in array for cell in row]
     if n < 1:
         raise ErrorResult(NUM)
-    items += [pad] * (-len(items) % n)
+    if len(items) > n:  # what fits into one piece is not filled up
+        items += [pad] * (-len(items) % n)
     return tuple(tuple(items[k : k + n]) for k in range(0, len(items), n))
 
 
@@ -312,8 +319,9 @@ def wrapcols(array: Array, count: float, pad: Scalar = NA) -> Array:
 @builtin("EXPAND", "array value? value? any?")
 def expand(array: Array, rows: Any = None, columns: Any = None, pad: Scalar = NA) -> Array:
     height, width = int(given(rows, len(array))), int(given(columns, len(array[0])))
-    if height < len(array) or width < len(array[0]) or height * width > 5_000_000:
+    if height < len(array) or width < len(array[0]):
         raise ErrorResult(VALUE)
+    check_array(height * width)
     body = [(*row, *((pad,) * (width - len(row)))) for row in array]
     return (*body, *(((pad,) * width,) * (height - len(array))))
 

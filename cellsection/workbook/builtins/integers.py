@@ -9,6 +9,7 @@ from cellsection.workbook.builtins.mathematics import fail
 from cellsection.workbook.builtins.registry import Context, builtin
 from cellsection.workbook.builtins.traits import cells_of, is_area, numbers
 from cellsection.workbook.coercion import NUM, VALUE
+from cellsection.workbook.operators import check_array
 from cellsection.workbook.values import Scalar
 
 DIGITS = "0123456789ABCDEFGHIJKLMNOPQRSTUVWXYZ"
@@ -35,7 +36,14 @@ def gcd(*arguments: Any) -> float:
 
 @builtin("LCM", "range+")
 def lcm(*arguments: Any) -> float:
-    return float(math.lcm(*naturals(arguments)))
+    given, multiple = list(naturals(arguments)), 1
+    if 0 in given:
+        return 0.0
+    for each in given:
+        multiple = math.lcm(multiple, each)
+        if multiple >> 1024:  # no float holds it any more, and it would only grow
+            return fail(NUM)
+    return float(multiple)
 
 
 @builtin("FACT", "number")
@@ -247,8 +255,9 @@ def randbetween(context: Context, low: float, high: float) -> float:
 def randarray(
     context: Context, rows: float = 1, columns: float = 1, low: float = 0, high: float = 1, whole: bool = False
 ) -> Any:
-    if rows < 1 or columns < 1 or rows * columns > 1_000_000:
+    if rows < 1 or columns < 1:
         fail(VALUE)
+    check_array(int(rows) * int(columns))
 
     random = context.chance()
 

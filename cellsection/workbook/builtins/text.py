@@ -13,6 +13,7 @@ from cellsection.workbook.builtins.numberformat import formatted
 from cellsection.workbook.builtins.registry import Context, ErrorResult, builtin
 from cellsection.workbook.builtins.traits import Wildcard, cells_of
 from cellsection.workbook.coercion import CALC, NA, NUM, VALUE, number_of, text_number, text_of
+from cellsection.workbook.operators import check_array
 from cellsection.workbook.values import Array, ErrorValue, Scalar
 
 LONGEST = 32_767
@@ -304,6 +305,7 @@ def textsplit(
     width = max(map(len, table))
     if not width:
         raise ErrorResult(CALC)
+    check_array(len(table) * width)
     return tuple((*line, *((pad,) * (width - len(line)))) for line in table)
 
 
