@@ -54,7 +54,7 @@ def compiled(context: Context, pattern: str, text: str, fold: bool) -> re.Patter
     count, nested = repeats(pattern)
     if FOREIGN.search(pattern) or (CLASSES.search(pattern) and not text.isascii()):
         context.unsupported(f'the regular expression "{pattern[:60]}"')
-    if nested or (count > 1 and (len(text) + 1) ** min(count + 1, 20) > PATIENCE):
+    if nested or (count and (len(text) + 1) ** min(count + 1, 20) > PATIENCE):
         context.unsupported(f'the regular expression "{pattern[:60]}", which may take too long')
     try:
         return re.compile(NAMED.sub(r"(?P<\1>", pattern), re.IGNORECASE if fold else 0)
