@@ -26,6 +26,7 @@ __all__ = [
 
 Result: TypeAlias = Scalar | Array
 LONGEST_TEXT = 32_767  # characters in a cell
+CHARACTERS = 50  # in a cell of an array of the largest size; in a smaller one more
 LARGEST: ContextVar[int] = ContextVar("cells of an array", default=2_000_000)  # set for each recalculation
 
 
@@ -127,6 +128,13 @@ def check_array(cells: float) -> None:
         raise Unsupported(f"an array of {cells:,.0f} cells (more than {LARGEST.get():,})")
 
 
+def check_characters(characters: int) -> None:
+    """Report an array of texts that are too long in all."""
+    most = CHARACTERS * LARGEST.get()
+    if characters > most:
+        raise Unsupported(f"an array of texts of more than {most:,} characters")
+
+
 def width_height(value: Result) -> tuple[int, int]:
     """Rows and columns of a value or array."""
     return (len(value), len(value[0])) if isinstance(value, tuple) and value else (1, 1)
@@ -153,10 +161,14 @@ def spread(call: Callable[..., Scalar], operands: Sequence[Result]) -> Array:
     lines = zip(*(stretched(operand, rows, columns) for operand in operands), strict=True)
     result: list[tuple[Scalar, ...]] = []
     before: tuple[Sequence[Scalar], ...] = ()
+    characters = 0
     for line in lines:
         # The blank rows behind the used area are one object many times over: what they give is worked out once.
         alike = len(before) > 0 and all(map(lambda new, old: new is old, line, before))
         result.append(result[-1] if alike else tuple(map(call, *line)))
+        if not alike and str in map(type, result[-1]):  # few long texts fill more memory than many numbers
+            characters += sum(len(each) for each in result[-1] if each.__class__ is str)
+            check_characters(characters)
         before = line
     return tuple(result)
 
