@@ -12,7 +12,7 @@ in one run, and prints the medians, their ratio and the peak memory. The second 
 200,000 formula cells, and times a written recalculation too. `books` checks every book in a folder and prints
 the share of its formula cells that equal the saved value, the time taken and what is not supported. `written-books`
 spoils all values of every book in a folder in a copy, recalculates that into a second copy, and compares it with
-the book part by part, and as openpyxl and LibreOffice read it. The fourth puts random formulas and damaged books through
+the book part by part, and as openpyxl and LibreOffice read it. `fuzz` puts random formulas and damaged books through
 the program for so many minutes and keeps what fails.
 """
 
