@@ -11,8 +11,8 @@ from cellsection.workbook.coercion import CALC, VALUE, number_of
 from cellsection.workbook.forms import Form, arguments
 from cellsection.workbook.machine import Code, Machine
 from cellsection.workbook.nodes import Call, Invoke, Missing, Name, Node
+from cellsection.workbook.operators import check_characters, width_height
 from cellsection.workbook.operators import spread as spread_over
-from cellsection.workbook.operators import width_height
 from cellsection.workbook.values import ErrorValue
 
 if TYPE_CHECKING:
@@ -199,6 +199,21 @@ def single(value: Any) -> Any:
     return 0.0 if value is None else value
 
 
+def kept(call: Apply) -> Apply:
+    """A LAMBDA whose single values are gathered in an array: what they hold in texts is counted as they come."""
+    characters = 0
+
+    def counted(*given: Any) -> Any:
+        nonlocal characters
+        value = single(call(*given))
+        if value.__class__ is str:
+            characters += len(value)
+            check_characters(characters)
+        return value
+
+    return counted
+
+
 def with_lambda(work: Callable[[Apply, list[Any], Machine], Any], least: int, most: int | None) -> Form:
     """A function whose last argument is a LAMBDA."""
 
@@ -252,11 +267,11 @@ def work_scan(call: Apply, values: list[Any], machine: Machine) -> Any:
     """SCAN([initial], array, lambda)"""
     total, rows = started(values)
     width = len(rows_of(values[-1])[0])
-    result = []
+    result, call = [], kept(call)
     for row in rows:
         line = [single(total)] if len(row) < width else []
         for each in row:
-            total = single(call(total, each))
+            total = call(total, each)
             line.append(total)
         result.append(tuple(line))
     return tuple(result)
@@ -264,13 +279,15 @@ def work_scan(call: Apply, values: list[Any], machine: Machine) -> Any:
 
 def work_byrow(call: Apply, values: list[Any], machine: Machine) -> Any:
     """BYROW(array, lambda)"""
-    return tuple((single(call((row,))),) for row in rows_of(values[0]))
+    call = kept(call)
+    return tuple((call((row,)),) for row in rows_of(values[0]))
 
 
 def work_bycol(call: Apply, values: list[Any], machine: Machine) -> Any:
     """BYCOL(array, lambda)"""
     columns = zip(*rows_of(values[0]), strict=True)
-    return (tuple(single(call(tuple((each,) for each in column))) for column in columns),)
+    call = kept(call)
+    return (tuple(call(tuple((each,) for each in column)) for column in columns),)
 
 
 def work_makearray(call: Apply, values: list[Any], machine: Machine) -> Any:
@@ -279,7 +296,8 @@ def work_makearray(call: Apply, values: list[Any], machine: Machine) -> Any:
     if isinstance(rows, ErrorValue) or isinstance(columns, ErrorValue) or rows < 1 or columns < 1:
         return VALUE
     machine.check_size(int(rows) * int(columns))
-    return tuple(tuple(single(call(float(r + 1), float(c + 1))) for c in range(int(columns))) for r in range(int(rows)))
+    call = kept(call)
+    return tuple(tuple(call(float(r + 1), float(c + 1)) for c in range(int(columns))) for r in range(int(rows)))
 
 
 LAMBDA_FORMS: dict[str, Form] = {

@@ -16,6 +16,7 @@ __all__ = [
     "LARGEST",
     "LONGEST_TEXT",
     "check_array",
+    "check_characters",
     "element",
     "negative",
     "per_cent",

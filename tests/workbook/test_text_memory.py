@@ -16,6 +16,11 @@ from tests.workbook.small import results
     [
         'SEQUENCE(300)&REPT("x",30000)',
         'REPT("x",30000+SEQUENCE(300))',
+        'MAKEARRAY(300,1,LAMBDA(r,c,REPT("x",30000)&r))',
+        'MAKEARRAY(1,300,LAMBDA(r,c,REPT("x",30000)&c))',
+        'BYROW(SEQUENCE(300),LAMBDA(r,REPT("x",30000)&r))',
+        'BYCOL(SEQUENCE(1,300),LAMBDA(c,REPT("x",30000)&c))',
+        'SCAN(REPT("x",30000),SEQUENCE(300),LAMBDA(a,n,a&"x"))',
         'MAP(SEQUENCE(300),LAMBDA(n,REPT("x",30000)&n))',
     ],
 )
