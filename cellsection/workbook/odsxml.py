@@ -59,9 +59,15 @@ def content_with_values(data: bytes, values: Mapping[str, Mapping[Position, Scal
     names = found.names(where)
     edits: list[Edit] = []
     placed: dict[str, set[Position]] = {sheet: set() for sheet in values}
+    by_row: dict[str, dict[int, dict[int, Scalar]]] = {sheet: {} for sheet in values}
+    for sheet, wanted in values.items():
+        for (number, column), value in wanted.items():
+            by_row[sheet].setdefault(number, {})[column] = value
     for row in found.rows:
-        wanted = values[row.sheet]
-        rows = {number: at_columns(row, wanted, number) for number in found.wanted_rows(row.sheet, row.top, row.count)}
+        rows = {
+            number: at_columns(row, by_row[row.sheet][number])
+            for number in found.wanted_rows(row.sheet, row.top, row.count)
+        }
         for number, cells in rows.items():
             for cell, new in cells:
                 found.check(row.sheet, number, cell, new, where)
@@ -82,14 +88,13 @@ def no_room(where: str, sheet: str, place: Position) -> WorkbookError:
     )
 
 
-def at_columns(
-    row: RowSpan, wanted: Mapping[Position, Scalar], number: int
-) -> list[tuple[CellSpan, dict[int, Scalar]]]:
+def at_columns(row: RowSpan, wanted: Mapping[int, Scalar]) -> list[tuple[CellSpan, dict[int, Scalar]]]:
     """The cells of a row that change, each with its new values by column."""
     found = []
     for cell in row.cells:
-        columns = range(cell.column, cell.column + cell.count)
-        new = {column: wanted[number, column] for column in columns if (number, column) in wanted}
+        span = range(cell.column, cell.column + cell.count)
+        columns = span if len(span) < len(wanted) else sorted(wanted)  # a blank may stand for the whole row
+        new = {column: wanted[column] for column in columns if column in wanted and column in span}
         if new:
             found.append((cell, new))
     return found
