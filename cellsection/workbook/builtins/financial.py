@@ -175,8 +175,10 @@ def mirr(area: Any, finance: float, reinvest: float) -> float:
         return fail(DIV0)
     gains = sum(max(f, 0.0) / power(1 + reinvest, k) for k, f in enumerate(flows))
     losses = sum(f / power(1 + finance, k) for k, f in enumerate(flows) if f < 0)
-    if not losses or not gains or n < 2:  # "at least one positive value and one negative value"
+    if not losses or n < 2:
         return fail(DIV0)
+    if not gains:  # all is lost: the application gives -100 %, though its reference asks for a positive value
+        return -1.0
     return power(-gains * power(1 + reinvest, n - 1) / losses, 1 / (n - 1)) - 1
 
 
