@@ -235,12 +235,12 @@ def test_a_limit_refuses_a_book_that_asks_for_more(good: Path) -> None:
 @pytest.mark.parametrize(
     ("option", "given", "says"),
     [
-        ("--limit", "books=3", "there is no limit 'books'. The limits are unzipped_bytes, ratio, parts"),
+        ("--limit", "books=3", "there is no limit 'books'. The limits are unzipped_bytes, markup_bytes, ratio, parts"),
         ("--limit", "cells", "cells takes a whole number above 0. Write for example cells=4000000."),
         ("--limit", "cells=many", "cells takes a whole number above 0"),
         ("--limit", "cells=0", "cells takes a whole number above 0"),
         ("--limit", "cells=1.5", "cells takes a whole number above 0"),
-        ("--limit", "seconds=inf", "seconds takes a number above 0. Write for example seconds=300."),
+        ("--limit", "seconds=inf", "seconds takes a number above 0. Write for example seconds=60."),
         ("--limit", "seconds=nan", "seconds takes a number above 0"),
         ("--clock", "soon", "that is no date"),
         ("--clock", "2026-13-01", "that is no date"),

@@ -31,7 +31,7 @@ class Limits:
     array_cells: int = 2_000_000  # of one array, and of all array formulas of a sheet
     formula_length: int = 100_000
     nesting: int = 500
-    seconds: float = 300.0
+    seconds: float = 60.0
 
 
 @dataclass(slots=True, eq=False)
