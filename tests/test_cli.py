@@ -235,7 +235,7 @@ def test_a_limit_refuses_a_book_that_asks_for_more(good: Path) -> None:
 @pytest.mark.parametrize(
     ("option", "given", "says"),
     [
-        ("--limit", "books=3", "there is no limit 'books'. The limits are unzipped_bytes, markup_bytes, ratio, parts"),
+        ("--limit", "books=3", "there is no limit 'books'. The limits are unzipped_bytes, ratio, parts, markup_bytes"),
         ("--limit", "cells", "cells takes a whole number above 0. Write for example cells=4000000."),
         ("--limit", "cells=many", "cells takes a whole number above 0"),
         ("--limit", "cells=0", "cells takes a whole number above 0"),
