@@ -1,4 +1,4 @@
-"""Never a silent wrong value: a function that is taken away is reported with its cells, and so is all that hangs on it."""
+"""Never a silent wrong value: a function taken away is reported with its cells, and so is all that hangs on it."""
 
 from __future__ import annotations
 
