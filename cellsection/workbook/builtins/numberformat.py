@@ -172,7 +172,7 @@ def digit_section(pieces: list[re.Match[str]], number: float) -> str:
             shown = rounded(scaled / 10.0**power, len(decimals), "half")
         scaled = shown
     scaled = rounded(scaled, len(decimals), "half")
-    integer, _, part = f"{abs(scaled):.{len(decimals)}f}".partition(".")
+    integer, _, part = fixed(abs(scaled), len(decimals)).partition(".")
     integer = integer.lstrip("0").rjust(whole.count("0"), "0")
     if grouped:
         integer = group(integer)
@@ -182,6 +182,17 @@ def digit_section(pieces: list[re.Match[str]], number: float) -> str:
     part = part[:kept]
     sign = "-" if scaled < 0 else ""
     return sign + laid_out(pieces, integer, part, "." in body, power)
+
+
+def fixed(number: float, places: int) -> str:
+    """A number with so many decimals; digits beyond the 15th are shown as zeros, as the application does.
+
+    >>> fixed(1 / 3, 18), fixed(123456789012345678.0, 0)
+    ('0.333333333333333000', '123456789012346000')
+    """
+    from decimal import Decimal
+
+    return f"{Decimal(f'{number:.15g}'):.{places}f}"
 
 
 def group(digits: str) -> str:
