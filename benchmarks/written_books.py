@@ -223,7 +223,7 @@ def as_read(path: Path, expected: Mapping[tuple[str, str], Scalar]) -> tuple[int
     for (sheet, address), value in expected.items():
         read = book[sheet][address].value if sheet in book.sheetnames else None
         if hasattr(read, "isoformat") or hasattr(read, "total_seconds"):
-            read = to_excel(read, book.epoch)
+            read = to_excel(read, book.epoch)  # type: ignore[no-untyped-call]
         if isinstance(read, str) and isinstance(value, ErrorValue):
             read = ErrorValue(read)
         if isinstance(value, bool) and read in (0, 1):
