@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from functools import partial
-from itertools import starmap
+from itertools import chain, starmap
 from pathlib import Path
 from typing import TYPE_CHECKING, Literal
 
@@ -112,9 +112,8 @@ def _lines(recalculated: Recalculation, held: list[FormulaCell], written: Writte
 
     cells = recalculated.cells
     plain, apart = recalculated.sorted_out()
-    pairs = [pair for of_sheet in plain.values() for pair in of_sheet.values()]
     changed = [cell for cell in apart if _computed(cell) and differs(cell)]
-    many = len(changed) + len(pairs)
+    many = len(changed) + sum(map(len, plain.values()))
     same = len(cells) - len(held) - many
     tally = [counted(many, "value changed", "values changed") if many else "no value changed"]
     if same and many:
@@ -123,8 +122,8 @@ def _lines(recalculated: Recalculation, held: list[FormulaCell], written: Writte
         tally.append(f"{len(held):,} kept, as they could not be recalculated")
     book = f"{counted(len(cells), 'formula cell')} on {counted(len(recalculated.sheets), 'sheet')}"
     yield f"{book}: {', '.join(tally)}" if cells else f"no formula cells on {book.rpartition(' on ')[2]}"
-    pairs += [(cell.saved, cell.value) for cell in changed if cell.has_saved]
-    rounded = sum(starmap(partial(agree, tolerance=Tolerance()), pairs))
+    others = [(cell.saved, cell.value) for cell in changed if cell.has_saved]
+    rounded = sum(starmap(partial(agree, tolerance=Tolerance()), chain(recalculated.pairs(), others)))
     if rounded:
         are = counted(rounded, "of the changes is", "of the changes are")
         yield f"{are} a matter of rounding, below 1e-9 of the value"

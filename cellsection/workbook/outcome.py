@@ -12,14 +12,16 @@ from typing import TYPE_CHECKING, overload
 
 from cellsection.workbook.book import column_letters
 from cellsection.workbook.figures import as_shown
-from cellsection.workbook.keys import position
+from cellsection.workbook.keys import cell_key, position
 from cellsection.workbook.machine import Special
 from cellsection.workbook.relative import shown_text
 from cellsection.workbook.results import FormulaCell, Status
 
 if TYPE_CHECKING:
+    from cellsection.workbook.book import Position
     from cellsection.workbook.recalculate import Driver
     from cellsection.workbook.results import Changes
+    from cellsection.workbook.values import Scalar
 
 __all__ = ["FormulaCells"]
 
@@ -35,7 +37,7 @@ class FormulaCells(Sequence[FormulaCell]):
         self.made: list[FormulaCell] | None = None
         self.told_apart: list[FormulaCell] | None = None
         self.sorted: tuple[Changes, list[FormulaCell]] | None = None
-        self.parted: dict[int, tuple[list[int], set[int]]] = {}
+        self.parted: dict[int, tuple[dict[Position, Scalar], set[int]]] = {}
 
     def all(self) -> list[FormulaCell]:
         """Every cell, made when first asked for."""
@@ -63,39 +65,43 @@ class FormulaCells(Sequence[FormulaCell]):
     def apart(self) -> list[FormulaCell]:
         """The cells of which there is more to say than that they hold; see Recalculation.apart."""
         if self.told_apart is None:
-            keys = [sorted((*self.changed(index), *self.remarkable(index))) for index in self.sheets]
+            keys = [
+                sorted((*(cell_key(*place) for place in self.changed(index)), *self.remarkable(index)))
+                for index in self.sheets
+            ]
             self.told_apart = [cell for index in self.sheets for cell in self.of_sheet(index, keys[index])]
         return self.told_apart
 
     def sorted_out(self) -> tuple[Changes, list[FormulaCell]]:
         """The changes that need no words, and the other cells that are apart; see Recalculation.sorted_out."""
         if self.sorted is None:
-            machine, changes = self.driver.machine, {}
-            for index in self.sheets:
-                saved, store = machine.book.sheets[index].values, machine.stores[index]
-                pairs = {place: (saved[place], store[key]) for key in self.changed(index) for place in (position(key),)}
-                if machine.book.format == "ods":
-                    pairs = {place: (before, as_shown(value, before)) for place, (before, value) in pairs.items()}
-                if pairs:
-                    changes[machine.names[index]] = pairs
+            names = self.driver.machine.names
+            changes = {names[index]: changed for index in self.sheets if (changed := self.changed(index))}
             keys = [sorted(self.remarkable(index)) for index in self.sheets]
             self.sorted = (changes, [cell for index in self.sheets for cell in self.of_sheet(index, keys[index])])
         return self.sorted
+
+    def pairs(self) -> Iterator[tuple[Scalar, Scalar]]:
+        """The saved and the new value of each of those changes."""
+        for index in self.sheets:
+            saved = self.driver.machine.book.sheets[index].values
+            for place, value in self.changed(index).items():
+                yield saved[place], value
 
     def keys(self, index: int) -> Iterable[int]:
         """The keys of a sheet's formula cells, row by row."""
         machine = self.driver.machine
         return sorted(machine.formulas[index].keys() | machine.owners[index].keys())
 
-    def changed(self, index: int) -> list[int]:
-        """The keys of cells recalculated to another value, and nothing else to be said of them."""
+    def changed(self, index: int) -> dict[Position, Scalar]:
+        """The cells recalculated to another value, and nothing else to be said of them, with that value."""
         return self.divided(index)[0]
 
     def remarkable(self, index: int) -> set[int]:
         """The keys of cells of which there is more to say than their values."""
         return self.divided(index)[1]
 
-    def divided(self, index: int) -> tuple[list[int], set[int]]:
+    def divided(self, index: int) -> tuple[dict[Position, Scalar], set[int]]:
         """Both, found when first asked for."""
         if index not in self.parted:
             machine, compiled = self.driver.machine, self.driver.by_formula[index]
@@ -106,17 +112,18 @@ class FormulaCells(Sequence[FormulaCell]):
             told |= {key for place, key in machine.remarks if place == index}
             told |= {key for place, key in machine.whole if place == index}
             told |= {key for place, key in machine.filled if place == index}  # a spill may have shrunk to its own cell
-            changed: list[int] = []
+            changed: dict[Position, Scalar] = {}
             # The positions of the book's cells and the keys of the machine's come in one order: they are made so.
             for place, (key, formula) in zip(sheet.formulas, formulas.items(), strict=True):
-                value, before = store[key], saved(place)
+                value: Scalar = store[key]
+                before = saved(place)
                 if figures and before is not None and value.__class__ is float:
                     value = as_shown(value, before)
                 if formula not in plain or value.__class__ not in PLAIN or before is None:
                     told.add(key)
-                elif value != before or value.__class__ is not before.__class__:
-                    changed.append(key)
-            self.parted[index] = ([key for key in changed if key not in told] if told else changed, told)
+                elif (value != before or value.__class__ is not before.__class__) and key not in told:
+                    changed[place] = value
+            self.parted[index] = (changed, told)
         return self.parted[index]
 
     def of_sheet(self, index: int, keys: Iterable[int]) -> Iterator[FormulaCell]:

@@ -41,4 +41,4 @@ def with_plain_values(data: bytes, values: Mapping[Position, Scalar], rich: Mapp
         return b'<c r="%b"%b%b>%b%b</c>' % (place, style, kind, formula, v)
 
     cells = FORMULA_CELL.sub(cell, data[start:end])
-    return data[:start] + cells + data[end:] if put == len(wanted) else None
+    return b"".join((data[:start], cells, data[end:])) if put == len(wanted) else None

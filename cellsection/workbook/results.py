@@ -7,7 +7,7 @@ from enum import Enum
 from typing import TYPE_CHECKING, TypeAlias
 
 if TYPE_CHECKING:
-    from collections.abc import Callable, Sequence
+    from collections.abc import Callable, Iterator, Sequence
 
     from cellsection.workbook.book import Bounds, Position
     from cellsection.workbook.values import Array, Scalar
@@ -59,7 +59,7 @@ class FormulaCell:
         return self.text()
 
 
-Changes: TypeAlias = "dict[str, dict[Position, tuple[Scalar, Scalar]]]"
+Changes: TypeAlias = "dict[str, dict[Position, Scalar]]"
 
 
 @dataclass(slots=True)
@@ -83,7 +83,12 @@ class Recalculation:
     def sorted_out(self) -> tuple[Changes, Sequence[FormulaCell]]:
         """The same cells in two parts: the changes of which there is nothing to say but the values, and the others.
 
-        A change is given by sheet and cell, with the saved and the new value.
+        A change is given by sheet and cell, with the new value.
         """
         made = getattr(self.cells, "sorted_out", None)
         return ({}, self.cells) if made is None else made()
+
+    def pairs(self) -> Iterator[tuple[Scalar, Scalar]]:
+        """The saved and the new value of each of these changes."""
+        made = getattr(self.cells, "pairs", None)
+        return iter(()) if made is None else made()

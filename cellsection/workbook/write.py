@@ -160,8 +160,7 @@ def values_by_sheet(
     values: dict[str, dict[Position, Scalar]] = defaultdict(dict)
     areas: dict[str, dict[Position, Bounds]] = defaultdict(dict)
     changes, others = recalculation.sorted_out()
-    for sheet, pairs in changes.items():
-        values[sheet] = {place: value for place, (_, value) in pairs.items()}
+    values.update({sheet: changed.copy() for sheet, changed in changes.items()})
     for cell in others:
         if cell.status in WRITTEN:
             if differs(cell):
