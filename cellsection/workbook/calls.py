@@ -81,6 +81,11 @@ def check_count(name: str, given: int, least: int, most: int | None) -> None:
 def builtin_call(compiler: Compiler, declared: Builtin, node: Call, spread: bool, as_value: bool) -> Code:
     """Code for a call of a builtin. A wrong number of arguments raises FormulaError."""
     check_count(declared.name, len(node.arguments), declared.least, declared.most)
+    if declared.repeats > 1 and (len(node.arguments) - len(declared.kinds)) % declared.repeats:
+        raise FormulaError(
+            f"{declared.name} takes its last arguments in pairs, and {len(node.arguments)} arguments leave one over",
+            construct=f"{declared.name} with {len(node.arguments)} arguments",
+        )
     kinds = [declared.kind(k) for k in range(len(node.arguments))]
     codes: list[Code] = []
     for kind, argument in zip(kinds, node.arguments, strict=True):

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+from collections.abc import Callable
 from typing import Any
 
 from cellsection.workbook.builtins.mathematics import fail, paired
@@ -41,6 +42,30 @@ def finite(x: Any) -> float:
     """A result, #NUM! where it is none."""
     value = float(x)
     return value if math.isfinite(value) else fail(NUM)
+
+
+DEEP = 1e-3  # below this probability a library's quantile is judged by the share that it leaves
+
+
+def quantile(guess: float, share: Callable[[float], float], p: float) -> float:
+    """The positive x at which a share, rising or falling with x, is p: the library's, where it holds, else a search.
+
+    Deep in a tail the library inverts 1 - p or stops early: its F at 1E-12 is off in the seventh digit, at 1E-16 in the
+    first, and at 1E-20 there is none. The shares themselves keep their digits there, so they judge and are solved.
+    """
+    if not 0 < p < DEEP or (0 < guess < math.inf and abs(share(guess) - p) <= 1e-12 * p):
+        return guess
+    from scipy.optimize import brentq
+
+    def gap(exponent: float) -> float:
+        found = share(math.exp(exponent))
+        return (math.log(found) if found > 0 else -800.0) - math.log(p)
+
+    low, high = -700.0, 700.0  # exponents of the smallest and the largest x
+    if gap(low) * gap(high) > 0:
+        return guess
+    found = math.exp(brentq(gap, low, high, xtol=1e-13, rtol=1e-15))
+    return found if abs(share(found) - p) <= 1e-9 * p else guess  # not the brink where the share itself underflows
 
 
 @builtin("NORM.DIST NORMDIST", "number number number logical")
@@ -167,12 +192,21 @@ def tdist(x: float, freedom: float, tails: float) -> float:
 
 @builtin("T.INV", "number number")
 def t_inv(p: float, freedom: float) -> float:
-    return finite(stats().t.ppf(probability(p), whole(freedom))) if whole(freedom) >= 1 else fail(NUM)
+    if whole(freedom) < 1:
+        return fail(NUM)
+    law = stats().t(whole(freedom))
+    if probability(p) == 0.5:
+        return 0.0
+    tail = min(p, 1 - p)
+    return math.copysign(finite(quantile(-float(law.ppf(tail)), lambda x: float(law.sf(x)), tail)), p - 0.5)
 
 
 @builtin("T.INV.2T TINV", "number number")
 def t_inv_2t(p: float, freedom: float) -> float:
-    return finite(stats().t.isf(p / 2, whole(freedom))) if whole(freedom) >= 1 and 0 < p <= 1 else fail(NUM)
+    if whole(freedom) < 1 or not 0 < p <= 1:
+        return fail(NUM)
+    law = stats().t(whole(freedom))
+    return finite(quantile(float(law.isf(p / 2)), lambda x: 2 * float(law.sf(x)), p)) if p < 1 else 0.0
 
 
 @builtin("CHISQ.DIST", "number number logical")
@@ -213,12 +247,18 @@ def f_dist_rt(x: float, a: float, b: float) -> float:
 
 @builtin("F.INV", "number number number")
 def f_inv(p: float, a: float, b: float) -> float:
-    return finite(stats().f.ppf(p, whole(a), whole(b))) if 0 <= p < 1 and int(a) >= 1 and int(b) >= 1 else fail(NUM)
+    if not 0 <= p < 1 or int(a) < 1 or int(b) < 1:
+        return fail(NUM)
+    law = stats().f(whole(a), whole(b))
+    return finite(quantile(float(law.ppf(p)), lambda x: float(law.cdf(x)), p))
 
 
 @builtin("F.INV.RT FINV", "number number number")
 def f_inv_rt(p: float, a: float, b: float) -> float:
-    return finite(stats().f.isf(p, whole(a), whole(b))) if 0 < p <= 1 and int(a) >= 1 and int(b) >= 1 else fail(NUM)
+    if not 0 < p <= 1 or int(a) < 1 or int(b) < 1:
+        return fail(NUM)
+    law = stats().f(whole(a), whole(b))
+    return finite(quantile(float(law.isf(p)), lambda x: float(law.sf(x)), p)) if p < 1 else 0.0
 
 
 @builtin("GAMMA", "number")
@@ -268,7 +308,9 @@ def betadist(x: float, a: float, b: float, low: float = 0.0, high: float = 1.0) 
 def beta_inv(p: float, a: float, b: float, low: float = 0.0, high: float = 1.0) -> float:
     if a <= 0 or b <= 0 or not 0 < p < 1 or low >= high:
         return fail(NUM)
-    return low + (high - low) * finite(stats().beta.ppf(p, a, b))
+    law = stats().beta(a, b)
+    guess = float(law.ppf(p)) if p > 1e-100 else 0.0  # the library warns of giving up there
+    return low + (high - low) * finite(quantile(guess, lambda x: float(law.cdf(min(x, 1.0))), p))
 
 
 @builtin("CONFIDENCE CONFIDENCE.NORM", "number number number")
