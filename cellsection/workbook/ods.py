@@ -29,6 +29,7 @@ ENTERED = frozenset(  # elements that may hold what we look for; all others are 
     [OFFICE + name for name in ("document-content", "automatic-styles", "body", "spreadsheet")]
     + [TABLE + name for name in ("table", "table-row-group", "table-rows", "table-header-rows")]
 )
+LONGEST_ADDRESS = 1_000  # characters: two sheet names and two cells take a tenth of them
 ADDRESS = re.compile(
     r"""\$?(?P<sheet>'(?:[^']|'')*'|[^.'\[\]]*)\.\$?(?P<column>[A-Za-z]{1,3})\$?(?P<row>[0-9]{1,7})""", re.ASCII
 )
@@ -189,7 +190,7 @@ def read_database_ranges(element: Element, book: Book) -> None:
     """Database ranges: a formula can name them as it names a range."""
     for named in element.along("database-range"):
         name, address = named.get(TABLE + "name"), named.get(TABLE + "target-range-address")
-        cells = list(ADDRESS.finditer(address))
+        cells = list(ADDRESS.finditer(address)) if len(address) < LONGEST_ADDRESS else []
         if not cells or name.startswith("__Anonymous"):
             continue
         sheet = cells[0]["sheet"].strip("'").replace("''", "'")
