@@ -332,6 +332,7 @@ def test_checking_a_plain_book_loads_nothing_it_does_not_use(good: Path) -> None
     looking = (
         "import sys, runpy\n"
         f"sys.argv = ['cellsection', 'check', {str(good)!r}]\n"
+        "sys.setprofile(lambda *_: None)\n"  # so that the end is not cut short
         "try:\n    runpy.run_module('cellsection', run_name='__main__')\n"
         "finally:\n    print('LOADED', *sorted(sys.modules))\n"
     )
