@@ -96,7 +96,7 @@ def _sections(report: Report, every: bool) -> Iterator[tuple[str, RenderableType
         yield "Not verified for another reason", _paragraphs(lines, every)
     if unsaved := _of(report, Unsaved):
         cells = unsaved[0].cells
-        said = "Nothing to compare with; open the book in the spreadsheet application and save it"
+        said = "Nothing to compare with; save the book in its application, or recalculate it into a copy"
         yield f"No saved value ({len(cells):,})", _text(f"{places_in_words(cells, every=every)}. {said}.")
     if saved_alike := [each for each in errors if each.verdict is Verdict.HOLDS]:
         count = sum(len(each.cells) + len(each.echoes) for each in saved_alike)

@@ -21,6 +21,10 @@ from cellsection.workbook.markup import Element, tree
 
 __all__ = ["Package", "Relationship", "canonical"]
 
+ENCRYPTED = "EncryptedPackage".encode(
+    "utf-16-le"
+)  # the stream that holds a workbook under a password (MS-OFFCRYPTO 2.3.4.4)
+OLE2_DIRECTORY = 50_000_000  # bytes in which the directory of its container is looked for
 OLE2 = b"\xd0\xcf\x11\xe0\xa1\xb1\x1a\xe1"
 PIECE = 1 << 17
 METHODS = (zipfile.ZIP_STORED, zipfile.ZIP_DEFLATED)  # the only two that the standards allow
@@ -63,8 +67,10 @@ class Package:
     def _open(self) -> None:
         head = self._file.read(8)
         if head == OLE2:
+            encrypted = ENCRYPTED in self._file.read(OLE2_DIRECTORY)
+            what = "is encrypted" if encrypted else "is in the old binary format (.xls)"
             raise WorkbookError(
-                f"{self.name} is in the old binary format or encrypted", remedy="Save it as .xlsx without a password"
+                f"{self.name} {what}", remedy="Save it without a password" if encrypted else "Save it as .xlsx"
             )
         try:
             self._zip = zipfile.ZipFile(self._file)

@@ -88,7 +88,11 @@ def test_dates_count_from_1904_where_the_book_says_so(tmp_path: Path) -> None:
     [
         (b"", "readable"),
         (b"plain text", "readable"),
-        (b"\xd0\xcf\x11\xe0\xa1\xb1\x1a\xe1" + b"\0" * 600, "old binary format or encrypted"),
+        (b"\xd0\xcf\x11\xe0\xa1\xb1\x1a\xe1" + b"\0" * 600, r"is in the old binary format \(.xls\). Save it as .xlsx"),
+        (
+            b"\xd0\xcf\x11\xe0\xa1\xb1\x1a\xe1" + b"\0" * 600 + "EncryptedPackage".encode("utf-16-le"),
+            "is encrypted. Save it without a password",
+        ),
         (b"PK\x03\x04" + b"\0" * 40, "readable"),
     ],
 )
